@@ -1,0 +1,130 @@
+import * as z from 'zod'
+
+/**
+ * Every constant of a site that a score depends on. A ruleset's number, these rules, the recipe copy and the stored
+ * readings reproduce a score bit for bit, so the whole object is stored with each score and never read again from
+ * the site's present settings. Plain JSON: no undefined, no NaN.
+ */
+
+const finite = z.number()
+const positive = z.number().positive()
+const notNegative = z.number().min(0)
+
+export const doseRulesSchema = z.strictObject({
+  /** Temperature at which one minute counts one minute, °C. */
+  refTempC: finite
+    .min(100, 'The reference must be 100 °C or more')
+    .max(300, 'The reference must be 300 °C or less'),
+  /** Rise that makes the dose rate ten times larger, °C. */
+  zC: positive.min(5, 'z must be 5 °C or more').max(100, 'z must be 100 °C or less'),
+  /** Nothing counts below it, °C. */
+  baseTempC: finite.min(0, 'The base must be 0 °C or more').max(200, 'The base must be 200 °C or less'),
+})
+
+export const indexRulesSchema = z.strictObject({
+  /** Activation energies of the slow and the fast index, J/mol (Prins et al. 2006, extrapolated: see SCIENCE §2). */
+  slowJPerMol: positive.max(500_000),
+  fastJPerMol: positive.max(500_000),
+})
+
+export const staveRulesSchema = z.strictObject({
+  /** Wood counts as toasted where its dose exceeds this, minutes at the reference temperature. */
+  toastDepthDoseMin: positive.max(1000),
+  /** Thickness when the recipe gives none, mm. */
+  thicknessMm: positive.min(5).max(100),
+  /** Oven-dry specific gravity when the wood lot gives none. */
+  specificGravity: positive.min(0.3).max(1.2),
+  /** Stave moisture at the toast start when the firing gives none, % of dry mass. */
+  moisturePercent: notNegative.max(100),
+  /** Room behind the stave, °C. */
+  roomTempC: finite.min(-40).max(80),
+  /** Heat transfer from the cold face to the room, W/(m²·K); SCIENCE §3 gives 8–15. */
+  coldFaceHWPerM2K: notNegative.max(100),
+  /** Half-width of the probe hole's depth, mm: what the range of face and toast depth is made from. */
+  probeDepthErrorMm: notNegative.max(10),
+  /** Half-width of the wood's diffusivity, as a share of it (judgement). */
+  diffusivityErrorShare: notNegative.max(1),
+})
+
+export const errorRulesSchema = z.strictObject({
+  /** Half-widths at k = 2, °C: reference junction, and how the probe sits in its hole (judgement). */
+  coldJunctionC: notNegative.max(20),
+  mountC: notNegative.max(50),
+  /** The site's repeatability of one probe placed again at the same mount, log10 of dose, k = 2. */
+  sameMountLog10: positive.max(1),
+  /** True until the site has measured its own repeatability. The assumed figure covers drift too. */
+  isSameMountAssumed: z.boolean(),
+  /** Drift of a probe between two checks, °C; joins the same-mount interval once that is measured. */
+  driftC: notNegative.max(20),
+})
+
+export const gapRulesSchema = z
+  .strictObject({
+    /** A silence longer than this many nominal spacings is a gap. */
+    gapFromSpacings: positive.min(1.5).max(20),
+    /** Up to this long a gap is joined by a straight line, s. */
+    interpolateUpToS: positive.max(600),
+    /** Up to this long it is joined and the interval widened by both extremes; longer is incomplete, s. */
+    widenUpToS: positive.max(1800),
+    /** All gaps together above this share of the toast: incomplete. */
+    incompleteAboveShare: positive.max(1),
+  })
+  .refine((gaps) => gaps.widenUpToS >= gaps.interpolateUpToS, {
+    path: ['widenUpToS'],
+    error: 'The longest gap that is joined must be at least as long as the longest that is only interpolated',
+  })
+
+export const limitRulesSchema = z.strictObject({
+  /** The wood maximum is broken when it is exceeded for longer than this, s. */
+  woodMaxHeldS: notNegative.max(600),
+  /** The climb is taken over this window, s. */
+  climbWindowS: positive.max(600),
+})
+
+export const forecastRulesSchema = z.strictObject({
+  /** A firing off the plan is taken to come back to it over this long, or slower if the climb maximum asks it, min. */
+  rejoinMin: positive.max(60),
+  /** A target further away than this is not forecast, min. */
+  horizonMin: positive.max(1440),
+})
+
+export const siteRulesSchema = z.strictObject({
+  dose: doseRulesSchema,
+  indices: indexRulesSchema,
+  stave: staveRulesSchema,
+  errors: errorRulesSchema,
+  gaps: gapRulesSchema,
+  limits: limitRulesSchema,
+  forecast: forecastRulesSchema,
+  /** A marked turn-over silences NO READING for this long, s; the gap still counts. */
+  noReadingSilenceS: notNegative.max(600),
+  /** Recipe tolerance when the recipe sets none, log10 of dose. */
+  doseToleranceLog10: positive.max(1),
+  /** Shortest pull at the bend when the recipe sets none, min. */
+  bendMin: notNegative.max(240),
+})
+
+export type SiteRules = z.infer<typeof siteRulesSchema>
+
+/** The product's defaults: SCIENCE §§2, 3 and 5. A site changes them by writing a new, numbered version. */
+export const defaultSiteRules: SiteRules = {
+  dose: { refTempC: 200, zC: 34, baseTempC: 120 },
+  indices: { slowJPerMol: 76_000, fastJPerMol: 151_700 },
+  stave: {
+    toastDepthDoseMin: 0.1,
+    thicknessMm: 27,
+    specificGravity: 0.64,
+    moisturePercent: 20,
+    roomTempC: 20,
+    coldFaceHWPerM2K: 10,
+    probeDepthErrorMm: 0.5,
+    diffusivityErrorShare: 0.2,
+  },
+  errors: { coldJunctionC: 0.5, mountC: 3, sameMountLog10: 0.045, isSameMountAssumed: true, driftC: 0.5 },
+  gaps: { gapFromSpacings: 3, interpolateUpToS: 30, widenUpToS: 180, incompleteAboveShare: 0.05 },
+  limits: { woodMaxHeldS: 10, climbWindowS: 60 },
+  forecast: { rejoinMin: 2, horizonMin: 240 },
+  noReadingSilenceS: 90,
+  doseToleranceLog10: 0.12,
+  bendMin: 10,
+}
