@@ -1,0 +1,64 @@
+import { AccountLinkEntity } from './account-link'
+import { AccountEntity } from './account'
+import { AuditEntryEntity } from './audit-entry'
+import { BatchEntity } from './batch'
+import { CueEntity } from './cue'
+import { CustomerEntity } from './customer'
+import { FiringPlacementEntity } from './firing-placement'
+import { FiringProbeEntity } from './firing-probe'
+import { FiringEntity } from './firing'
+import { GatewayBootEntity } from './gateway-boot'
+import { GatewayLossEntity } from './gateway-loss'
+import { GatewayTokenEntity } from './gateway-token'
+import { GatewayEntity } from './gateway'
+import { HearthEntity } from './hearth'
+import { MarkEntity } from './mark'
+import { PieceEntity } from './piece'
+import { ProbeCheckEntity } from './probe-check'
+import { ProbeEntity } from './probe'
+import { ReadingEntity } from './reading'
+import { RecipeVersionEntity } from './recipe-version'
+import { RecipeEntity } from './recipe'
+import { RefusedReadingEntity } from './refused-reading'
+import { ScoreEntity } from './score'
+import { SealEntity } from './seal'
+import { SessionEntity } from './session'
+import { SignInThrottleEntity } from './sign-in-throttle'
+import { SignatureEntity } from './signature'
+import { SiteSettingsEntity } from './site-settings'
+import { StageEntity } from './stage'
+import { WaterCheckEntity } from './water-check'
+
+/** Every entity, for the ORM's discovery. */
+export const entities = [
+  AccountLinkEntity,
+  AccountEntity,
+  AuditEntryEntity,
+  BatchEntity,
+  CueEntity,
+  CustomerEntity,
+  FiringPlacementEntity,
+  FiringProbeEntity,
+  FiringEntity,
+  GatewayBootEntity,
+  GatewayLossEntity,
+  GatewayTokenEntity,
+  GatewayEntity,
+  HearthEntity,
+  MarkEntity,
+  PieceEntity,
+  ProbeCheckEntity,
+  ProbeEntity,
+  ReadingEntity,
+  RecipeVersionEntity,
+  RecipeEntity,
+  RefusedReadingEntity,
+  ScoreEntity,
+  SealEntity,
+  SessionEntity,
+  SignInThrottleEntity,
+  SignatureEntity,
+  SiteSettingsEntity,
+  StageEntity,
+  WaterCheckEntity,
+]

@@ -1,0 +1,37 @@
+import type { InferEntity } from '@mikro-orm/core'
+import { defineEntity, p } from '@mikro-orm/core'
+
+export const MarkEntity = defineEntity({
+  name: 'Mark',
+  tableName: 'marks',
+  properties: {
+    id: p.uuid().primary(),
+    firingId: p.uuid(),
+    kind: p.enum([
+      'phase',
+      'stage',
+      'pull',
+      'stir',
+      'feed',
+      'mist',
+      'lid on',
+      'lid off',
+      'turn',
+      'turn over',
+      'call',
+      'note',
+      'swap',
+      'undone',
+    ]),
+    at: p.datetime(),
+    recordedAt: p.datetime(),
+    accountId: p.uuid(),
+    phase: p.enum(['preheating', 'bending', 'toasting', 'resting']).nullable(),
+    stagePosition: p.integer().nullable(),
+    call: p.enum(['early', 'right', 'late']).nullable(),
+    words: p.text().default(''),
+    replacesId: p.uuid().nullable(),
+  },
+})
+
+export type Mark = InferEntity<typeof MarkEntity>

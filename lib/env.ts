@@ -1,0 +1,27 @@
+import * as z from 'zod'
+import { shared } from '@/lib/runtime'
+
+const envSchema = z.object({
+  DATABASE_URL: z.string().min(1),
+  SESSION_SECRET: z.string().min(32),
+  APP_ORIGIN: z.url(),
+  PORT: z.coerce.number().int().min(1).max(65535).default(3000),
+  EMBERSTAVE_MODE: z.enum(['demo', 'dev', 'serve', 'test']).default('serve'),
+  SMTP_URL: z.string().optional(),
+  MAIL_FROM: z.string().default('Emberstave <emberstave@localhost>'),
+  MAIL_PAGE_URL: z.string().optional(),
+  DATA_DIR: z.string().default('.data'),
+  LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'silent']).default('info'),
+})
+
+export type Env = z.infer<typeof envSchema>
+
+/** The environment, checked once. @throws Error naming each variable that lacks or does not fit. */
+export function env(): Env {
+  return shared('env', () => {
+    const parsed = envSchema.safeParse(process.env)
+    if (parsed.success) return parsed.data
+    const lines = parsed.error.issues.map((issue) => `  ${issue.path.join('.')}: ${issue.message}`)
+    throw new Error(`The environment is not complete:\n${lines.join('\n')}`)
+  })
+}

@@ -1,0 +1,182 @@
+import * as z from 'zod'
+
+export const pieceKinds = ['barrel', 'head'] as const
+export const versionStates = ['draft', 'in review', 'approved', 'superseded', 'withdrawn'] as const
+export const leadHeights = ['bilge', 'quarter', 'head end', 'head'] as const
+export const leadMountings = ['wedge', 'drilled', 'clamped'] as const
+export const preheatMethods = ['spray', 'immersion', 'steam', 'none'] as const
+export const cueActions = ['stir', 'feed', 'mist', 'lid on', 'lid off', 'turn', 'turn over', 'look'] as const
+export const stageKinds = ['ramp', 'hold'] as const
+
+/** A number within bounds, with the sentence that names both. */
+function bounded(low: number, high: number, unit: string) {
+  const sentence = `Give a number from ${low} to ${high}${unit === '' ? '' : ` ${unit}`}.`
+  return z.number(sentence).min(low, sentence).max(high, sentence)
+}
+
+function words(low: number, high: number) {
+  const sentence = low === 0 ? `At most ${high} letters.` : `Give ${low} to ${high} letters.`
+  return z.string(sentence).trim().min(low, sentence).max(high, sentence)
+}
+
+export const cueSchema = z.strictObject({
+  action: z.enum(cueActions, `Choose one of ${cueActions.join(', ')}.`),
+  /** Minutes from the stage's start. */
+  minute: bounded(0, 240, 'min'),
+  words: words(0, 80).default(''),
+})
+
+export const stageSchema = z.strictObject({
+  name: words(1, 40),
+  kind: z.enum(stageKinds, 'Choose ramp or hold.'),
+  /** Wood temperature at the lead probe's depth at the stage's end; a hold keeps the one before it. */
+  targetTempC: bounded(0, 280, '°C'),
+  coalsTargetTempC: bounded(0, 1100, '°C').nullable().default(null),
+  minutes: bounded(0.5, 240, 'min'),
+  bandC: bounded(0.5, 60, '°C'),
+  lid: z.enum(['on', 'off'], 'Choose on or off.'),
+  cues: z.array(cueSchema).max(12, 'At most 12 cues in a stage.').default([]),
+})
+
+export const leadPlaceSchema = z.strictObject({
+  height: z.enum(leadHeights, `Choose one of ${leadHeights.join(', ')}.`),
+  side: words(1, 20),
+  depthMm: bounded(0, 60, 'mm'),
+  mounting: z.enum(leadMountings, `Choose one of ${leadMountings.join(', ')}.`),
+})
+
+/** Everything that a recipe version says; temperatures in °C, times in minutes, depths in mm. */
+const contentShape = z.strictObject({
+  pieceKind: z.enum(pieceKinds, 'Choose barrel or head.').default('barrel'),
+  sizeAndShape: words(1, 40),
+  thicknessMm: bounded(10, 60, 'mm'),
+  leadPlace: leadPlaceSchema,
+  preheat: z.strictObject({
+    moistureMinPercent: bounded(0, 60, '%'),
+    moistureMaxPercent: bounded(0, 60, '%'),
+    waterTempC: bounded(0, 100, '°C'),
+    method: z.enum(preheatMethods, `Choose one of ${preheatMethods.join(', ')}.`),
+    minutes: bounded(0, 240, 'min'),
+  }),
+  bend: z.strictObject({
+    minimumMinutes: bounded(0, 120, 'min').default(10),
+    woodLimitC: bounded(40, 260, '°C'),
+  }),
+  planStartTempC: bounded(-10, 260, '°C'),
+  stages: z.array(stageSchema).min(1, 'Add at least one stage.').max(24, 'At most 24 stages.'),
+  /** Minutes at the site's reference temperature; null takes the plan's own dose. */
+  doseTargetMinutes: z
+    .number()
+    .positive('Give a dose above 0, or leave it out to take it from the plan.')
+    .max(100_000, 'Give a dose up to 100,000 min.')
+    .nullable()
+    .default(null),
+  doseToleranceLog10: bounded(0.01, 1, '').default(0.12),
+  limits: z.strictObject({
+    woodMaximumC: bounded(100, 300, '°C'),
+    climbMaximumCPerMin: bounded(0.5, 60, '°C a minute'),
+    spreadC: bounded(0.5, 60, '°C'),
+  }),
+  restMinutes: bounded(0, 240, 'min'),
+  flavourIntent: words(0, 2000).default(''),
+  notes: words(0, 4000).default(''),
+})
+
+export type RecipeContent = z.infer<typeof contentShape>
+export type RecipeStage = z.infer<typeof stageSchema>
+export type Cue = z.infer<typeof cueSchema>
+export type LeadPlace = z.infer<typeof leadPlaceSchema>
+export type VersionState = (typeof versionStates)[number]
+
+/** What must hold between fields: one sentence beside the field that should change. */
+function checkAcross(content: RecipeContent, context: z.RefinementCtx): void {
+  const fault = (path: (string | number)[], message: string) =>
+    context.addIssue({ code: 'custom', path, message })
+  if (content.preheat.moistureMinPercent > content.preheat.moistureMaxPercent) {
+    fault(['preheat', 'moistureMaxPercent'], 'The upper moisture is below the lower one.')
+  }
+  if (content.leadPlace.depthMm >= content.thicknessMm) {
+    fault(['leadPlace', 'depthMm'], `The lead probe must sit inside the ${content.thicknessMm} mm of wood.`)
+  }
+  let reachedC = content.planStartTempC
+  content.stages.forEach((stage, index) => {
+    if (stage.kind === 'hold' && stage.targetTempC !== reachedC) {
+      fault(
+        ['stages', index, 'targetTempC'],
+        `A hold keeps the ${reachedC} °C reached before it. Make it a ramp to change it.`,
+      )
+    }
+    if (stage.targetTempC > content.limits.woodMaximumC) {
+      fault(['stages', index, 'targetTempC'], `Above the wood maximum of ${content.limits.woodMaximumC} °C.`)
+    }
+    if (
+      stage.kind === 'ramp' &&
+      Math.abs(stage.targetTempC - reachedC) / stage.minutes > content.limits.climbMaximumCPerMin
+    ) {
+      fault(
+        ['stages', index, 'minutes'],
+        `Climbs faster than ${content.limits.climbMaximumCPerMin} °C a minute. Give it more time.`,
+      )
+    }
+    stage.cues.forEach((cue, cueIndex) => {
+      if (cue.minute > stage.minutes) {
+        fault(['stages', index, 'cues', cueIndex, 'minute'], `After the stage's end at ${stage.minutes} min.`)
+      }
+    })
+    reachedC = stage.targetTempC
+  })
+}
+
+export const recipeContentSchema = contentShape.superRefine(checkAcross)
+
+export const createRecipeSchema = z.strictObject({
+  name: words(1, 80),
+  customerId: z.uuid().nullable().default(null),
+  content: recipeContentSchema,
+})
+
+export const updateVersionSchema = z.strictObject({
+  /** The revision that the editor began from; a later one on the server answers 409 with both sides. */
+  revision: z.number().int().positive(),
+  content: recipeContentSchema,
+})
+
+/** A recipe version as it leaves the server. */
+export const recipeVersionSchema = z.object({
+  id: z.uuid(),
+  recipeId: z.uuid(),
+  recipeName: z.string(),
+  number: z.number().int(),
+  state: z.enum(versionStates),
+  revision: z.number().int(),
+  author: z.object({ id: z.uuid(), name: z.string() }),
+  basedOnVersionId: z.uuid().nullable(),
+  content: recipeContentSchema,
+  /** Dose of the plan, minutes at the site's reference temperature. */
+  planDoseMinutes: z.number(),
+  /** The target that a firing is held to: the set one, or the plan's. */
+  targetDoseMinutes: z.number(),
+  totalMinutes: z.number(),
+  createdAt: z.iso.datetime(),
+  updatedAt: z.iso.datetime(),
+  sentAt: z.iso.datetime().nullable(),
+  approvedAt: z.iso.datetime().nullable(),
+  approvedBy: z.string().nullable(),
+  returnedAt: z.iso.datetime().nullable(),
+  returnReason: z.string().nullable(),
+  withdrawnAt: z.iso.datetime().nullable(),
+  withdrawReason: z.string().nullable(),
+})
+
+export type RecipeVersionDto = z.infer<typeof recipeVersionSchema>
+
+/** What a firing keeps for ever: the version as it was when preheat began. */
+export const recipeCopySchema = z.strictObject({
+  recipeId: z.uuid(),
+  recipeName: z.string(),
+  versionId: z.uuid(),
+  versionNumber: z.number().int(),
+  content: recipeContentSchema,
+})
+
+export type RecipeCopy = z.infer<typeof recipeCopySchema>

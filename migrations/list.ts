@@ -1,0 +1,18 @@
+import { M0001AccountsSiteAudit } from './m0001-accounts-site-audit'
+import { M0002HearthsGatewaysProbes } from './m0002-hearths-gateways-probes'
+import { M0003Recipes } from './m0003-recipes'
+import { M0004BatchesPieces } from './m0004-batches-pieces'
+import { M0005FiringsMarks } from './m0005-firings-marks'
+import { M0006ReadingsSeals } from './m0006-readings-seals'
+import { M0007Scores } from './m0007-scores'
+
+/** In the order in which they run; a landed migration is never edited. */
+export const migrationsList = [
+  { name: 'm0001-accounts-site-audit', class: M0001AccountsSiteAudit },
+  { name: 'm0002-hearths-gateways-probes', class: M0002HearthsGatewaysProbes },
+  { name: 'm0003-recipes', class: M0003Recipes },
+  { name: 'm0004-batches-pieces', class: M0004BatchesPieces },
+  { name: 'm0005-firings-marks', class: M0005FiringsMarks },
+  { name: 'm0006-readings-seals', class: M0006ReadingsSeals },
+  { name: 'm0007-scores', class: M0007Scores },
+]
