@@ -48,10 +48,13 @@ export const readingSchema = z
     error: 'Give a voltage (emf) or a temperature (tempC), not both',
     path: ['tempC'],
   })
-  .refine((reading) => reading.emf !== undefined || reading.tempC !== undefined || reading.flag !== undefined, {
-    error: 'Give a voltage (emf), a temperature (tempC) or a flag',
-    path: ['emf'],
-  })
+  .refine(
+    (reading) => reading.emf !== undefined || reading.tempC !== undefined || reading.flag !== undefined,
+    {
+      error: 'Give a voltage (emf), a temperature (tempC) or a flag',
+      path: ['emf'],
+    },
+  )
 
 /** Numbers that this boot has used and will never send: both ends included. */
 export const lossSchema = z
