@@ -1,0 +1,23 @@
+export type ClusterName = 'main' | 'test' | 'bench'
+
+export type Cluster = {
+  name: ClusterName
+  folder: string
+  bin: string
+  port: number
+  passwords: { superuser: string; owner: string; app: string }
+}
+
+export declare const OWNER_ROLE: 'emberstave_owner'
+export declare const APP_ROLE: 'emberstave_app'
+
+export declare function startCluster(
+  name: ClusterName,
+  options?: { fast?: boolean },
+): Promise<Cluster & { started: boolean }>
+export declare function stopCluster(cluster: Cluster): Promise<boolean>
+export declare function databaseUrl(
+  cluster: Cluster,
+  role: 'superuser' | 'owner' | 'app',
+  database: string,
+): string

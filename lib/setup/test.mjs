@@ -1,0 +1,97 @@
+import { mkdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
+import { join } from 'node:path'
+import { chromium } from './chromium.mjs'
+import { ensureBuild } from './build.mjs'
+import { holdLock } from './lock.mjs'
+import { ensurePackages } from './packages.mjs'
+import { dataDir, makeDataDir, root } from './paths.mjs'
+import { startCluster, stopCluster } from './postgres.mjs'
+import { run } from './run.mjs'
+import { main, say, sayFailure, sayToStandardError } from './say.mjs'
+import { testDatabaseEnvironment } from './test-environment.mjs'
+import { countTests } from './test-count.mjs'
+
+const folder = join(dataDir, 'test')
+const reportPath = join(folder, 'results.json')
+const summaryPath = join(folder, 'summary.txt')
+
+await main(() => (process.argv.includes('--services') ? services() : test(process.argv.slice(2))))
+
+/** For work on single tests: the cluster is started and left running, and its environment printed for a shell. */
+async function services() {
+  sayToStandardError()
+  await ensurePackages()
+  const environment = testDatabaseEnvironment(await startCluster('test', { fast: true }))
+  for (const [name, value] of Object.entries(environment)) process.stdout.write(`export ${name}='${value}'\n`)
+}
+
+/** The whole set, or what the arguments choose; its last line is `N passed, N failed`. */
+async function test(args) {
+  let counts = { passed: 0, failed: 1 }
+  try {
+    makeDataDir()
+    await holdLock('test', 'npm test')
+    mkdirSync(folder, { recursive: true })
+    for (const path of [reportPath, summaryPath]) rmSync(path, { force: true })
+    counts = await setUpAndRun(args)
+  } catch (error) {
+    sayFailure(error)
+  }
+  const summary = `${counts.passed} passed, ${counts.failed} failed`
+  writeFileSync(summaryPath, `${summary}\n`)
+  process.stdout.write(`${summary}\n`)
+  return counts.failed > 0 || counts.passed === 0 ? 1 : 0
+}
+
+async function setUpAndRun(args) {
+  await ensurePackages()
+  const cluster = await startCluster('test', { fast: true })
+  try {
+    const browser = wantsJourneys(args) ? await browserEnvironment() : {}
+    say('running the tests')
+    const environment = {
+      ...process.env,
+      ...testDatabaseEnvironment(cluster),
+      ...browser,
+      NEXT_TELEMETRY_DISABLED: '1',
+    }
+    return await runVitest(args, environment)
+  } finally {
+    // Another run may have joined the cluster in the meantime; it is then left to it.
+    if (cluster.started && (await stopCluster(cluster))) say('stopped PostgreSQL (test)')
+  }
+}
+
+async function runVitest(args, environment) {
+  const vitest = join(root, 'node_modules', 'vitest', 'vitest.mjs')
+  const reporters = ['--reporter=default', '--reporter=json', `--outputFile.json=${reportPath}`]
+  const result = await run(process.execPath, [vitest, 'run', ...reporters, ...args], {
+    env: environment,
+    show: true,
+  })
+  return countTests(readReport(), result.code)
+}
+
+function readReport() {
+  try {
+    return JSON.parse(readFileSync(reportPath, 'utf8'))
+  } catch (error) {
+    if (error.code === 'ENOENT') return null
+    throw error
+  }
+}
+
+async function browserEnvironment() {
+  const path = await chromium()
+  await ensureBuild('npm test')
+  return { CHROMIUM_PATH: path }
+}
+
+/** False when the arguments choose projects, and the journeys (which need a browser and a build) are not among them. */
+function wantsJourneys(args) {
+  const chosen = args.flatMap((arg, index) => {
+    if (arg === '--project') return [args[index + 1] ?? '']
+    return arg.startsWith('--project=') ? [arg.slice('--project='.length)] : []
+  })
+  return chosen.length === 0 || chosen.some((name) => /journeys|[*!]/.test(name))
+}
