@@ -8,12 +8,12 @@ import { requireFinite, requireNotNegative, requirePositive, requireWithin } fro
 /**
  * Equilibrium moisture content, %, of wood in air: the Hailwood–Horrobin fit, Wood Handbook Eq. 4-5, SI coefficients,
  * within 0.06 of Table 4-2. M = 1800/W·[Kh/(1−Kh) + (K1Kh + 2K1K2K²h²)/(1 + K1Kh + K1K2K²h²)], h = RH/100.
- * Domain: 0–100 % relative humidity, −30…135 °C; the table spans −1.1…132 °C, and soon outside it the fit bends back.
+ * Domain: 0–100 % relative humidity, −30…132.3 °C; the table spans −1.1…132 °C, and soon outside it the fit bends back.
  *
  * @throws RangeError outside the domain
  */
 export function equilibriumMoisturePercent(tempC: number, relativeHumidityPercent: number): number {
-  const t = requireWithin('tempC', tempC, -30, 135)
+  const t = requireWithin('tempC', tempC, -30, 132.3)
   const h = requireWithin('relativeHumidityPercent', relativeHumidityPercent, 0, 100) / 100
   const w = 349 + 1.29 * t + 0.0135 * t * t
   const k = 0.805 + 0.000736 * t - 0.00000273 * t * t
