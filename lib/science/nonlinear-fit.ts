@@ -35,8 +35,9 @@ const SEARCHES: readonly Search[] = [
   { firstDamping: 1e-3, keepsLargestScale: true, mostChange: Infinity },
   { firstDamping: 1e-3, keepsLargestScale: false, mostChange: Infinity },
   { firstDamping: 10, keepsLargestScale: true, mostChange: Infinity },
+  { firstDamping: 1e-3, keepsLargestScale: true, mostChange: 0.1 },
+  { firstDamping: 1e-3, keepsLargestScale: true, mostChange: 0.3 },
   { firstDamping: 1e-3, keepsLargestScale: false, mostChange: 0.5 },
-  { firstDamping: 1e3, keepsLargestScale: false, mostChange: 0.2 },
 ]
 const MOST_STEPS = 3000
 
@@ -151,7 +152,7 @@ function searchFrom<X>(input: NonlinearFitInput<X>, first: State, search: Search
       return kept > 0 ? kept : 1
     })
     const scaled = withScaledColumns(jacobian, scale)
-    const move = dampedStep(scaled, state.residuals, damping)
+    const move = limitStep(dampedStep(scaled, state.residuals, damping), state.b, scale, search.mostChange)
     const trial =
       move &&
       residualsAt(
