@@ -22,6 +22,8 @@ const permissions = {
   'batches:read': ['administrator', 'master cooper', 'chemist', 'toaster', 'customer'],
   'batches:read all': ['administrator', 'master cooper', 'chemist', 'toaster'],
   'batches:write': ['master cooper'],
+  'customers:read': ['administrator', 'master cooper', 'chemist', 'toaster'],
+  'customers:write': ['administrator', 'master cooper'],
   'audit:read': ['administrator', 'master cooper'],
 } as const satisfies Record<string, readonly Role[]>
 
