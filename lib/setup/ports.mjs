@@ -1,5 +1,5 @@
 import net from 'node:net'
-import { changeKept } from './kept.mjs'
+import { changeKept, readKept } from './kept.mjs'
 import { cloneHash } from './paths.mjs'
 import { SetupError } from './say.mjs'
 
@@ -29,6 +29,11 @@ async function findFreePort(taken) {
   )
 }
 
+/** The port of last time for a purpose, whether or not it is in use now; 0 before the first. */
+export function lastPort(purpose) {
+  return readKept('ports.json', {})[purpose] ?? 0
+}
+
 /**
  * The port that this clone uses for a purpose: the one of last time while it is free, else a new free one,
  * remembered in `.data/ports.json`.
@@ -46,8 +51,8 @@ export async function keptPort(purpose, { avoid = [] } = {}) {
   return ports[purpose]
 }
 
-/** The application's port: `PORT`, else 3000; refused with what to do when it cannot be had. */
-export async function serverPort(command) {
+/** The application's port: `PORT`, else 3000. */
+export function wantedPort() {
   const wanted = process.env.PORT?.trim() || '3000'
   const port = Number(wanted)
   if (!/^\d+$/.test(wanted) || port < 1 || port > 65535) {
@@ -56,6 +61,12 @@ export async function serverPort(command) {
       'Give a whole number from 1 to 65535, for example PORT=3001.',
     )
   }
+  return port
+}
+
+/** The same, refused with what to do when it cannot be had. */
+export async function serverPort(command) {
+  const port = wantedPort()
   const trouble = await portTrouble(port)
   const other = port < 65535 ? port + 1 : 3001
   if (trouble === 'EACCES') {

@@ -1,3 +1,5 @@
+import { isEnding } from './ending.mjs'
+
 /** A failure that a person can mend: one clear sentence, and what to do about it. */
 export class SetupError extends Error {
   constructor(sentence, fix = '') {
@@ -42,9 +44,13 @@ export function sayFailure(error) {
 
 /** Runs a command's main function and turns a failure into its sentence and exit status 1. */
 export async function main(body) {
+  // Whoever reads our output may stop reading (a pipe to head); the work goes on.
+  process.stdout.on('error', () => {})
   try {
     process.exitCode = (await body()) ?? process.exitCode ?? 0
   } catch (error) {
+    // What fails because it was told to end is no news; the process is about to exit.
+    if (isEnding()) return
     sayFailure(error)
     process.exitCode = 1
   }

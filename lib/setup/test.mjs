@@ -5,7 +5,7 @@ import { ensureBuild } from './build.mjs'
 import { holdLock } from './lock.mjs'
 import { ensurePackages } from './packages.mjs'
 import { dataDir, makeDataDir, root } from './paths.mjs'
-import { startCluster, stopCluster } from './postgres.mjs'
+import { startCluster, withCluster } from './postgres.mjs'
 import { run } from './run.mjs'
 import { main, say, sayFailure, sayToStandardError } from './say.mjs'
 import { testDatabaseEnvironment } from './test-environment.mjs'
@@ -45,21 +45,12 @@ async function test(args) {
 
 async function setUpAndRun(args) {
   await ensurePackages()
-  const cluster = await startCluster('test', { fast: true })
-  try {
+  return withCluster('test', { fast: true }, async (cluster) => {
     const browser = wantsJourneys(args) ? await browserEnvironment() : {}
     say('running the tests')
-    const environment = {
-      ...process.env,
-      ...testDatabaseEnvironment(cluster),
-      ...browser,
-      NEXT_TELEMETRY_DISABLED: '1',
-    }
-    return await runVitest(args, environment)
-  } finally {
-    // Another run may have joined the cluster in the meantime; it is then left to it.
-    if (cluster.started && (await stopCluster(cluster))) say('stopped PostgreSQL (test)')
-  }
+    const told = { ...testDatabaseEnvironment(cluster), ...browser, NEXT_TELEMETRY_DISABLED: '1' }
+    return runVitest(args, { ...process.env, ...told })
+  })
 }
 
 async function runVitest(args, environment) {
