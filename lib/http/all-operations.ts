@@ -1,6 +1,8 @@
 import { operations as accounts } from '@/lib/accounts/operations'
+import { operations as audit } from '@/lib/audit/operations'
 import { operations as batches } from '@/lib/batches/operations'
 import { operations as probes } from '@/lib/probes/operations'
+import { operations as recipes } from '@/lib/recipes/operations'
 import { operations as site } from '@/lib/site/operations'
 import type { AnyOperation } from '@/lib/http/operation'
 
@@ -8,6 +10,13 @@ import type { AnyOperation } from '@/lib/http/operation'
  * Every operation of the HTTP surface, area by area: the OpenAPI document and the access test are made from this
  * list. A new area adds its import and its line.
  */
-const areas: readonly Readonly<Record<string, AnyOperation>>[] = [accounts, batches, probes, site]
+const areas: readonly Readonly<Record<string, AnyOperation>>[] = [
+  accounts,
+  audit,
+  batches,
+  probes,
+  recipes,
+  site,
+]
 
 export const allOperations: readonly AnyOperation[] = areas.flatMap((area) => Object.values(area))

@@ -3,14 +3,14 @@ import { AppError } from '@/lib/errors'
 const defaultLimit = 256 * 1024
 
 /**
- * The body as JSON, never more than `limit` bytes of it read into memory.
+ * The body as JSON, never more than `limit` bytes of it read into memory. A request that sends nothing and says no
+ * type is read as an empty object: what is optional may be left out altogether.
  * @throws AppError 'unsupported type', 'too large' or 'malformed'.
  */
 export async function readJsonBody(request: Request, limit: number = defaultLimit): Promise<unknown> {
   const type = request.headers.get('content-type') ?? ''
-  if (!/^application\/(?:[a-z.+-]+\+)?json\b/i.test(type)) {
-    throw new AppError('unsupported type', 'Send JSON, with the content type application/json.')
-  }
+  const unsupported = new AppError('unsupported type', 'Send JSON, with the content type application/json.')
+  if (type !== '' && !/^application\/(?:[a-z.+-]+\+)?json\b/i.test(type)) throw unsupported
   const tooLarge = new AppError(
     'too large',
     `The body is over ${Math.floor(limit / 1024)} KiB. Send less at once.`,
@@ -28,6 +28,10 @@ export async function readJsonBody(request: Request, limit: number = defaultLimi
       }
       chunks.push(part.value)
     }
+  }
+  if (type === '') {
+    if (size === 0) return {}
+    throw unsupported
   }
   try {
     return JSON.parse(new TextDecoder('utf-8', { fatal: true }).decode(Buffer.concat(chunks)))

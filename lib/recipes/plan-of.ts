@@ -31,7 +31,7 @@ export type PlannedStage = {
 }
 
 /** The plan's band at one instant; two points share an instant where one stage's band ends and the next begins. */
-export type BandPoint = { timeS: number; lowC: number; highC: number }
+export type BandPoint = { timeS: number; lowC: number; midC: number; highC: number }
 
 export type Plan = {
   points: CurvePoint[]
@@ -111,6 +111,7 @@ function stageBand(stage: PlannedStage): BandPoint[] {
   const at = (timeS: number, tempC: number): BandPoint => ({
     timeS,
     lowC: tempC - stage.bandHalfWidthC,
+    midC: tempC,
     highC: tempC + stage.bandHalfWidthC,
   })
   return [at(stage.startS, stage.startTempC), at(stage.endS, stage.endTempC)]

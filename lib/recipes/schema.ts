@@ -135,10 +135,52 @@ export const createRecipeSchema = z.strictObject({
   content: recipeContentSchema,
 })
 
+export const createVersionSchema = z.strictObject({
+  /** Left out: the approved version, else the latest. */
+  fromVersionId: z.uuid('Name the version to start from.').nullish(),
+  /** Left out: what the version it starts from says. */
+  content: recipeContentSchema.optional(),
+})
+
+/** A revision that may be left out; given, it must be the server's. */
+const seenRevision = z.number('Give the revision you saw.').int().positive().optional()
+const password = z.string('Write your password again.').min(1, 'Write your password again.').max(200)
+
+export const sendForReviewSchema = z.strictObject({ revision: seenRevision })
+
+export const approveVersionSchema = z.strictObject({
+  password,
+  meaning: words(1, 200).default('I have checked this version and approve it for firing.'),
+  /** Needed when the wood may go above 230 °C. */
+  reason: words(0, 2000).optional(),
+  revision: seenRevision,
+})
+
+export const returnVersionSchema = z.strictObject({
+  reason: words(1, 2000),
+  revision: seenRevision,
+})
+
+export const withdrawVersionSchema = z.strictObject({
+  reason: words(1, 2000),
+  password,
+  meaning: words(1, 200).default('I withdraw this version: it may not be fired any more.'),
+})
+
+export const takeBackVersionSchema = z.strictObject({ revision: seenRevision })
+
 export const updateVersionSchema = z.strictObject({
   /** The revision that the editor began from; a later one on the server answers 409 with both sides. */
   revision: z.number().int().positive(),
   content: recipeContentSchema,
+})
+
+export const signatureSchema = z.object({
+  name: z.string(),
+  role: z.string(),
+  meaning: z.string(),
+  reason: z.string().nullable(),
+  signedAt: z.iso.datetime(),
 })
 
 /** A recipe version as it leaves the server. */
@@ -162,13 +204,51 @@ export const recipeVersionSchema = z.object({
   sentAt: z.iso.datetime().nullable(),
   approvedAt: z.iso.datetime().nullable(),
   approvedBy: z.string().nullable(),
+  supersededAt: z.iso.datetime().nullable(),
   returnedAt: z.iso.datetime().nullable(),
+  returnedBy: z.string().nullable(),
   returnReason: z.string().nullable(),
   withdrawnAt: z.iso.datetime().nullable(),
+  withdrawnBy: z.string().nullable(),
   withdrawReason: z.string().nullable(),
+  /** SHA-256 of the content's canonical JSON: what a signature of it carries. */
+  contentSha256: z.string(),
+  signatures: z.array(signatureSchema),
 })
 
 export type RecipeVersionDto = z.infer<typeof recipeVersionSchema>
+
+/** A recipe as it stands in a list, with the latest version that the reader may see. */
+export const recipeListItemSchema = z.object({
+  id: z.uuid(),
+  name: z.string(),
+  customerId: z.uuid().nullable(),
+  customerName: z.string().nullable(),
+  createdAt: z.iso.datetime(),
+  createdBy: z.string(),
+  versionCount: z.number().int(),
+  approvedVersion: z.object({ id: z.uuid(), number: z.number().int() }).nullable(),
+  latestVersion: recipeVersionSchema,
+})
+
+export type RecipeListItem = z.infer<typeof recipeListItemSchema>
+
+/** A recipe with every version that the reader may see, the newest first. */
+export const recipeSchema = recipeListItemSchema.extend({ versions: z.array(recipeVersionSchema) })
+
+export type RecipeDto = z.infer<typeof recipeSchema>
+
+/** A withdrawn version, with what waits for it and must be given another. */
+export const withdrawnVersionSchema = recipeVersionSchema.extend({
+  touched: z.object({
+    batches: z.array(z.object({ id: z.uuid(), number: z.number().int(), unfiredCount: z.number().int() })),
+    queuedFirings: z.array(z.object({ id: z.uuid(), serial: z.string() })),
+  }),
+})
+
+export type WithdrawnVersionDto = z.infer<typeof withdrawnVersionSchema>
+
+export const recipeSorts = ['name', '-name', 'updated', '-updated'] as const
 
 /** What a firing keeps for ever: the version as it was when preheat began. */
 export const recipeCopySchema = z.strictObject({
