@@ -32,7 +32,7 @@ export class M0005FiringsMarks extends Migration {
         outside_temp_c double precision check (outside_temp_c between -20 and 300),
         remarks text not null default '' check (char_length(remarks) <= 4000),
         revision integer not null default 1 check (revision > 0),
-        constraint firings_copy_check check (state = 'queued'
+        constraint firings_copy_check check (state = 'queued' or (state = 'abandoned' and preheat_at is null)
           or (recipe_copy is not null and recipe_sha256 is not null and site_settings_version is not null
             and preheat_at is not null and toaster_id is not null)),
         constraint firings_toast_check check (state not in ('toasting', 'resting') or toast_at is not null),
@@ -41,7 +41,7 @@ export class M0005FiringsMarks extends Migration {
         constraint firings_abandon_check check (state <> 'abandoned' or end_reason is not null),
         constraint firings_order_check check (
           (bend_at is null or bend_at >= preheat_at) and (toast_at is null or toast_at >= coalesce(bend_at, preheat_at))
-          and (rest_at is null or rest_at >= toast_at) and (ended_at is null or ended_at >= preheat_at))
+          and (rest_at is null or rest_at >= toast_at) and (ended_at is null or ended_at >= coalesce(preheat_at, queued_at)))
       );
       create unique index firings_one_live_per_piece on firings (piece_id)
         where state in ('preheating', 'bending', 'toasting', 'resting');

@@ -51,7 +51,7 @@ export async function createBatch(actor: Actor, input: z.infer<typeof createBatc
     await writeAuditEntry(
       em,
       actor,
-      'batch created',
+      'batch.created',
       { type: 'batch', id: batch.id },
       { pieces: input.pieceCount },
     )

@@ -28,7 +28,7 @@ export async function createGateway(
       createdAt: now(),
     })
     await em.persistAndFlush(gateway)
-    await writeAuditEntry(em, actor, 'gateway registered', { type: 'gateway', id: gateway.id }, { ...input })
+    await writeAuditEntry(em, actor, 'gateway.registered', { type: 'gateway', id: gateway.id }, { ...input })
     return { id: gateway.id }
   })
 }

@@ -53,7 +53,7 @@ export async function recordProbeCheck(actor: Actor, input: Input): Promise<{ id
     await writeAuditEntry(
       em,
       actor,
-      'probe checked',
+      'probe.checked',
       { type: 'probe', id: input.probeId },
       { kind: input.kind },
     )

@@ -32,7 +32,7 @@ export async function recordWaterCheck(
     await writeAuditEntry(
       em,
       actor,
-      'water checked',
+      'water.checked',
       { type: 'water check', id: check.id },
       { source: input.source },
     )

@@ -35,7 +35,7 @@ export async function saveHearth(
     await writeAuditEntry(
       em,
       actor,
-      hearth === null ? 'hearth added' : 'hearth changed',
+      hearth === null ? 'hearth.added' : 'hearth.changed',
       { type: 'hearth', id: saved.id },
       fields,
     )

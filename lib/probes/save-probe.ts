@@ -48,7 +48,7 @@ export async function saveProbe(
     await writeAuditEntry(
       em,
       actor,
-      probe === null ? 'probe added' : 'probe changed',
+      probe === null ? 'probe.added' : 'probe.changed',
       { type: 'probe', id: saved.id },
       fields,
     )

@@ -1,0 +1,144 @@
+import type { EntityManager } from '@mikro-orm/postgresql'
+import type * as z from 'zod'
+import type { Firing } from '@/entities/firing'
+import { FiringEntity } from '@/entities/firing'
+import type { Mark } from '@/entities/mark'
+import { MarkEntity } from '@/entities/mark'
+import { writeAuditEntry } from '@/lib/audit/write-entry'
+import type { Actor } from '@/lib/auth/actor'
+import { requirePermission, requirePerson } from '@/lib/auth/permissions'
+import { inTransaction } from '@/lib/db/orm'
+import { AppError, invalidField } from '@/lib/errors'
+import { canMove, isLive } from '@/lib/firings/firing-states'
+import { lockFiring } from '@/lib/firings/lock-firing'
+import { markInstant } from '@/lib/firings/mark-instant'
+import { readMarks } from '@/lib/firings/read-firing'
+import type { addMarkSchema, MarkDto } from '@/lib/firings/schema'
+import { notifyFiringChanged } from '@/lib/live/notify'
+import { recipeCopySchema } from '@/lib/recipes/schema'
+import { now } from '@/lib/runtime'
+
+type Input = z.infer<typeof addMarkSchema> & { firingId: string }
+
+/**
+ * Adds a mark. Marks are append-only and carry the client's own id: the same mark again is a success that changes
+ * nothing. Only phase marks change the firing's state. A mark with `replacesId` corrects one; 'undone' takes it back.
+ */
+export async function addMark(actor: Actor, input: Input): Promise<MarkDto> {
+  requirePermission(actor, 'firings:run trial')
+  const person = requirePerson(actor)
+  const { mark, isNew } = await inTransaction(async (em) => {
+    const firing = await lockFiring(em, input.firingId)
+    if (!firing.isTrial) requirePermission(actor, 'firings:run')
+    const known = await em.findOne(MarkEntity, { id: input.id })
+    if (known === null) await insertMark(em, firing, input, person.accountId)
+    else requireSameMark(known, input)
+    if (known === null) {
+      await writeAuditEntry(
+        em,
+        actor,
+        'firing.marked',
+        { type: 'firing', id: firing.id },
+        { markId: input.id },
+      )
+    }
+    const marks = await readMarks(em, firing.id)
+    return { mark: marks.find((one) => one.id === input.id), isNew: known === null }
+  })
+  if (mark === undefined)
+    throw new AppError('conflict', 'A mark of another firing has this id. Make a new one.')
+  if (isNew) notifyFiringChanged(input.firingId, input.kind === 'phase' ? 'phase' : 'mark')
+  return mark
+}
+
+async function insertMark(em: EntityManager, firing: Firing, input: Input, accountId: string): Promise<void> {
+  const isCorrection = input.replacesId !== undefined
+  if (!isLive(firing.state) && !(firing.state === 'finished' && (isCorrection || input.kind === 'note'))) {
+    throw new AppError(
+      'conflict',
+      `This firing is ${firing.state}. Only notes and corrections are added to it now.`,
+    )
+  }
+  const at = markInstant(input.at, { notBefore: firing.preheatAt })
+  const replaced = await findReplaced(em, firing, input)
+  requireWhatKindNeeds(firing, input)
+  em.create(MarkEntity, {
+    id: input.id,
+    firingId: firing.id,
+    kind: input.kind,
+    at,
+    recordedAt: now(),
+    accountId,
+    phase: input.kind === 'phase' ? (input.phase ?? null) : null,
+    stagePosition: input.stagePosition ?? null,
+    call: input.kind === 'call' ? (input.call ?? null) : null,
+    words: input.words,
+    replacesId: input.replacesId ?? null,
+  })
+  if (input.kind === 'phase' && input.phase !== undefined) movePhase(firing, input.phase, at, replaced)
+  em.assign(firing, { revision: firing.revision + 1 })
+  await em.flush()
+}
+
+async function findReplaced(em: EntityManager, firing: Firing, input: Input): Promise<Mark | null> {
+  if (input.replacesId === undefined) {
+    if (input.kind === 'undone') throw invalidField('replacesId', 'Say which mark is undone.')
+    return null
+  }
+  const replaced = await em.findOne(MarkEntity, { id: input.replacesId, firingId: firing.id })
+  if (replaced === null) throw invalidField('replacesId', 'There is no such mark in this firing.')
+  if ((await em.findOne(MarkEntity, { replacesId: replaced.id })) !== null) {
+    throw new AppError('conflict', 'This mark was corrected already. Correct the newest one.')
+  }
+  if (replaced.kind === 'phase' && !(input.kind === 'phase' && input.phase === replaced.phase)) {
+    throw invalidField(
+      'kind',
+      'A phase cannot be undone; its time can be corrected by a phase mark of the same phase.',
+    )
+  }
+  return replaced
+}
+
+function requireWhatKindNeeds(firing: Firing, input: Input): void {
+  if (input.kind === 'phase' && input.phase === undefined)
+    throw invalidField('phase', 'Say which phase begins.')
+  if (input.kind === 'call' && input.call === undefined)
+    throw invalidField('call', 'Choose early, right or late.')
+  if (input.kind !== 'stage' && input.kind !== 'call') return
+  if (input.stagePosition === undefined)
+    throw invalidField('stagePosition', 'Say which stage; the first is 1.')
+  const count = recipeCopySchema.parse(firing.recipeCopy).content.stages.length
+  if (input.stagePosition > count) throw invalidField('stagePosition', `The recipe has ${count} stages.`)
+  if (firing.toastAt === null) throw invalidField('kind', 'Stages are marked once the toast has started.')
+}
+
+const columnOf = {
+  preheating: 'preheatAt',
+  bending: 'bendAt',
+  toasting: 'toastAt',
+  resting: 'restAt',
+} as const
+
+function movePhase(firing: Firing, phase: keyof typeof columnOf, at: Date, replaced: Mark | null): void {
+  if (replaced === null) {
+    if (firing.state === phase) throw new AppError('conflict', `This firing is ${phase} already.`)
+    if (!canMove(firing.state, phase)) {
+      throw new AppError('conflict', `A firing that is ${firing.state} cannot go to ${phase}.`)
+    }
+    firing.state = phase
+  }
+  firing[columnOf[phase]] = at
+  const inOrder = [firing.preheatAt, firing.bendAt, firing.toastAt, firing.restAt, firing.endedAt]
+  const given = inOrder.filter((instant): instant is Date => instant !== null && instant !== undefined)
+  const isInOrder = given.every((instant, index) => index === 0 || instant >= (given[index - 1] ?? instant))
+  if (!isInOrder) throw invalidField('at', 'The phases would fall out of order at this time.')
+}
+
+function requireSameMark(known: Mark, input: Input): void {
+  const isSame =
+    known.firingId === input.firingId &&
+    known.kind === input.kind &&
+    (known.phase ?? undefined) === input.phase &&
+    (known.stagePosition ?? undefined) === input.stagePosition
+  if (!isSame) throw new AppError('conflict', 'Another mark has this id. Make a new id for a new mark.')
+}

@@ -1,0 +1,14 @@
+import type { Actor } from '@/lib/auth/actor'
+import { requirePermission } from '@/lib/auth/permissions'
+import { forkEm } from '@/lib/db/orm'
+import { requireReadableFiring } from '@/lib/firings/may-read-firing'
+import { readFiring } from '@/lib/firings/read-firing'
+import type { FiringDto } from '@/lib/firings/schema'
+
+/** One firing with its recipe copy, probes and marks. */
+export async function getFiring(actor: Actor, input: { id: string }): Promise<FiringDto> {
+  requirePermission(actor, 'firings:follow')
+  const firing = await readFiring(await forkEm(), input.id)
+  requireReadableFiring(actor, firing)
+  return firing
+}
