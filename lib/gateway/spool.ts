@@ -283,6 +283,11 @@ function loadBoots(files: SpoolFiles): Boot[] {
   }
   for (const boot of boots) {
     boot.losses = boot.losses.filter((loss) => loss.to > boot.ackedSeq)
+    // The note of an acknowledgement may be torn off while its readings are already removed: what is missing in front
+    // is taken as acknowledged. If it was not, the server's next answer says so, and then it is declared lost.
+    const firsts = boot.segments.filter((segment) => segment.lastSeq > 0).map((segment) => segment.firstSeq)
+    const firstHere = Math.min(...firsts, ...boot.losses.map((loss) => loss.from), boot.highestSeq + 1)
+    boot.ackedSeq = Math.max(boot.ackedSeq, firstHere - 1)
     declareMissing(files, boot)
   }
   return boots
