@@ -2,7 +2,6 @@ import type { EntityManager } from '@mikro-orm/postgresql'
 import { queryRows } from '@/lib/db/orm'
 import { AppError, invalidField } from '@/lib/errors'
 import type { RecipeContent } from '@/lib/recipes/schema'
-import { now } from '@/lib/runtime'
 
 export type StartProbe = {
   id: string
@@ -12,16 +11,17 @@ export type StartProbe = {
   side: string
   depth_mm: number
   mounting: string
+  may_replay: boolean
   due_at: Date | null
 }
 
 type Chosen = { lead: string; opposite: string | null; coals: string | null }
 
 const probeSelect = `
-  select p.id, p.name, p.usual_role as role, p.height, p.side, p.depth_mm, p.mounting,
+  select p.id, p.name, p.usual_role as role, p.height, p.side, p.depth_mm, p.mounting, g.may_replay,
          (select min(k.due_at) from (select distinct on (kind) due_at from probe_checks
            where probe_id = p.id order by kind, checked_at desc) k) as due_at
-    from probes p`
+    from probes p join gateways g on g.id = p.gateway_id`
 
 /** The probes of a firing: those chosen, or the hearth's usual ones. @throws AppError 'invalid' */
 export async function findStartProbes(
@@ -85,8 +85,7 @@ export function requireSamePlace(lead: StartProbe, place: RecipeContent['leadPla
 export type OutOfDate = { waterCheckId: string | null; faults: string[] }
 
 /** What is out of date: the water, the lead probe's check. Both may be overridden with a signature. */
-export async function findOutOfDate(em: EntityManager, lead: StartProbe): Promise<OutOfDate> {
-  const at = now()
+export async function findOutOfDate(em: EntityManager, lead: StartProbe, at: Date): Promise<OutOfDate> {
   const [water] = await queryRows<{ id: string; due_at: Date }>(
     em,
     'select id, due_at from water_checks where checked_at <= ? order by checked_at desc limit 1',

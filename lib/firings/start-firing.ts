@@ -28,8 +28,13 @@ import { currentSite } from '@/lib/site/current-site'
 
 type Input = z.infer<typeof startFiringSchema>
 
-/** How long ago a start may be marked. */
+/** How long ago a start may be marked, unless the lead probe's gateway may replay the past (imports, seeds, tests). */
 const startedAtMostAgoS = 600
+
+function startInstant(input: Input, lead: StartProbe): Date {
+  const notBefore = lead.may_replay ? null : new Date(now().getTime() - startedAtMostAgoS * 1000)
+  return markInstant(input.at, { notBefore })
+}
 
 /** Starts preheat: copies the recipe whole, places the piece on a hearth and gives it its probes. */
 export async function startFiring(actor: Actor, input: Input): Promise<FiringDto> {
@@ -42,7 +47,6 @@ export async function startFiring(actor: Actor, input: Input): Promise<FiringDto
 
 async function begin(person: PersonActor, input: Input): Promise<FiringDto> {
   return inTransaction(async (em) => {
-    const at = markInstant(input.at, { notBefore: new Date(now().getTime() - startedAtMostAgoS * 1000) })
     const { firing, version } = await takePiece(em, input)
     const hearth = await em.findOne(HearthEntity, { id: input.hearthId })
     if (hearth === null || !hearth.isActive) throw invalidField('hearthId', 'Choose a hearth that is in use.')
@@ -50,7 +54,8 @@ async function begin(person: PersonActor, input: Input): Promise<FiringDto> {
     const lead = probes.find((probe) => probe.role === 'lead')
     if (lead === undefined) throw invalidField('probes.lead', 'A firing needs its lead probe.')
     requireSamePlace(lead, version.content.leadPlace)
-    const outOfDate = await findOutOfDate(em, lead)
+    const at = startInstant(input, lead)
+    const outOfDate = await findOutOfDate(em, lead, at)
     const { copy, sha256 } = recipeCopyOf(version)
     await signOverride(em, person, input, outOfDate, { id: firing.id, sha256 })
     em.assign(firing, {

@@ -71,6 +71,17 @@ export const operations = {
     response: idSchema,
     status: 201,
   }),
+  updateGateway: defineOperation({
+    id: 'updateGateway',
+    method: 'PUT',
+    path: '/api/gateways/{id}',
+    summary: 'Rename a gateway or let it replay past instants',
+    tag,
+    access: rolesWith('room:write'),
+    params: idParams,
+    body: saveGatewaySchema,
+    response: idSchema,
+  }),
   listProbes: defineOperation({
     id: 'listProbes',
     method: 'GET',
