@@ -3,110 +3,143 @@ import type { Loss } from '@/lib/gateway/protocol'
 import { int2Array, int4Array, int8Array } from '@/lib/ingest/pg-arrays'
 import type { RawReading } from '@/lib/ingest/read-envelope'
 import { refusedJson } from '@/lib/ingest/refused-json'
+import type { Boot } from '@/lib/ingest/ingest-pool'
+import { rememberedProbes } from '@/lib/ingest/ingest-pool'
 import type { SeqRanges } from '@/lib/ingest/seq-ranges'
 import { parseSeqRanges, printSeqRanges } from '@/lib/ingest/seq-ranges'
 import type { KnownProbe, RefusedReading, SortedReadings } from '@/lib/ingest/sort-readings'
 
-/** The statements of one ingest transaction; named, so that a connection parses each once. */
+/** A boot's row, its gateway's probes and the statements that write; named, so that a connection parses each once. */
 
-export type Boot = {
-  no: number
-  received: SeqRanges
-  ackedSeq: number
-  clockOffsetMs: number
-  isNew: boolean
-}
+type Queryable = Pick<PoolClient, 'query'>
+type BootRow = { no: number; received: string; clock_offset_ms: number }
 
-type BootRow = { no: number; received: string; acked_seq: string; clock_offset_ms: number }
-
-/** The row of this boot, made when there is none, locked until the transaction ends. */
-export async function lockBoot(
-  client: PoolClient,
+/** The row of this boot, made when there is none; `lock` holds it until the transaction ends. */
+export async function readBoot(
+  client: Queryable,
   gatewayId: string,
   bootId: string,
   at: Date,
+  lock: boolean,
 ): Promise<Boot> {
-  const known = await selectBoot(client, gatewayId, bootId)
-  if (known !== undefined) return toBoot(known, false)
-  const made = await client.query(
+  const select = async () => {
+    const { rows } = await client.query<BootRow>(
+      `select no, received::text as received, clock_offset_ms
+         from gateway_boots where gateway_id = $1 and boot_id = $2 ${lock ? 'for update' : ''}`,
+      [gatewayId, bootId],
+    )
+    return rows[0]
+  }
+  const known = await select()
+  if (known !== undefined) return toBoot(known)
+  await client.query(
     `insert into gateway_boots (gateway_id, boot_id, first_seen_at, last_seen_at) values ($1, $2, $3, $3)
      on conflict (gateway_id, boot_id) do nothing`,
     [gatewayId, bootId, at],
   )
-  const row = await selectBoot(client, gatewayId, bootId)
-  if (row === undefined) throw new Error('the row of a boot was not there after it was made')
-  return toBoot(row, made.rowCount === 1)
+  const made = await select()
+  if (made === undefined) throw new Error('the row of a boot was not there after it was made')
+  return toBoot(made)
 }
 
-async function selectBoot(
-  client: PoolClient,
-  gatewayId: string,
-  bootId: string,
-): Promise<BootRow | undefined> {
-  const { rows } = await client.query<BootRow>({
-    name: 'lock-boot',
-    text: `select no, received::text as received, acked_seq, clock_offset_ms
-             from gateway_boots where gateway_id = $1 and boot_id = $2 for update`,
-    values: [gatewayId, bootId],
-  })
-  return rows[0]
-}
-
-function toBoot(row: BootRow, isNew: boolean): Boot {
+function toBoot(row: BootRow): Boot {
   return {
     no: row.no,
     received: parseSeqRanges(row.received),
-    ackedSeq: Number(row.acked_seq),
+    receivedText: row.received,
     clockOffsetMs: row.clock_offset_ms,
-    isNew,
   }
 }
 
 type ProbeRow = { id: string; no: number; is_own: boolean; is_retired: boolean }
 
-/** The gateway's own probes by id; others only when a reading names one. */
+/** How long a gateway's probes are taken as read: a retired probe is refused this much later at most. */
+const probesKnownMs = 2_000
+
+/** The gateway's own probes by id, and those of others that a reading names. */
 export async function probesOf(
-  client: PoolClient,
+  client: Queryable,
   gatewayId: string,
   readings: readonly RawReading[],
-): Promise<Map<string, KnownProbe>> {
-  const own = await client.query<ProbeRow>({
-    name: 'probes-of-gateway',
-    text: `select id, no, true as is_own, retired_at is not null as is_retired from probes where gateway_id = $1`,
-    values: [gatewayId],
-  })
-  const probes = new Map(own.rows.map((row) => [row.id, toKnownProbe(row)]))
+  atMs: number,
+): Promise<ReadonlyMap<string, KnownProbe>> {
+  const remembered = rememberedProbes()
+  let known = remembered.get(gatewayId)
+  if (known === undefined || Math.abs(atMs - known.readAtMs) > probesKnownMs) {
+    known = { readAtMs: atMs, probes: await readProbes(client, 'gateway_id = $1', [gatewayId]) }
+    remembered.set(gatewayId, known)
+  }
+  const { probes } = known
   const strangers = new Set<string>()
   for (const { probeId } of readings) {
     if (typeof probeId === 'string' && !probes.has(probeId)) strangers.add(probeId)
   }
-  if (strangers.size > 0) {
-    const others = await client.query<ProbeRow>(
-      `select id, no, false as is_own, retired_at is not null as is_retired
-         from probes where id::text = any($1::text[]) and gateway_id <> $2`,
-      [[...strangers].filter((id) => !id.includes('\0')).map((id) => id.toLowerCase()), gatewayId],
-    )
-    for (const row of others.rows) probes.set(row.id, toKnownProbe(row))
-  }
-  return probes
+  if (strangers.size === 0) return probes
+  const ids = [...strangers].filter((id) => !id.includes('\0')).map((id) => id.toLowerCase())
+  const named = await readProbes(client, 'id::text = any($2::text[])', [gatewayId, ids])
+  return new Map([...probes, ...named])
+}
+
+async function readProbes(
+  client: Queryable,
+  where: string,
+  values: [gatewayId: string, ids?: string[]],
+): Promise<Map<string, KnownProbe>> {
+  const { rows } = await client.query<ProbeRow>(
+    `select id, no, gateway_id = $1 as is_own, retired_at is not null as is_retired from probes where ${where}`,
+    values,
+  )
+  return new Map(rows.map((row) => [row.id, toKnownProbe(row)]))
 }
 
 function toKnownProbe(row: ProbeRow): KnownProbe {
   return { no: row.no, isOwn: row.is_own, isRetired: row.is_retired }
 }
 
-/** One statement for all rows; a column that is null throughout is one null, which unnest fills up. */
-export async function insertReadings(client: PoolClient, bootNo: number, sorted: SortedReadings): Promise<void> {
+export type BootChange = {
+  boot: Boot
+  gatewayId: string
+  received: SeqRanges
+  ackedSeq: number
+  clockOffsetMs: number
+  sorted: SortedReadings
+  at: Date
+}
+
+/**
+ * Writes the new readings and what the boot has received now, all in one statement, if the boot's row is still as it
+ * was read; answers false, and writes nothing, when another sender was faster. A column that is null throughout is
+ * one null, which unnest fills up. The gateway's own row is written at most once a second.
+ */
+export async function writeReadings(client: Queryable, change: BootChange): Promise<boolean> {
+  const { boot, sorted, at } = change
   const { rows } = sorted
-  await client.query({
-    name: 'insert-readings',
-    text: `insert into readings
-             (boot_no, seq, at_ms, probe_no, emf_tenth_uv, cold_centi_c, temp_centi_c, flag)
-           select $1, seq, at_ms, probe_no, emf, cold, temp, coalesce(flag, 0)
-             from unnest($2::int8[], $3::int8[], $4::int4[], $5::int4[], $6::int4[], $7::int4[], $8::int2[])
-               as r (seq, at_ms, probe_no, emf, cold, temp, flag)`,
+  const written = await client.query({
+    name: 'write-readings',
+    text: `with boot as (
+             update gateway_boots
+                set received = $2::int8multirange, acked_seq = $3, clock_offset_ms = $4, last_seen_at = $5
+              where no = $1 and received = $7::int8multirange returning no),
+           seen as (
+             update gateways set last_seen_at = $5, clock_offset_ms = $4
+              where id = $6 and exists (select from boot)
+                and (last_seen_at is null or last_seen_at < $5::timestamptz - interval '1 second'
+                  or clock_offset_ms is distinct from $4)),
+           added as (
+             insert into readings
+               (boot_no, seq, at_ms, probe_no, emf_tenth_uv, cold_centi_c, temp_centi_c, flag)
+             select boot.no, seq, at_ms, probe_no, emf, cold, temp, coalesce(flag, 0)
+               from boot, unnest($8::int8[], $9::int8[], $10::int4[], $11::int4[], $12::int4[], $13::int4[], $14::int2[])
+                 as r (seq, at_ms, probe_no, emf, cold, temp, flag))
+           select no from boot`,
     values: [
-      bootNo,
+      boot.no,
+      printSeqRanges(change.received),
+      change.ackedSeq,
+      change.clockOffsetMs,
+      at,
+      change.gatewayId,
+      boot.receivedText,
       int8Array(sorted.seqs),
       int8Array(rows.atMs),
       int4Array(rows.probeNo),
@@ -116,11 +149,12 @@ export async function insertReadings(client: PoolClient, bootNo: number, sorted:
       sorted.hasFlags ? int2Array(rows.flag) : null,
     ],
   })
+  return written.rows.length === 1
 }
 
 /** Keeps refused readings with their reasons; a number that was refused before keeps its first reason. */
 export async function insertRefused(
-  client: PoolClient,
+  client: Queryable,
   bootNo: number,
   refused: readonly RefusedReading[],
   at: Date,
@@ -141,7 +175,7 @@ export async function insertRefused(
 }
 
 export async function insertLosses(
-  client: PoolClient,
+  client: Queryable,
   bootNo: number,
   lost: readonly Loss[],
   at: Date,
@@ -159,19 +193,4 @@ export async function insertLosses(
       at,
     ],
   )
-}
-
-/** Writes what the boot has now; the gateway's own row at most once a second. */
-export async function updateBoot(client: PoolClient, gatewayId: string, boot: Boot, at: Date): Promise<void> {
-  await client.query({
-    name: 'update-boot',
-    text: `with seen as (
-             update gateways set last_seen_at = $5, clock_offset_ms = $4
-              where id = $6 and (last_seen_at is null or last_seen_at < $5::timestamptz - interval '1 second'
-                or clock_offset_ms is distinct from $4))
-           update gateway_boots
-              set received = $2::int8multirange, acked_seq = $3, clock_offset_ms = $4, last_seen_at = $5
-            where no = $1`,
-    values: [boot.no, printSeqRanges(boot.received), boot.ackedSeq, boot.clockOffsetMs, at, gatewayId],
-  })
 }

@@ -1,16 +1,33 @@
 import { Pool } from 'pg'
 import { env } from '@/lib/env'
 import { log } from '@/lib/log'
+import type { SeqRanges } from '@/lib/ingest/seq-ranges'
+import type { KnownProbe } from '@/lib/ingest/sort-readings'
 import { shared } from '@/lib/runtime'
+
+/** What this process last knew of a boot; the statement that writes checks that it still holds. */
+export type Boot = { no: number; received: SeqRanges; receivedText: string; clockOffsetMs: number }
+
+export type ProbesOfGateway = { readAtMs: number; probes: Map<string, KnownProbe> }
 
 /**
  * Connections for the path of readings, apart from the ORM's: a burst of readings never waits for pages, nor they
  * for it, and the driver's named statements are parsed once a connection. Several gateways commit side by side.
  */
-type Held = { pool: Pool | null; knownDays: Set<number> }
+type Held = {
+  pool: Pool | null
+  knownDays: Set<number>
+  boots: Map<string, Boot>
+  probes: Map<string, ProbesOfGateway>
+}
 
 function held(): Held {
-  return shared<Held>('ingest.pool', () => ({ pool: null, knownDays: new Set() }))
+  return shared<Held>('ingest.pool', () => ({
+    pool: null,
+    knownDays: new Set(),
+    boots: new Map(),
+    probes: new Map(),
+  }))
 }
 
 export function ingestPool(): Pool {
@@ -33,10 +50,20 @@ export function knownPartitionDays(): Set<number> {
   return held().knownDays
 }
 
+/** Boots by gateway and boot id. */
+export function rememberedBoots(): Map<string, Boot> {
+  return held().boots
+}
+
+/** Probes by gateway. */
+export function rememberedProbes(): Map<string, ProbesOfGateway> {
+  return held().probes
+}
+
 export async function closeIngestPool(): Promise<void> {
   const holder = held()
   const pool = holder.pool
   holder.pool = null
-  holder.knownDays.clear()
+  for (const known of [holder.knownDays, holder.boots, holder.probes]) known.clear()
   await pool?.end()
 }

@@ -88,7 +88,8 @@ function isUsualGuid(text: string): boolean {
 /** `2026-03-01T10:00:00.000Z` of the day last passed by the schema, in ms since 1970; NaN for anything else. */
 function readUsualInstant(text: string): number {
   if (text.length !== 24 || !text.startsWith(knownDay.text) || knownDay.text === '') return NaN
-  if (text[10] !== 'T' || text[13] !== ':' || text[16] !== ':' || text[19] !== '.' || text[23] !== 'Z') return NaN
+  if (text[10] !== 'T' || text[13] !== ':' || text[16] !== ':' || text[19] !== '.' || text[23] !== 'Z')
+    return NaN
   const hours = digit(text, 11) * 10 + digit(text, 12)
   const minutes = digit(text, 14) * 10 + digit(text, 15)
   const seconds = digit(text, 17) * 10 + digit(text, 18)

@@ -8,6 +8,9 @@ const untakeable = /\\u(?:0000|d[89a-f])/i
 export function refusedJson(reading: RawReading): string {
   const text = JSON.stringify(reading)
   if (text.length <= mostLetters && !untakeable.test(text)) return text
-  const shown = text.slice(0, mostLetters).replaceAll(/[^\x20-\x7e]/g, '?').replaceAll('\\', '/')
+  const shown = text
+    .slice(0, mostLetters)
+    .replaceAll(/[^\x20-\x7e]/g, '?')
+    .replaceAll('\\', '/')
   return JSON.stringify({ seq: reading.seq, asText: shown })
 }

@@ -62,10 +62,16 @@ export function sortReadings(readings: readonly RawReading[], context: SortConte
     const reading = readings[i]
     if (reading === undefined || hasSeq(context.received, reading.seq)) continue
     if (reading.seq <= highest) {
-      seen ??= new Map(readings.slice(0, i).toReversed().map((earlier) => [earlier.seq, earlier]))
+      seen ??= new Map(
+        readings
+          .slice(0, i)
+          .toReversed()
+          .map((earlier) => [earlier.seq, earlier]),
+      )
       const first = seen.get(reading.seq)
       if (first !== undefined) {
-        if (!saysTheSame(first, reading)) refuse(sorted, reading, 'this number came twice with different content')
+        if (!saysTheSame(first, reading))
+          refuse(sorted, reading, 'this number came twice with different content')
         continue
       }
     }

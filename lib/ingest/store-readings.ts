@@ -2,21 +2,14 @@ import type { PoolClient } from 'pg'
 import { databaseErrorCode } from '@/lib/db/database-errors'
 import { AppError } from '@/lib/errors'
 import type { IngestAnswer, Loss } from '@/lib/gateway/protocol'
-import type { Boot } from '@/lib/ingest/boot-rows'
-import {
-  insertLosses,
-  insertReadings,
-  insertRefused,
-  lockBoot,
-  probesOf,
-  updateBoot,
-} from '@/lib/ingest/boot-rows'
-import { ensurePartitions, forgetPartitions, rememberPartitions } from '@/lib/ingest/ensure-partitions'
-import { ingestPool } from '@/lib/ingest/ingest-pool'
+import { insertLosses, insertRefused, probesOf, readBoot, writeReadings } from '@/lib/ingest/boot-rows'
+import { ensurePartitions, forgetPartitions } from '@/lib/ingest/ensure-partitions'
+import type { Boot } from '@/lib/ingest/ingest-pool'
+import { ingestPool, rememberedBoots } from '@/lib/ingest/ingest-pool'
 import { noteLateRows } from '@/lib/ingest/late-rows'
 import type { Envelope } from '@/lib/ingest/read-envelope'
 import { readEnvelope } from '@/lib/ingest/read-envelope'
-import { ackedSeqOf, runsOf, uniteSeqRanges } from '@/lib/ingest/seq-ranges'
+import { ackedSeqOf, printSeqRanges, runsOf, uniteSeqRanges } from '@/lib/ingest/seq-ranges'
 import type { SortedReadings } from '@/lib/ingest/sort-readings'
 import { sortReadings } from '@/lib/ingest/sort-readings'
 import type { GatewayIdentity } from '@/lib/ingest/verify-device-token'
@@ -31,28 +24,27 @@ const largestOffsetMs = 2_147_483_647
 const mostRanges = 10_000
 /** What PostgreSQL says when no partition fits. */
 const noPartition = '23514'
+/** Boots that this process remembers; a gateway has one at a time. */
+const mostBoots = 500
 
-type Stored = { answer: IngestAnswer; sorted: SortedReadings; madeDays: number[] }
+type Message = { gateway: GatewayIdentity; envelope: Envelope; offsetMs: number; at: Date }
+type Stored = { answer: IngestAnswer; sorted: SortedReadings }
 
 /**
  * Stores one message of a gateway and answers how far its boot is acknowledged; returns only after the commit.
  * Readings that cannot be measurements are refused by number and kept with their reason; the others are stored. A
  * repeat changes nothing. The rows that were new go to the live hub.
  *
+ * What was received is remembered in this process and compared again by the statement that writes, so the usual
+ * message is one statement. When another sender was faster, the boot's row is locked and read first.
+ *
  * @throws AppError 'invalid' (422) when the message as a whole does not fit
  */
 export async function storeReadings(gateway: GatewayIdentity, message: unknown): Promise<IngestAnswer> {
-  const envelope = readEnvelope(message)
   const at = now()
-  const offsetMs = clockOffsetOf(gateway, envelope, at.getTime())
-  const store = () => inIngestTransaction((client) => storeMessage(client, gateway, envelope, offsetMs, at))
-  const stored = await store().catch((error: unknown) => {
-    // A partition that this process knew was dropped meanwhile: once more, asking for it.
-    if (databaseErrorCode(error) !== noPartition) throw error
-    forgetPartitions()
-    return store()
-  })
-  rememberPartitions(stored.madeDays)
+  const envelope = readEnvelope(message)
+  const work: Message = { gateway, envelope, offsetMs: clockOffsetOf(gateway, envelope, at.getTime()), at }
+  const stored = await storeWithPartitions(work)
   if (stored.sorted.seqs.length > 0) {
     noteLateRows(stored.sorted.rows, at.getTime())
     hubDoor().current?.takeRows(stored.sorted.rows)
@@ -67,6 +59,88 @@ function clockOffsetOf(gateway: GatewayIdentity, envelope: Envelope, atMs: numbe
   if (Math.abs(offsetMs) <= largestOffsetMs) return offsetMs
   const sentence = "The gateway's clock is more than 24 days from the server's. Set it, then send again."
   throw new AppError('invalid', sentence, { fields: { sentAt: sentence } })
+}
+
+async function storeWithPartitions(work: Message): Promise<Stored> {
+  try {
+    return await storeAtOnce(work)
+  } catch (error) {
+    // A partition that this process knew was dropped meanwhile: once more, asking for it.
+    if (databaseErrorCode(error) !== noPartition) throw error
+    forgetPartitions()
+    return storeAtOnce(work)
+  }
+}
+
+/** The usual way: by what is remembered of the boot, in one statement. */
+async function storeAtOnce(work: Message): Promise<Stored> {
+  const pool = ingestPool()
+  const boots = rememberedBoots()
+  const key = bootKey(work)
+  const boot =
+    boots.get(key) ?? (await readBoot(pool, work.gateway.gatewayId, work.envelope.bootId, work.at, false))
+  const plan = await planChange(pool, work, boot)
+  if (plan.sorted.refused.length > 0 || work.envelope.lost.length > 0) return storeLocked(work)
+  const isWritten = await writeReadings(pool, plan)
+  if (!isWritten) return storeLocked(work)
+  remember(key, plan)
+  return toStored(plan)
+}
+
+/** The careful way: the boot's row locked for a transaction that also keeps refusals and losses. */
+async function storeLocked(work: Message): Promise<Stored> {
+  const { gateway, envelope, at } = work
+  rememberedBoots().delete(bootKey(work))
+  const plan = await inIngestTransaction(async (client) => {
+    const boot = await readBoot(client, gateway.gatewayId, envelope.bootId, at, true)
+    const change = await planChange(client, work, boot)
+    const { refused } = change.sorted
+    if (refused.length > 0) await insertRefused(client, boot.no, refused, at)
+    if (envelope.lost.length > 0) await insertLosses(client, boot.no, envelope.lost, at)
+    if (!(await writeReadings(client, change))) throw new Error('the locked row of a boot has changed')
+    return change
+  })
+  remember(bootKey(work), plan)
+  return toStored(plan)
+}
+
+type Plan = Awaited<ReturnType<typeof planChange>>
+
+async function planChange(client: Pick<PoolClient, 'query'>, work: Message, boot: Boot) {
+  const { gateway, envelope, at } = work
+  const clockOffsetMs = offsetFor(boot, work.offsetMs)
+  const sorted = sortReadings(envelope.readings, {
+    received: boot.received,
+    probes: await probesOf(client, gateway.gatewayId, envelope.readings, at.getTime()),
+    clockOffsetMs,
+    nowMs: at.getTime(),
+    mayReplay: gateway.mayReplay,
+  })
+  await ensurePartitions(sorted.days)
+  const received = uniteSeqRanges(boot.received, newRanges(sorted, envelope.lost))
+  if (received.length > 2 * mostRanges) {
+    const sentence = `The numbers of this boot lie in over ${mostRanges} pieces. Send them in order.`
+    throw new AppError('invalid', sentence)
+  }
+  const ackedSeq = ackedSeqOf(received)
+  return { boot, gatewayId: gateway.gatewayId, received, ackedSeq, clockOffsetMs, sorted, at }
+}
+
+function toStored({ ackedSeq, sorted }: Plan): Stored {
+  return { answer: { ackedSeq, refused: sorted.refused.map(({ seq, reason }) => ({ seq, reason })) }, sorted }
+}
+
+function bootKey(work: Message): string {
+  return `${work.gateway.gatewayId} ${work.envelope.bootId}`
+}
+
+function remember(key: string, { boot, received, clockOffsetMs }: Plan): void {
+  const boots = rememberedBoots()
+  // Set anew, so that the one used longest ago stands first.
+  boots.delete(key)
+  boots.set(key, { no: boot.no, received, receivedText: printSeqRanges(received), clockOffsetMs })
+  const [oldest] = boots.keys()
+  if (boots.size > mostBoots && oldest !== undefined) boots.delete(oldest)
 }
 
 async function inIngestTransaction<T>(work: (client: PoolClient) => Promise<T>): Promise<T> {
@@ -85,41 +159,9 @@ async function inIngestTransaction<T>(work: (client: PoolClient) => Promise<T>):
   }
 }
 
-async function storeMessage(
-  client: PoolClient,
-  gateway: GatewayIdentity,
-  envelope: Envelope,
-  offsetMs: number,
-  at: Date,
-): Promise<Stored> {
-  const boot = await lockBoot(client, gateway.gatewayId, envelope.bootId, at)
-  const clockOffsetMs = offsetFor(boot, offsetMs)
-  const sorted = sortReadings(envelope.readings, {
-    received: boot.received,
-    probes: await probesOf(client, gateway.gatewayId, envelope.readings),
-    clockOffsetMs,
-    nowMs: at.getTime(),
-    mayReplay: gateway.mayReplay,
-  })
-  const madeDays = await ensurePartitions(client, sorted.days)
-  if (sorted.seqs.length > 0) await insertReadings(client, boot.no, sorted)
-  if (sorted.refused.length > 0) await insertRefused(client, boot.no, sorted.refused, at)
-  if (envelope.lost.length > 0) await insertLosses(client, boot.no, envelope.lost, at)
-  const received = uniteSeqRanges(boot.received, newRanges(sorted, envelope.lost))
-  if (received.length > 2 * mostRanges) {
-    throw new AppError('invalid', `The numbers of this boot lie in over ${mostRanges} pieces. Send them in order.`)
-  }
-  const ackedSeq = ackedSeqOf(received)
-  await updateBoot(client, gateway.gatewayId, { ...boot, received, ackedSeq, clockOffsetMs }, at)
-  return {
-    answer: { ackedSeq, refused: sorted.refused.map(({ seq, reason }) => ({ seq, reason })) },
-    sorted,
-    madeDays,
-  }
-}
-
+/** The first batch sets the offset; later ones only move it when it is off by more than a second. */
 function offsetFor(boot: Boot, offsetMs: number): number {
-  const hasMoved = boot.isNew || Math.abs(offsetMs - boot.clockOffsetMs) > offsetStepMs
+  const hasMoved = boot.received.length === 0 || Math.abs(offsetMs - boot.clockOffsetMs) > offsetStepMs
   return hasMoved ? offsetMs : boot.clockOffsetMs
 }
 
