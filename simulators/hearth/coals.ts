@@ -78,7 +78,7 @@ export function mistFace(coals: Coals) {
 /** Burning per kg of glowing coals relative to a clean, half-open fire without a lid. */
 export function burningShare(coals: Coals): number {
   const draught = 0.35 + 1.3 * coals.draught
-  return draught * (1 - 0.45 * coals.ash) * (coals.isLidOn ? 0.86 : 1) * Math.max(0.2, 1 + coals.brightening)
+  return draught * (1 - 0.45 * coals.ash) * (coals.isLidOn ? 0.94 : 1) * Math.max(0.2, 1 + coals.brightening)
 }
 
 /** Heat of `glowingKg` at a burning share, kW. */

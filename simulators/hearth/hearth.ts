@@ -315,8 +315,10 @@ function seepWater(fire: Fire, dtS: number) {
   fire.coals.filmKgPerM2 += seeping
 }
 
+/** In the bend a rose that is warm enough is set off the fire until it has cooled a little. */
 function isOverFire(state: HearthState): boolean {
-  return (state.phase === 'bending' || state.phase === 'toasting') && state.fire.liftedS === 0
+  if (state.phase === 'toasting') return state.fire.liftedS === 0
+  return state.phase === 'bending' && leadTempC(state.lead) < state.options.recipe.planStartTempC + 1
 }
 
 function stepFace(state: HearthState, stave: StaveState, exposure: number, dtS: number) {
@@ -411,7 +413,8 @@ const NEXT_PHASE: Record<HearthPhase, HearthPhase> = {
 
 function enterPhase(state: HearthState, phase: HearthPhase) {
   const { coals } = state.fire
-  if (state.phase === 'preheating' && phase === 'bending') coals.filmKgPerM2 = PREHEAT_FILM_KG_PER_M2
+  const isSoaked = state.phase === 'preheating' && state.options.recipe.preheat.minutes > 0
+  if (isSoaked) coals.filmKgPerM2 = PREHEAT_FILM_KG_PER_M2
   if (phase === 'toasting') {
     state.stageStartS = state.timeS
     state.stageIndex = 0

@@ -194,7 +194,7 @@ function practicedHeatKw(view: ToasterView, recipe: HearthRecipe, aheadS: number
   const tempC = planTempC(recipe, atS)
   const climbCPerMin = (planTempC(recipe, atS + 60) - planTempC(recipe, atS - 30)) / 1.5
   const soaked = 1 - 0.3 * clamp(atS / planDurationS(recipe), 0, 1)
-  const underLid = view.coals.isLidOn ? 0.87 : 1
+  const underLid = view.coals.isLidOn ? 0.86 : 1
   return underLid * soaked * (7.5 + 0.044 * (tempC - 50) + 0.8 * Math.max(0, climbCPerMin))
 }
 
