@@ -34,7 +34,7 @@ export const RecipeVersionEntity = defineEntity({
     doseTargetMinutes: p.double().nullable(),
     doseToleranceLog10: p.double(),
     woodMaximumC: p.double(),
-    climbMaximumCPerMin: p.double(),
+    climbMaximumCPerMin: p.double().name('climb_maximum_c_per_min'),
     spreadLimitC: p.double(),
     restMinutes: p.double(),
     flavourIntent: p.text().default(''),

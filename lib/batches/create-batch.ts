@@ -73,18 +73,26 @@ async function addPieces(em: EntityManager, batch: NewPieces): Promise<void> {
     `select nextval('piece_serial_seq') as no from generate_series(1, ?)`,
     [batch.count],
   )
-  numbers.forEach((row, index) => {
-    const pieceId = randomUUID()
+  const pieces = numbers.map((row, index) =>
     em.create(PieceEntity, {
-      id: pieceId,
+      id: randomUUID(),
       kind: batch.kind,
       serial: pieceSerial(site.serialPrefix, Number(row.no)),
       batchId: batch.id,
       position: index + 1,
       queuePosition: (last?.last ?? 0) + index + 1,
       createdAt: now(),
+    }),
+  )
+  // Foreign keys are plain columns here, so the ORM does not know that a firing needs its piece first.
+  await em.flush()
+  for (const piece of pieces) {
+    em.create(FiringEntity, {
+      pieceId: piece.id,
+      recipeVersionId: batch.versionId,
+      state: 'queued',
+      queuedAt: now(),
     })
-    em.create(FiringEntity, { pieceId, recipeVersionId: batch.versionId, state: 'queued', queuedAt: now() })
-  })
+  }
   await em.flush()
 }
