@@ -1,8 +1,18 @@
-/** An interval about a dose, minutes at the reference temperature; half-widths in log10, k = 2. */
+import { requireEqualLength, requireNotNegative } from './domain'
+import type { GapExtremes } from './gaps'
+import type { DoseModel } from './heat-dose'
+import { createDoseAccumulator } from './heat-dose'
+import type { SiteRules } from './site-rules'
+import type { ThermocoupleType } from './thermocouple'
+import { toleranceC } from './thermocouple'
+
+/**
+ * An interval about a dose, minutes at the reference temperature; half-widths in log10, k = 2. `log10Half` is the
+ * wider side. A half-width is null when it has no number: the dose is 0, or its low end is.
+ */
 export type DoseBounds = {
   lowMin: number
   highMin: number
-  /** Half-widths in log10, below and above; `log10Half` is the wider. Null when the dose is 0. */
   log10Low: number | null
   log10High: number | null
   log10Half: number | null
@@ -18,4 +28,222 @@ export type DoseResult = {
   sameMount: DoseBounds
   /** The same-mount figure is the assumed one, not the site's own. */
   isAssumed: boolean
+}
+
+/** A probe check that the readings were corrected by. */
+export type ProbeCheck = {
+  /** Half-width of the corrected reading, °C, k = 2, between the outermost check points. */
+  uncertaintyC: number
+  lowTempC: number
+  highTempC: number
+  isExpired: boolean
+}
+
+export type ProbeErrorFacts = { type: ThermocoupleType; iecClass: 1 | 2 | 3; check: ProbeCheck | null }
+
+export type DoseIntervalInput = {
+  /** A curve without holes; straight between points. */
+  timeS: ArrayLike<number>
+  tempC: ArrayLike<number>
+  model: DoseModel
+  probe: ProbeErrorFacts
+  errors: SiteRules['errors']
+  /** Null: no gap that widens. */
+  gaps: GapExtremes | null
+}
+
+/**
+ * Error of a probe's reading at a temperature, °C, k = 2: the check's uncertainty where a check that has not expired
+ * spans from `fromTempC` to `toTempC`, otherwise the limit of its IEC class at `toTempC`; null where the class makes
+ * no claim.
+ */
+export function probeErrorC(probe: ProbeErrorFacts, fromTempC: number, toTempC: number): number | null {
+  const { check } = probe
+  if (check !== null && !check.isExpired && check.lowTempC <= fromTempC && check.highTempC >= toTempC) {
+    return requireNotNegative('uncertaintyC', check.uncertaintyC)
+  }
+  return toleranceC(probe.type, probe.iecClass, toTempC)
+}
+
+/**
+ * Doses of one curve as if every reading were off by each offset: ∫ 10^((T + d − Tref)/z) dt where T + d is at or
+ * above the base.
+ *
+ * The curve is integrated again, shifted, not scaled by 10^(d/z): near the base an offset brings minutes in or out.
+ * One pass serves all offsets, since dose(T + d, base b) = 10^(d/z) · dose(T, base b − d) exactly.
+ *
+ * @throws RangeError as `createDoseAccumulator` does
+ */
+export function shiftedDosesMin(
+  model: DoseModel,
+  timeS: ArrayLike<number>,
+  tempC: ArrayLike<number>,
+  offsetsC: readonly number[],
+): number[] {
+  requireEqualLength('timeS', timeS, 'tempC', tempC)
+  const scales = offsetsC.map((offsetC) => Math.exp((Math.LN10 * offsetC) / model.zC))
+  const { baseTempC } = model
+  if (baseTempC === undefined) {
+    const dose = createDoseAccumulator(model)
+    for (let i = 0; i < timeS.length; i += 1) dose.add(timeS[i] ?? NaN, tempC[i] ?? NaN)
+    return scales.map((scale) => scale * dose.minutes)
+  }
+  const doses = offsetsC.map((offsetC) => createDoseAccumulator({ ...model, baseTempC: baseTempC - offsetC }))
+  const lowestBaseC = baseTempC - Math.max(...offsetsC)
+  const highestBaseC = baseTempC - Math.min(...offsetsC)
+  const common = createDoseAccumulator({ ...model, baseTempC: lowestBaseC })
+  let wasAbove = false
+  let wasBelow = false
+  for (let i = 0; i < timeS.length; i += 1) {
+    const time = timeS[i] ?? NaN
+    const temp = tempC[i] ?? NaN
+    const isAbove = temp >= highestBaseC
+    const isBelow = temp < lowestBaseC
+    // Far from every base all offsets integrate the same segment, so one sum is enough there.
+    if (!(isAbove && wasAbove)) {
+      common.break()
+      if (!(isBelow && wasBelow)) for (const dose of doses) addSegment(dose, timeS, tempC, i)
+    }
+    common.add(time, temp)
+    wasAbove = isAbove
+    wasBelow = isBelow
+  }
+  return doses.map((dose, i) => (scales[i] ?? NaN) * (dose.minutes + common.minutes))
+}
+
+function addSegment(
+  dose: ReturnType<typeof createDoseAccumulator>,
+  timeS: ArrayLike<number>,
+  tempC: ArrayLike<number>,
+  to: number,
+): void {
+  if (to === 0) return
+  dose.break()
+  dose.add(timeS[to - 1] ?? NaN, tempC[to - 1] ?? NaN)
+  dose.add(timeS[to] ?? NaN, tempC[to] ?? NaN)
+}
+
+/** Half-widths in log10 below and above; Infinity below when the low end is no dose at all. */
+type Half = { low: number; high: number }
+
+function combine(halves: readonly Half[]): Half {
+  return {
+    low: Math.sqrt(halves.reduce((sum, half) => sum + half.low * half.low, 0)),
+    high: Math.sqrt(halves.reduce((sum, half) => sum + half.high * half.high, 0)),
+  }
+}
+
+function boundsOf(doseMin: number, halves: readonly Half[]): DoseBounds {
+  const { low, high } = combine(halves)
+  const log10Low = Number.isFinite(low) ? low : null
+  return {
+    lowMin: log10Low === null ? 0 : doseMin * 10 ** -log10Low,
+    highMin: doseMin * 10 ** high,
+    log10Low,
+    log10High: high,
+    log10Half: log10Low === null ? null : Math.max(log10Low, high),
+  }
+}
+
+/**
+ * A dose with its two intervals, k = 2 (SCIENCE §2). Each error is one fixed offset for the whole firing, applied by
+ * integrating the shifted curve again; the half-widths so found are combined as squares in log10.
+ *
+ * *Absolute*: probe (its check, or its class), cold junction, mount, gaps. *Same mount*: the site's repeatability of
+ * placing the probe, and gaps; drift too once the site has measured its own, since the assumed figure covers it.
+ *
+ * @throws RangeError for no points, a time that falls, or values that are not finite
+ */
+export function doseInterval(input: DoseIntervalInput): DoseResult {
+  const { timeS, tempC, model, errors, gaps } = input
+  if (timeS.length === 0) throw new RangeError('timeS must hold at least one time')
+  let highestC = -Infinity
+  const dose = createDoseAccumulator(model)
+  for (let i = 0; i < timeS.length; i += 1) {
+    dose.add(timeS[i] ?? NaN, tempC[i] ?? NaN)
+    highestC = Math.max(highestC, tempC[i] ?? NaN)
+  }
+  const doseMin = dose.minutes
+  const probeC = probeErrorC(input.probe, Math.min(model.baseTempC ?? highestC, highestC), highestC)
+  const absoluteOffsetsC = probeC === null ? null : [probeC, errors.coldJunctionC, errors.mountC]
+  const sameMountOffsetsC = errors.isSameMountAssumed ? [] : [errors.driftC]
+  const shift = (offsetsC: readonly number[]) => shiftedDosesMin(model, timeS, tempC, offsetsC)
+  if (doseMin === 0) return withoutDose(shift, absoluteOffsetsC, gaps, errors.isSameMountAssumed)
+
+  const halvesOf = (offsetsC: readonly number[]): Half[] => {
+    if (offsetsC.length === 0) return []
+    const shifted = shift([0, ...offsetsC, ...offsetsC.map((offsetC) => -offsetC)])
+    const unshifted = shifted[0] ?? NaN
+    return offsetsC.map((_, i) => ({
+      low: Math.log10(unshifted / (shifted[1 + offsetsC.length + i] ?? NaN)),
+      high: Math.log10((shifted[1 + i] ?? NaN) / unshifted),
+    }))
+  }
+  const gapHalf = gaps === null ? [] : [gapHalfOf(doseMin, gaps)]
+  const sameMount = { low: errors.sameMountLog10, high: errors.sameMountLog10 }
+  return {
+    doseMin,
+    log10Dose: Math.log10(doseMin),
+    absolute:
+      absoluteOffsetsC === null ? null : boundsOf(doseMin, [...halvesOf(absoluteOffsetsC), ...gapHalf]),
+    sameMount: boundsOf(doseMin, [sameMount, ...halvesOf(sameMountOffsetsC), ...gapHalf]),
+    isAssumed: errors.isSameMountAssumed,
+  }
+}
+
+function gapHalfOf(doseMin: number, gaps: GapExtremes): Half {
+  const lowMin = doseMin - gaps.joinedMin + gaps.lowMin
+  const highMin = doseMin - gaps.joinedMin + gaps.highMin
+  return {
+    low: lowMin > 0 ? Math.max(0, Math.log10(doseMin / lowMin)) : Infinity,
+    high: Math.max(0, Math.log10(highMin / doseMin)),
+  }
+}
+
+/** No dose has no logarithm: the high end is what the errors, added as squares in °C, could have hidden. */
+function withoutDose(
+  shift: (offsetsC: readonly number[]) => number[],
+  absoluteOffsetsC: readonly number[] | null,
+  gaps: GapExtremes | null,
+  isAssumed: boolean,
+): DoseResult {
+  const gapMin = gaps === null ? 0 : gaps.highMin
+  const bounds = (highMin: number): DoseBounds => ({
+    lowMin: 0,
+    highMin,
+    log10Low: null,
+    log10High: null,
+    log10Half: null,
+  })
+  return {
+    doseMin: 0,
+    log10Dose: null,
+    absolute:
+      absoluteOffsetsC === null ? null : bounds((shift([Math.hypot(...absoluteOffsetsC)])[0] ?? 0) + gapMin),
+    sameMount: bounds(gapMin),
+    isAssumed,
+  }
+}
+
+/** A dose counted for bend or rest: silences longer than `breakS` count nothing. Null when fewer than two readings. */
+export function readDoseMin(
+  model: DoseModel,
+  timeS: ArrayLike<number>,
+  tempC: ArrayLike<number>,
+  window: { fromS: number; toS: number },
+  breakS: number,
+): number | null {
+  const dose = createDoseAccumulator(model)
+  let lastS = -Infinity
+  let count = 0
+  for (let i = 0; i < timeS.length; i += 1) {
+    const time = timeS[i] ?? NaN
+    const temp = tempC[i] ?? NaN
+    if (!(time >= window.fromS && time <= window.toS) || !Number.isFinite(temp)) continue
+    if (time - lastS > breakS) dose.break()
+    dose.add(time, temp)
+    lastS = time
+    count += 1
+  }
+  return count < 2 ? null : dose.minutes
 }

@@ -1,8 +1,7 @@
-import type { DoseResult } from './dose-interval'
+import type { DoseResult, ProbeErrorFacts } from './dose-interval'
 import type { Gap, ReadingSeries } from './gaps'
 import type { SiteRules } from './site-rules'
 import type { DepthRangeMm } from './stave'
-import type { ThermocoupleType } from './thermocouple'
 
 /** Shapes of a score: what `scoreFiring` reads and what it returns. All plain data, all JSON. Times: s from toast start. */
 
@@ -54,21 +53,8 @@ export type ScoreFiringFacts = {
   leadSwaps: readonly { timeS: number; isSamePlace: boolean }[]
 }
 
-/** A probe check that the readings were corrected by. */
-export type ProbeCheck = {
-  /** Half-width of the corrected reading, °C, k = 2, between the outermost check points. */
-  uncertaintyC: number
-  lowTempC: number
-  highTempC: number
-  isExpired: boolean
-}
-
-export type ScoreProbe = {
-  type: ThermocoupleType
-  iecClass: 1 | 2 | 3
-  place: ProbePlace
-  check: ProbeCheck | null
-}
+/** The lead probe: type, class and check, with the place where it sat. */
+export type ScoreProbe = ProbeErrorFacts & { place: ProbePlace }
 
 export type ScoreInput = {
   recipe: ScoreRecipe
@@ -133,7 +119,7 @@ export type Score = {
   planDoseMin: number
   targetDoseMin: number
   toleranceLog10: number
-  /** log10 of dose against target; null when there is no dose. */
+  /** log10 of dose against target; null when there is no dose, or the record is incomplete and nothing is compared. */
   deltaLog10: number | null
   /** Dose before toast start and after rest start, min; null when nothing was read there. */
   bendDoseMin: number | null

@@ -166,7 +166,7 @@ function requireOptions(options: StaveOptions): void {
   requirePositive('thicknessMm', options.thicknessMm)
   requireWithin('probeDepthMm', options.probeDepthMm, 0, options.thicknessMm * 0.9)
   requireWithin('moisturePercent', options.moisturePercent, 0, 100)
-  requireWithin('startTempC', options.startTempC, -60, 400)
+  requireWithin('startTempC', options.startTempC, -60, 1400)
   requirePositive('specificGravity', options.specificGravity)
   requireFinite('roomTempC', options.roomTempC)
   requireNotNegative('coldFaceHWPerM2K', options.coldFaceHWPerM2K)
