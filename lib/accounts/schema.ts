@@ -140,7 +140,7 @@ export const customerBody = z.strictObject({
     .trim()
     .min(1, 'Write the customer’s name.')
     .max(120, 'At most 120 characters.'),
-  contactEmail: z.preprocess(nothingBlankUnknown, email.nullish()),
+  contactEmail: email.nullish(),
 })
 export type CustomerBody = z.infer<typeof customerBody>
 

@@ -1,6 +1,8 @@
 import { operations as accounts } from '@/lib/accounts/operations'
 import { operations as audit } from '@/lib/audit/operations'
 import { operations as batches } from '@/lib/batches/operations'
+import { operations as http } from '@/lib/http/operations'
+import { operations as ingest } from '@/lib/ingest/operations'
 import { operations as probes } from '@/lib/probes/operations'
 import { operations as recipes } from '@/lib/recipes/operations'
 import { operations as site } from '@/lib/site/operations'
@@ -14,6 +16,8 @@ const areas: readonly Readonly<Record<string, AnyOperation>>[] = [
   accounts,
   audit,
   batches,
+  http,
+  ingest,
   probes,
   recipes,
   site,
