@@ -13,12 +13,28 @@ const marker = join(folder, '.emberstave-installed')
 
 /** Refuses a Node that the packages do not run on, before anything obscure happens. */
 export function checkNode() {
-  const [major, minor] = process.versions.node.split('.').map(Number)
-  if ((major === 20 && minor >= 19) || (major === 22 && minor >= 12) || major > 22) return
+  const wanted = JSON.parse(readFileSync(join(root, 'package.json'), 'utf8')).engines.node
+  if (isWithin(process.versions.node, wanted)) return
   throw new SetupError(
-    `Node ${process.versions.node} is not supported.`,
-    'Use Node 20.19 or a later 20, or 22.12 or newer.',
+    `Node ${process.versions.node} is not supported: this needs ${wanted}.`,
+    'Install Node 20.19 or a later 20, 22.13 or a later 22, or 24 or newer.',
   )
+}
+
+/**
+ * Whether a version is in a range such as `^20.19.0 || >=24.0.0`: those two forms, which package.json keeps to,
+ * since no package can be asked before the packages are there.
+ */
+export function isWithin(version, range) {
+  const have = version.split('.').map(Number)
+  return range.split('||').some((part) => {
+    const form = /^\s*(\^|>=)(\d+)\.(\d+)\.(\d+)\s*$/.exec(part)
+    if (!form) throw new Error(`engines.node in package.json has a form that set-up does not read: ${part}`)
+    const from = form.slice(2).map(Number)
+    const differing = from.findIndex((number, index) => number !== have[index])
+    const isLater = differing < 0 || have[differing] > from[differing]
+    return isLater && (form[1] === '>=' || have[0] === from[0])
+  })
 }
 
 /** Installs the packages of package-lock.json when they are not there, or not those. */
