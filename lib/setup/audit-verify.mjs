@@ -1,10 +1,10 @@
-import { localEnvironment } from './environment.mjs'
+import { DATABASE, localEnvironment } from './environment.mjs'
 import { ensurePackages } from './packages.mjs'
 import { wantedPort } from './ports.mjs'
-import { withCluster } from './postgres.mjs'
+import { hasDatabase, withCluster } from './postgres.mjs'
 import { typescript } from './processes.mjs'
 import { run } from './run.mjs'
-import { main } from './say.mjs'
+import { main, SetupError } from './say.mjs'
 
 /**
  * Checks the audit trail's chain of hashes: of the database that `DATABASE_URL` names, else of this clone's own.
@@ -13,11 +13,18 @@ import { main } from './say.mjs'
 await main(async () => {
   await ensurePackages()
   if (process.env.DATABASE_URL) return verify(process.env)
-  return withCluster('main', {}, async (cluster) =>
-    verify(await localEnvironment({ cluster, port: wantedPort(), mode: 'demo' })),
-  )
+  return withCluster('main', {}, async (cluster) => {
+    if (!(await hasDatabase(cluster, DATABASE))) {
+      throw new SetupError(
+        'This clone has no database yet.',
+        'Run npm start first, or name a database in DATABASE_URL.',
+      )
+    }
+    return verify(await localEnvironment({ cluster, port: wantedPort(), mode: 'demo' }))
+  })
 })
 
 async function verify(env) {
-  return (await run(process.execPath, typescript('lib/audit/verify-command.ts'), { env, show: true })).code
+  const program = typescript('lib/audit/verify-command.ts', ...process.argv.slice(2))
+  return (await run(process.execPath, program, { env, show: true })).code
 }

@@ -113,14 +113,19 @@ export function databaseUrl(cluster, role, database) {
  * @returns {Promise<boolean>} whether it was made now
  */
 export async function ensureDatabase(cluster, database) {
-  const known = await sql(cluster, `SELECT 1 FROM pg_database WHERE datname = '${database}'`)
-  if (known === '') await sql(cluster, `CREATE DATABASE "${database}" OWNER ${OWNER_ROLE}`)
+  const isKnown = await hasDatabase(cluster, database)
+  if (!isKnown) await sql(cluster, `CREATE DATABASE "${database}" OWNER ${OWNER_ROLE}`)
   await sql(
     cluster,
     `REVOKE ALL ON DATABASE "${database}" FROM PUBLIC;
      GRANT CONNECT, TEMPORARY ON DATABASE "${database}" TO ${APP_ROLE};`,
   )
-  return known === ''
+  return !isKnown
+}
+
+/** Whether a cluster has a database of that name. */
+export async function hasDatabase(cluster, database) {
+  return (await sql(cluster, `SELECT 1 FROM pg_database WHERE datname = '${database}'`)) !== ''
 }
 
 /** Removes a database with all that is in it, ending whoever is connected. */
