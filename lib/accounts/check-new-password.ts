@@ -4,7 +4,7 @@ import { invalidField } from '@/lib/errors'
 const common = new Set(commonPasswords.words)
 const rows = [
   'abcdefghijklmnopqrstuvwxyz',
-  '01234567890',
+  '0123456789',
   ...['qwertyuiop', 'asdfghjkl', 'zxcvbnm', 'azertyuiop', 'qsdfghjklm', 'wxcvbn', 'qwertzuiop', 'yxcvbnm'],
 ]
 const asLetters: Readonly<Record<string, string>> = {
@@ -53,8 +53,10 @@ export function checkNewPassword(
 
 /** True when all of it is common words, rows of the keyboard and digits or signs put around them. */
 function isCommon(plain: string): boolean {
-  if (common.has(plain)) return true
-  return [plain, undisguise(plain)].some((text) => isMadeOf(text.replaceAll(/[^a-z]+/g, ''), text))
+  if (common.has(plain) || isRow(plain) || isRepetition(plain)) return true
+  // Words of other scripts are not in the list, and taking their letters away would leave nothing to judge by.
+  if (/[^a-z\P{L}]/u.test(plain)) return false
+  return [plain, undisguise(plain)].some((text) => isMadeOf(text.replaceAll(/[^a-z]+/g, '')))
 }
 
 function undisguise(plain: string): string {
@@ -62,10 +64,9 @@ function undisguise(plain: string): string {
   return [...trimmed].map((character) => asLetters[character] ?? character).join('')
 }
 
-function isMadeOf(letters: string, whole: string): boolean {
-  if (letters === '') return isRow(whole) || isRepetition(whole)
-  const single = shortestPeriod(letters)
-  return common.has(letters) || common.has(single) || isRow(letters) || isTwoWords(letters)
+function isMadeOf(letters: string): boolean {
+  if (letters.length < 3) return false
+  return common.has(letters) || common.has(shortestPeriod(letters)) || isRow(letters) || isTwoWords(letters)
 }
 
 /** Two common words put together; "password" and "welcome" are no better side by side. */

@@ -29,10 +29,21 @@ export async function unsealSessionId(cookieHeaderValue: string | null | undefin
   const prefix = `${sessionCookieName}=`
   const pair = (cookieHeaderValue ?? '').split(/;\s*/).find((part) => part.startsWith(prefix))
   if (pair === undefined || pair.length === prefix.length) return null
-  const data: unknown = await unsealData(decodeURIComponent(pair.slice(prefix.length)), {
+  const sealed = decodeCookie(pair.slice(prefix.length))
+  if (sealed === null) return null
+  const data: unknown = await unsealData(sealed, {
     password: env().SESSION_SECRET,
     ttl: sessionMaximumS,
   })
   const parsed = sealedSchema.safeParse(data)
   return parsed.success ? parsed.data.sessionId : null
+}
+
+/** A cookie with a broken % sequence is no cookie of ours. */
+function decodeCookie(value: string): string | null {
+  try {
+    return decodeURIComponent(value)
+  } catch {
+    return null
+  }
 }
