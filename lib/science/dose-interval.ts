@@ -70,7 +70,8 @@ export function probeErrorC(probe: ProbeErrorFacts, fromTempC: number, toTempC: 
  * above the base.
  *
  * The curve is integrated again, shifted, not scaled by 10^(d/z): near the base an offset brings minutes in or out.
- * One pass serves all offsets, since dose(T + d, base b) = 10^(d/z) · dose(T, base b − d) exactly.
+ * No second integration is needed away from it, since dose(T + d, base b) = 10^(d/z) · dose(T, base b − d) exactly:
+ * the segments that lie above every shifted base are taken from `doseMin`, the unshifted dose of the same curve.
  *
  * @throws RangeError as `createDoseAccumulator` does
  */
@@ -79,36 +80,27 @@ export function shiftedDosesMin(
   timeS: ArrayLike<number>,
   tempC: ArrayLike<number>,
   offsetsC: readonly number[],
+  doseMin: number,
 ): number[] {
   requireEqualLength('timeS', timeS, 'tempC', tempC)
   const scales = offsetsC.map((offsetC) => Math.exp((Math.LN10 * offsetC) / model.zC))
   const { baseTempC } = model
-  if (baseTempC === undefined) {
-    const dose = createDoseAccumulator(model)
-    for (let i = 0; i < timeS.length; i += 1) dose.add(timeS[i] ?? NaN, tempC[i] ?? NaN)
-    return scales.map((scale) => scale * dose.minutes)
+  if (baseTempC === undefined) return scales.map((scale) => scale * doseMin)
+  const shifted = offsetsC.map((offsetC) =>
+    createDoseAccumulator({ ...model, baseTempC: baseTempC - offsetC }),
+  )
+  const unshifted = createDoseAccumulator(model)
+  const lowestBaseC = baseTempC - Math.max(0, ...offsetsC)
+  const highestBaseC = baseTempC - Math.min(0, ...offsetsC)
+  for (let i = 1; i < timeS.length; i += 1) {
+    const from = tempC[i - 1] ?? NaN
+    const to = tempC[i] ?? NaN
+    if ((from >= highestBaseC && to >= highestBaseC) || (from < lowestBaseC && to < lowestBaseC)) continue
+    for (const dose of shifted) addSegment(dose, timeS, tempC, i)
+    addSegment(unshifted, timeS, tempC, i)
   }
-  const doses = offsetsC.map((offsetC) => createDoseAccumulator({ ...model, baseTempC: baseTempC - offsetC }))
-  const lowestBaseC = baseTempC - Math.max(...offsetsC)
-  const highestBaseC = baseTempC - Math.min(...offsetsC)
-  const common = createDoseAccumulator({ ...model, baseTempC: lowestBaseC })
-  let wasAbove = false
-  let wasBelow = false
-  for (let i = 0; i < timeS.length; i += 1) {
-    const time = timeS[i] ?? NaN
-    const temp = tempC[i] ?? NaN
-    const isAbove = temp >= highestBaseC
-    const isBelow = temp < lowestBaseC
-    // Far from every base all offsets integrate the same segment, so one sum is enough there.
-    if (!(isAbove && wasAbove)) {
-      common.break()
-      if (!(isBelow && wasBelow)) for (const dose of doses) addSegment(dose, timeS, tempC, i)
-    }
-    common.add(time, temp)
-    wasAbove = isAbove
-    wasBelow = isBelow
-  }
-  return doses.map((dose, i) => (scales[i] ?? NaN) * (dose.minutes + common.minutes))
+  const aboveAllMin = Math.max(0, doseMin - unshifted.minutes)
+  return shifted.map((dose, i) => (scales[i] ?? NaN) * (dose.minutes + aboveAllMin))
 }
 
 function addSegment(
@@ -117,7 +109,6 @@ function addSegment(
   tempC: ArrayLike<number>,
   to: number,
 ): void {
-  if (to === 0) return
   dose.break()
   dose.add(timeS[to - 1] ?? NaN, tempC[to - 1] ?? NaN)
   dose.add(timeS[to] ?? NaN, tempC[to] ?? NaN)
@@ -167,7 +158,7 @@ export function doseInterval(input: DoseIntervalInput): DoseResult {
   const probeC = probeErrorC(input.probe, Math.min(model.baseTempC ?? highestC, highestC), highestC)
   const absoluteOffsetsC = probeC === null ? null : [probeC, errors.coldJunctionC, errors.mountC]
   const sameMountOffsetsC = errors.isSameMountAssumed ? [] : [errors.driftC]
-  const shift = (offsetsC: readonly number[]) => shiftedDosesMin(model, timeS, tempC, offsetsC)
+  const shift = (offsetsC: readonly number[]) => shiftedDosesMin(model, timeS, tempC, offsetsC, doseMin)
   if (doseMin === 0) return withoutDose(shift, absoluteOffsetsC, gaps, errors.isSameMountAssumed)
 
   const halvesOf = (offsetsC: readonly number[]): Half[] => {

@@ -37,7 +37,7 @@ export type FilledSeries = {
 /** Dose of the gaps as they were joined and at both extremes, minutes: what widens the interval. */
 export type GapExtremes = { joinedMin: number; lowMin: number; highMin: number }
 
-type Readings = { timeS: number[]; tempC: number[] }
+type Readings = { timeS: Float64Array; tempC: Float64Array }
 
 /** A longer silence is a gap. */
 function gapFromS(spacingS: number, rules: SiteRules['gaps']): number {
@@ -48,19 +48,23 @@ function gapFromS(spacingS: number, rules: SiteRules['gaps']): number {
 function readingsOf(series: ReadingSeries): Readings {
   requirePositive('spacingS', series.spacingS)
   requireEqualLength('timeS', series.timeS, 'tempC', series.tempC)
-  const timeS: number[] = []
-  const tempC: number[] = []
+  const count = series.timeS.length
+  const timeS = new Float64Array(count)
+  const tempC = new Float64Array(count)
+  let length = 0
   let lastS = -Infinity
-  for (let i = 0; i < series.timeS.length; i += 1) {
-    const time = requireFinite(`timeS[${i}]`, series.timeS[i] ?? NaN)
+  for (let i = 0; i < count; i += 1) {
+    const time = series.timeS[i] ?? NaN
+    if (!Number.isFinite(time)) throw new RangeError(`timeS[${i}] must be a finite number, not ${time}`)
     if (time < lastS) throw new RangeError(`timeS[${i}] must not fall: ${time} after ${lastS}`)
     lastS = time
     const temp = series.tempC[i] ?? NaN
     if (!Number.isFinite(temp)) continue
-    timeS.push(time)
-    tempC.push(temp)
+    timeS[length] = time
+    tempC[length] = temp
+    length += 1
   }
-  return { timeS, tempC }
+  return { timeS: timeS.subarray(0, length), tempC: tempC.subarray(0, length) }
 }
 
 function treatmentOf(missingS: number, rules: SiteRules['gaps']): GapTreatment {
@@ -92,11 +96,17 @@ export function fillGaps(
   return joinPoints(inside, series.spacingS, rules, toS - fromS)
 }
 
-/** Points of a window, both edges included; `edge` says how the first and the last came about. */
-type WindowPoints = Readings & { isRead: boolean[]; isFirstHeld: boolean; isLastHeld: boolean }
+/** Points of a window, both edges included; a held edge has a reading on one side only. */
+type WindowPoints = {
+  timeS: Float64Array
+  tempC: Float64Array
+  isFirstRead: boolean
+  isLastRead: boolean
+  isFirstHeld: boolean
+  isLastHeld: boolean
+}
 
 function clipToWindow(readings: Readings, fromS: number, toS: number, gapS: number): WindowPoints | null {
-  const points: WindowPoints = { timeS: [], tempC: [], isRead: [], isFirstHeld: false, isLastHeld: false }
   const count = readings.timeS.length
   let first = 0
   while (first < count && (readings.timeS[first] ?? 0) < fromS) first += 1
@@ -104,21 +114,29 @@ function clipToWindow(readings: Readings, fromS: number, toS: number, gapS: numb
   while (after < count && (readings.timeS[after] ?? 0) <= toS) after += 1
   if (first === after) return null
   const start = edgeTempC(readings, first - 1, first, fromS, gapS)
-  if (start !== null) pushPoint(points, fromS, start.tempC, false)
-  points.isFirstHeld = start?.isHeld ?? false
-  for (let i = first; i < after; i += 1) {
-    pushPoint(points, readings.timeS[i] ?? NaN, readings.tempC[i] ?? NaN, true)
-  }
   const end = edgeTempC(readings, after, after - 1, toS, gapS)
-  if (end !== null) pushPoint(points, toS, end.tempC, false)
-  points.isLastHeld = end?.isHeld ?? false
-  return points
-}
-
-function pushPoint(points: WindowPoints, timeS: number, tempC: number, isRead: boolean): void {
-  points.timeS.push(timeS)
-  points.tempC.push(tempC)
-  points.isRead.push(isRead)
+  const offset = start === null ? 0 : 1
+  const length = after - first + offset + (end === null ? 0 : 1)
+  const timeS = new Float64Array(length)
+  const tempC = new Float64Array(length)
+  timeS.set(readings.timeS.subarray(first, after), offset)
+  tempC.set(readings.tempC.subarray(first, after), offset)
+  if (start !== null) {
+    timeS[0] = fromS
+    tempC[0] = start.tempC
+  }
+  if (end !== null) {
+    timeS[length - 1] = toS
+    tempC[length - 1] = end.tempC
+  }
+  return {
+    timeS,
+    tempC,
+    isFirstRead: start === null,
+    isLastRead: end === null,
+    isFirstHeld: start?.isHeld ?? false,
+    isLastHeld: end?.isHeld ?? false,
+  }
 }
 
 /**
@@ -149,42 +167,64 @@ function joinPoints(
   rules: SiteRules['gaps'],
   windowS: number,
 ): FilledSeries {
-  const timeS: number[] = []
-  const tempC: number[] = []
-  const isInterpolated: number[] = []
-  const gaps: Gap[] = []
-  const fillS = Math.max(spacingS, 1)
-  const last = points.timeS.length - 1
-  for (let i = 0; i <= last; i += 1) {
-    const time = points.timeS[i] ?? NaN
-    const temp = points.tempC[i] ?? NaN
-    const beforeS = points.timeS[i - 1]
-    const beforeC = points.tempC[i - 1]
-    if (beforeS !== undefined && beforeC !== undefined && time - beforeS > gapFromS(spacingS, rules)) {
-      const isEdge = (i === 1 && points.isFirstHeld) || (i === last && points.isLastHeld)
-      const missingS = time - beforeS - (isEdge ? 0 : spacingS)
-      gaps.push({ startS: beforeS, endS: time, missingS, treatment: treatmentOf(missingS, rules) })
-      const parts = Math.ceil((time - beforeS) / fillS)
-      for (let part = 1; part < parts; part += 1) {
-        timeS.push(beforeS + ((time - beforeS) * part) / parts)
-        tempC.push(beforeC + ((temp - beforeC) * part) / parts)
-        isInterpolated.push(1)
-      }
+  const gaps = findGaps(points, spacingS, rules)
+  const partsOf = (gap: Gap) => Math.ceil((gap.endS - gap.startS) / Math.max(spacingS, 1))
+  const length = points.timeS.length + gaps.reduce((sum, gap) => sum + partsOf(gap) - 1, 0)
+  const timeS = new Float64Array(length)
+  const tempC = new Float64Array(length)
+  const isInterpolated = new Uint8Array(length)
+  let from = 0
+  let to = 0
+  for (const gap of gaps) {
+    const { index } = gap
+    timeS.set(points.timeS.subarray(from, index), to)
+    tempC.set(points.tempC.subarray(from, index), to)
+    to += index - from
+    from = index
+    const startC = points.tempC[index - 1] ?? NaN
+    const riseC = (points.tempC[index] ?? NaN) - startC
+    const parts = partsOf(gap)
+    for (let part = 1; part < parts; part += 1) {
+      timeS[to] = gap.startS + ((gap.endS - gap.startS) * part) / parts
+      tempC[to] = startC + (riseC * part) / parts
+      isInterpolated[to] = 1
+      to += 1
     }
-    timeS.push(time)
-    tempC.push(temp)
-    isInterpolated.push(points.isRead[i] === true ? 0 : 1)
   }
+  timeS.set(points.timeS.subarray(from), to)
+  tempC.set(points.tempC.subarray(from), to)
+  if (!points.isFirstRead) isInterpolated[0] = 1
+  if (!points.isLastRead) isInterpolated[length - 1] = 1
   const missingShare = gaps.reduce((sum, gap) => sum + gap.missingS, 0) / windowS
   return {
-    timeS: Float64Array.from(timeS),
-    tempC: Float64Array.from(tempC),
-    isInterpolated: Uint8Array.from(isInterpolated),
-    gaps,
+    timeS,
+    tempC,
+    isInterpolated,
+    gaps: gaps.map(({ startS, endS, missingS, treatment }) => ({ startS, endS, missingS, treatment })),
     missingShare,
     isIncomplete:
       missingShare > rules.incompleteAboveShare || gaps.some((gap) => gap.treatment === 'incomplete'),
   }
+}
+
+/** Gaps between neighbouring points; `index` is the point after the gap. */
+function findGaps(
+  points: WindowPoints,
+  spacingS: number,
+  rules: SiteRules['gaps'],
+): (Gap & { index: number })[] {
+  const gaps: (Gap & { index: number })[] = []
+  const gapS = gapFromS(spacingS, rules)
+  const last = points.timeS.length - 1
+  for (let index = 1; index <= last; index += 1) {
+    const startS = points.timeS[index - 1] ?? NaN
+    const endS = points.timeS[index] ?? NaN
+    if (endS - startS <= gapS) continue
+    const isEdge = (index === 1 && points.isFirstHeld) || (index === last && points.isLastHeld)
+    const missingS = endS - startS - (isEdge ? 0 : spacingS)
+    gaps.push({ startS, endS, missingS, treatment: treatmentOf(missingS, rules), index })
+  }
+  return gaps
 }
 
 /**

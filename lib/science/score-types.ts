@@ -3,6 +3,8 @@ import type { Gap, ReadingSeries } from './gaps'
 import type { SiteRules } from './site-rules'
 import type { DepthRangeMm } from './stave'
 
+export type { ProbeCheck } from './dose-interval'
+
 /** Shapes of a score: what `scoreFiring` reads and what it returns. All plain data, all JSON. Times: s from toast start. */
 
 /** In the order in which they win when several hold. */

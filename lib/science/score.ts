@@ -38,7 +38,7 @@ export type { Score, ScoreInput, ScoreTerm, Verdict } from './score-types'
 
 /** Grid and step of the stave for one figure: within 0.05 mm of the drawn picture's at a tenth of its cost. */
 const SCORE_STAVE_CELL_MM = 0.4
-const SCORE_STAVE_STEP_S = 5
+const SCORE_STAVE_STEP_S = 10
 
 /**
  * Scores a finished firing by ruleset 1 (SCIENCE §5): verdict, points, and each term with what was measured, what is
@@ -323,23 +323,37 @@ function indicesOf(
   }
 }
 
-/** Temperature change over a segment up to which Simpson's rule is exact to 1e-9 with these activation energies, °C. */
-const SIMPSON_UP_TO_C = 2
+/**
+ * Change over a segment up to which ln(rate) is taken as a parabola in temperature, °C: with it the mean rate is
+ * √(r1·r2)·(1 + x²/24)·(1 + c/6), x = ln(r2/r1), c = Ea·ΔT²/(R·T³); what is left out is below 1e-6.
+ */
+const PARABOLIC_UP_TO_C = 3
+const GAS_CONSTANT_J_PER_MOL_K = 8.314462618
 
-/** The Arrhenius integral over close readings: Simpson's rule where the temperature hardly moves, otherwise exact. */
+/** The Arrhenius integral over close readings; segments that move far go through the exact one. */
 function indexMin(eaJPerMol: number, refTempC: number, filled: FilledSeries): number {
+  const eaOverRK = eaJPerMol / GAS_CONSTANT_J_PER_MOL_K
   let minutes = 0
-  let lastRate = arrheniusRate(eaJPerMol, refTempC, filled.tempC[0] ?? NaN)
+  let lastC = filled.tempC[0] ?? NaN
+  let lastRate = arrheniusRate(eaJPerMol, refTempC, lastC)
   for (let i = 1; i < filled.timeS.length; i += 1) {
-    const from = { timeS: filled.timeS[i - 1] ?? NaN, tempC: filled.tempC[i - 1] ?? NaN }
-    const to = { timeS: filled.timeS[i] ?? NaN, tempC: filled.tempC[i] ?? NaN }
-    const rate = arrheniusRate(eaJPerMol, refTempC, to.tempC)
-    if (Math.abs(to.tempC - from.tempC) > SIMPSON_UP_TO_C) {
-      minutes += arrheniusEquivalentMinutes(eaJPerMol, refTempC, [from, to])
-    } else {
-      const middle = arrheniusRate(eaJPerMol, refTempC, (from.tempC + to.tempC) / 2)
-      minutes += (((to.timeS - from.timeS) / 60) * (lastRate + 4 * middle + rate)) / 6
+    const tempC = filled.tempC[i] ?? NaN
+    const rate = arrheniusRate(eaJPerMol, refTempC, tempC)
+    const durationS = (filled.timeS[i] ?? NaN) - (filled.timeS[i - 1] ?? NaN)
+    const riseC = tempC - lastC
+    if (Math.abs(riseC) <= PARABOLIC_UP_TO_C) {
+      const middle = Math.sqrt(lastRate * rate)
+      const middleK = (tempC + lastC) / 2 + 273.15
+      const x = (eaOverRK * riseC) / (middleK * middleK)
+      const bend = (eaOverRK * riseC * riseC) / (middleK * middleK * middleK)
+      minutes += (durationS / 60) * middle * (1 + (x * x) / 24) * (1 + bend / 6)
+    } else if (durationS > 0) {
+      minutes += arrheniusEquivalentMinutes(eaJPerMol, refTempC, [
+        { timeS: 0, tempC: lastC },
+        { timeS: durationS, tempC },
+      ])
     }
+    lastC = tempC
     lastRate = rate
   }
   return minutes
