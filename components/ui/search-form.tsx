@@ -1,0 +1,48 @@
+import { Button } from '@/components/ui/button'
+import { LinkButton } from '@/components/ui/link-button'
+import type { SelectOption } from '@/components/ui/select-field'
+import { SelectField } from '@/components/ui/select-field'
+import { TextField } from '@/components/ui/text-field'
+
+/** Search and choices of a list as a plain form, so that they live in the URL. */
+export function SearchForm({
+  action,
+  values,
+  hint,
+  selects = [],
+}: {
+  action: string
+  values: Readonly<Record<string, string>>
+  /** What can be found: "Serial, recipe, customer". */
+  hint: string
+  selects?: readonly { name: string; label: string; options: readonly SelectOption[]; fallback: string }[]
+}) {
+  return (
+    <form
+      method="get"
+      action={action}
+      role="search"
+      className="mb-4 flex flex-wrap items-end gap-x-3 gap-y-2"
+    >
+      <TextField
+        name="q"
+        type="search"
+        label="Find"
+        placeholder={hint}
+        defaultValue={values['q']}
+        className="w-64"
+      />
+      {selects.map((select) => (
+        <SelectField
+          key={select.name}
+          name={select.name}
+          label={select.label}
+          options={select.options}
+          defaultValue={values[select.name] ?? select.fallback}
+        />
+      ))}
+      <Button type="submit">Show</Button>
+      {Object.keys(values).length === 0 ? null : <LinkButton href={action}>Clear</LinkButton>}
+    </form>
+  )
+}
