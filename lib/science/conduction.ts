@@ -54,9 +54,11 @@ type Chain = {
 /** Heat that each cell gains, W/m²; 0 for a fixed node. */
 function gainsAt(chain: Chain, tempC: Float64Array, gains: Float64Array): void {
   const last = chain.count - 1
+  const { hot, cold, innerWPerM2K } = chain
   const at = (i: number) => tempC[i] ?? 0
-  for (let i = 1; i < last; i += 1) gains[i] = chain.innerWPerM2K * (at(i - 1) - 2 * at(i) + at(i + 1))
-  const { hot, cold } = chain
+  for (let i = 1; i < last; i += 1) {
+    gains[i] = innerWPerM2K * ((tempC[i - 1] ?? 0) - 2 * (tempC[i] ?? 0) + (tempC[i + 1] ?? 0))
+  }
   gains[0] = hot.isFixed
     ? 0
     : chain.innerWPerM2K * (at(1) - at(0)) + hot.conductanceWPerM2K * (hot.outsideC - at(0))
@@ -84,24 +86,35 @@ function createStepSolver(chain: Chain, weightS: number): (right: Float64Array) 
   const { count, innerWPerM2K, hot, cold } = chain
   const last = count - 1
   const coupling = -weightS * innerWPerM2K
-  const isFixedAt = (i: number) => (i === 0 && hot.isFixed) || (i === last && cold.isFixed)
-  const below = (i: number) => (i === 0 || isFixedAt(i) ? 0 : coupling)
-  const above = (i: number) => (i === last || isFixedAt(i) ? 0 : coupling)
-  const outside = (i: number) => (i === 0 ? hot.conductanceWPerM2K : i === last ? cold.conductanceWPerM2K : 0)
-  const pivots = new Float64Array(count)
+  const below = new Float64Array(count).fill(coupling)
+  const above = new Float64Array(count).fill(coupling)
+  below[0] = 0
+  above[last] = 0
+  if (hot.isFixed) above[0] = 0
+  if (cold.isFixed) below[last] = 0
+  const inversePivots = new Float64Array(count)
   const ratios = new Float64Array(count)
   for (let i = 0; i < count; i += 1) {
-    const diagonal = isFixedAt(i) ? 1 : capacityOf(chain, i) - below(i) - above(i) + weightS * outside(i)
-    const pivot = diagonal - below(i) * (i === 0 ? 0 : (ratios[i - 1] ?? 0))
-    pivots[i] = pivot
-    ratios[i] = above(i) / pivot
+    const boundary = i === 0 ? hot : i === last ? cold : null
+    const lower = below[i] ?? 0
+    const upper = above[i] ?? 0
+    const diagonal = boundary?.isFixed
+      ? 1
+      : capacityOf(chain, i) - lower - upper + weightS * (boundary?.conductanceWPerM2K ?? 0)
+    const inverse = 1 / (diagonal - lower * (ratios[i - 1] ?? 0))
+    inversePivots[i] = inverse
+    ratios[i] = upper * inverse
   }
   return (right) => {
+    let before = 0
     for (let i = 0; i < count; i += 1) {
-      const before = i === 0 ? 0 : (right[i - 1] ?? 0)
-      right[i] = ((right[i] ?? 0) - below(i) * before) / (pivots[i] ?? 1)
+      before = ((right[i] ?? 0) - (below[i] ?? 0) * before) * (inversePivots[i] ?? 0)
+      right[i] = before
     }
-    for (let i = last - 1; i >= 0; i -= 1) right[i] = (right[i] ?? 0) - (ratios[i] ?? 0) * (right[i + 1] ?? 0)
+    for (let i = last - 1; i >= 0; i -= 1) {
+      before = (right[i] ?? 0) - (ratios[i] ?? 0) * before
+      right[i] = before
+    }
   }
 }
 
@@ -180,15 +193,13 @@ function advance(
   const last = count - 1
   const middle = new Float64Array(count)
   const gains = new Float64Array(count)
-  const fixedOr = (i: number, right: number) => {
-    if (i === 0 && hot.isFixed) return hot.outsideC
-    if (i === last && cold.isFixed) return cold.outsideC
-    return right
-  }
-  const drive = (i: number) => {
-    if (i === 0) return weightS * hot.conductanceWPerM2K * hot.outsideC
-    if (i === last) return weightS * cold.conductanceWPerM2K * cold.outsideC
-    return 0
+  const capacity = Float64Array.from({ length: count }, (_, i) => capacityOf(chain, i))
+  /** Sets both faces of a right side: a fixed one to its temperature, an open one with what the outside drives in. */
+  const closeFaces = (right: Float64Array) => {
+    right[0] = hot.isFixed ? hot.outsideC : (right[0] ?? 0) + weightS * hot.conductanceWPerM2K * hot.outsideC
+    right[last] = cold.isFixed
+      ? cold.outsideC
+      : (right[last] ?? 0) + weightS * cold.conductanceWPerM2K * cold.outsideC
   }
   const countFlux = (shareS: number, at: Float64Array) => {
     heatIn.hot += shareS * fluxIn(chain, hot, at[0] ?? 0, at[1] ?? 0)
@@ -198,15 +209,15 @@ function advance(
     gainsAt(chain, tempC, gains)
     countFlux(EXPLICIT_SHARE * stepS, tempC)
     for (let i = 0; i < count; i += 1) {
-      const right = capacityOf(chain, i) * (tempC[i] ?? 0) + weightS * (gains[i] ?? 0) + drive(i)
-      middle[i] = fixedOr(i, right)
+      middle[i] = (capacity[i] ?? 0) * (tempC[i] ?? 0) + weightS * (gains[i] ?? 0)
     }
+    closeFaces(middle)
     solve(middle)
     countFlux(EXPLICIT_SHARE * stepS, middle)
     for (let i = 0; i < count; i += 1) {
-      const right = capacityOf(chain, i) * (BDF_NEW * (middle[i] ?? 0) - BDF_OLD * (tempC[i] ?? 0)) + drive(i)
-      tempC[i] = fixedOr(i, right)
+      tempC[i] = (capacity[i] ?? 0) * (BDF_NEW * (middle[i] ?? 0) - BDF_OLD * (tempC[i] ?? 0))
     }
+    closeFaces(tempC)
     solve(tempC)
     countFlux(IMPLICIT_SHARE * stepS, tempC)
   }

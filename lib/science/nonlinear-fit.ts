@@ -220,7 +220,7 @@ function describeFit<X>(input: NonlinearFitInput<X>, state: State): NonlinearFit
   const qr = new QrDecomposition(scaled)
   const upper = qr.upperTriangularMatrix
   const diagonal = upper.diagonal().map((value) => Math.abs(value))
-  if (!(Math.min(...diagonal) > 1e-13 * Math.max(...diagonal))) {
+  if (!(Math.min(...diagonal) > 1e-10 * Math.max(...diagonal))) {
     return failFit('The data do not determine all parameters: two of them do the same to the curve.')
   }
   const explained = qr.orthogonalMatrix

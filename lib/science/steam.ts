@@ -34,6 +34,8 @@ function pressureAt(tempK: number): number {
 }
 
 const LOWEST_PRESSURE_MPA = pressureAt(LOWEST_TEMP_K)
+/** Eq. 30 meets the critical pressure to the last digit only: the higher of the two is let in. */
+const HIGHEST_PRESSURE_MPA = Math.max(CRITICAL_PRESSURE_MPA, pressureAt(CRITICAL_TEMP_K))
 
 /**
  * Saturation pressure of water, MPa, from its temperature, K. IAPWS R7-97(2012), Eq. 30. Domain 273.15…647.096 K.
@@ -50,7 +52,7 @@ export function saturationPressureMpa(tempK: number): number {
  * @throws RangeError outside the domain
  */
 export function saturationTempK(pressureMpa: number): number {
-  return temperatureAt(requireWithin('pressureMpa', pressureMpa, LOWEST_PRESSURE_MPA, CRITICAL_PRESSURE_MPA))
+  return temperatureAt(requireWithin('pressureMpa', pressureMpa, LOWEST_PRESSURE_MPA, HIGHEST_PRESSURE_MPA))
 }
 
 function temperatureAt(pressureMpa: number): number {
@@ -75,7 +77,7 @@ export function boilingPointC(pressureHpa: number): number {
     'pressureHpa',
     pressureHpa,
     LOWEST_PRESSURE_MPA / MPA_PER_HPA,
-    CRITICAL_PRESSURE_MPA / MPA_PER_HPA,
+    HIGHEST_PRESSURE_MPA / MPA_PER_HPA,
   )
   return temperatureAt(pressureHpa * MPA_PER_HPA) - ZERO_CELSIUS_K
 }

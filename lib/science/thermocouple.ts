@@ -268,7 +268,11 @@ export function emfMv(type: ThermocoupleType, tempC: number): number {
 
 type InverseRange = { minMv: number; maxMv: number; minTempC: number; maxTempC: number }
 
-/** The published range is rounded to 1 µV, so the exact emf at its ends is let in as well. */
+/**
+ * The published range is rounded to 1 µV, so the exact emf at its ends is let in as well, with 1e-9 mV for the rounding
+ * of sums that meet it (2e-8 °C).
+ */
+const RANGE_ROUNDING_MV = 1e-9
 const inverseRanges = new Map<ThermocoupleType, InverseRange>()
 
 function inverseRangeOf(type: ThermocoupleType): InverseRange {
@@ -276,8 +280,11 @@ function inverseRangeOf(type: ThermocoupleType): InverseRange {
   if (known !== undefined) return known
   const functions = functionsOf(type)
   const range = {
-    minMv: Math.min(functions.inverseEmfMv.min, referenceMv(functions, functions.inverseMinTempC)),
-    maxMv: Math.max(functions.inverseEmfMv.max, referenceMv(functions, functions.tempC.max)),
+    minMv:
+      Math.min(functions.inverseEmfMv.min, referenceMv(functions, functions.inverseMinTempC)) -
+      RANGE_ROUNDING_MV,
+    maxMv:
+      Math.max(functions.inverseEmfMv.max, referenceMv(functions, functions.tempC.max)) + RANGE_ROUNDING_MV,
     minTempC: functions.inverseMinTempC,
     maxTempC: functions.tempC.max,
   }

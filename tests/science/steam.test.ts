@@ -1,0 +1,82 @@
+import fc from 'fast-check'
+import { describe, it } from 'vitest'
+import * as z from 'zod'
+import {
+  boilingPointC,
+  saturationPressureMpa,
+  saturationTempK,
+  standardPressurePa,
+} from '../../lib/science/steam'
+import {
+  expectClose,
+  expectRangeError,
+  expectWithin,
+  notNumbers,
+  numberShape,
+  numbersShape,
+  propertyRun,
+  testPublished,
+  toleranceOf,
+} from './published-checks'
+
+describe('saturation line', () => {
+  testPublished('steam.psat_MPa', (check) =>
+    expectClose(
+      check,
+      saturationPressureMpa(numberShape.parse(check.inputs.T_K)),
+      numberShape.parse(check.expected),
+    ),
+  )
+  testPublished('steam.tsat_K', (check) =>
+    expectClose(
+      check,
+      saturationTempK(numberShape.parse(check.inputs.p_MPa)),
+      numberShape.parse(check.expected),
+    ),
+  )
+  testPublished('steam.psat_Pa', (check) =>
+    expectClose(
+      check,
+      saturationPressureMpa(numberShape.parse(check.inputs.T_K)) * 1e6,
+      numberShape.parse(check.expected),
+    ),
+  )
+  testPublished('steam.boiling_point_C (t=T-273.15)', (check) => {
+    const expected = numbersShape.parse(check.expected)
+    numbersShape
+      .parse(check.inputs.p_hPa)
+      .forEach((pressureHpa, i) => expectClose(check, boilingPointC(pressureHpa), expected[i] ?? NaN))
+  })
+  it('temperature and pressure are inverse, from freezing to the critical point', () => {
+    fc.assert(
+      fc.property(fc.double({ min: 273.15, max: 647.096, noNaN: true }), (tempK) => {
+        expectWithin(saturationTempK(saturationPressureMpa(tempK)), tempK, 1e-6)
+      }),
+      propertyRun,
+    )
+  })
+  it('near one atmosphere a hectopascal is 0.0277 °C', () => {
+    expectWithin(boilingPointC(1013.75) - boilingPointC(1012.75), 0.0277, 1e-4)
+  })
+  it('values outside the domain are named', () => {
+    for (const value of [...notNumbers, 273, 648])
+      expectRangeError('tempK', () => saturationPressureMpa(value))
+    for (const value of [...notNumbers, 0, 23]) expectRangeError('pressureMpa', () => saturationTempK(value))
+    for (const value of [...notNumbers, -1, 0]) expectRangeError('pressureHpa', () => boilingPointC(value))
+  })
+})
+
+describe('standard atmosphere', () => {
+  testPublished('atmosphere.pressure_Pa and boiling_point_C', (check) => {
+    const expected = z.object({ p_Pa: numbersShape, t_C: numbersShape }).parse(check.expected)
+    numbersShape.parse(check.inputs.altitude_m).forEach((altitudeM, i) => {
+      const pressurePa = standardPressurePa(altitudeM)
+      expectWithin(pressurePa, expected.p_Pa[i] ?? NaN, toleranceOf(check, 'p_abs'))
+      expectWithin(boilingPointC(pressurePa / 100), expected.t_C[i] ?? NaN, toleranceOf(check, 't_abs'))
+    })
+  })
+  it('an altitude outside the troposphere is named', () => {
+    for (const value of [...notNumbers, 11_001])
+      expectRangeError('altitudeM', () => standardPressurePa(value))
+  })
+})
