@@ -388,8 +388,10 @@ function followToaster(
   const marks: HearthMark[] = []
   const { timeS } = state
   for (const act of turn.acts) {
+    // On a console, lid, mist and turns are the person's; the fire is still kept.
+    if (state.options.isConsoleLed && !FIRE_KEEPING.has(act.kind)) continue
     actOnFire(state, act)
-    if (act.kind !== 'draught') marks.push({ timeS, kind: act.kind })
+    if (act.kind !== 'draught' && !state.options.isConsoleLed) marks.push({ timeS, kind: act.kind })
   }
   if (state.options.isConsoleLed) return marks
   const isLastStage = state.stageIndex >= state.options.recipe.stages.length - 1
@@ -402,6 +404,8 @@ function followToaster(
   }
   return marks
 }
+
+const FIRE_KEEPING: ReadonlySet<ToasterAct['kind']> = new Set(['draught', 'feed', 'stir'])
 
 const NEXT_PHASE: Record<HearthPhase, HearthPhase> = {
   preheating: 'bending',

@@ -127,6 +127,7 @@ export function createToaster(options: { recipe: HearthRecipe; skill: number; ra
       if (kind === 'mist') last.mistS = view.timeS
       if (kind === 'turn over') last.liftS = view.timeS
       if (kind === 'stir') last.stirS = view.timeS
+      if (kind === 'feed') last.feedS = view.timeS
     })
     return acts
   }

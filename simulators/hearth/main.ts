@@ -1,0 +1,115 @@
+import { join } from 'node:path'
+import { setTimeout as sleep } from 'node:timers/promises'
+import * as z from 'zod'
+import { startControl } from './control'
+import { readDemoFile } from './demo-file'
+import { createFaultBoard } from './fault-board'
+import { openOwnFirings } from './own-firings'
+import { createRoom, type Room } from './room'
+import { createServerView } from './server-view'
+import { createSimulatedGateway, type SimulatedGateway } from './simulated-gateway'
+
+/*
+ * The live simulator: the demo's gateways with their probes, the fires under them, and a toaster who tends the
+ * demo's own firings. Everything it does to the server goes the way a real gateway and a real toaster go.
+ */
+
+const environmentSchema = z.object({
+  SERVER_URL: z.url('SERVER_URL must be the address of the server, such as http://127.0.0.1:3000'),
+  DEMO_FILE: z.string('DEMO_FILE must name the file that the seed wrote'),
+  SPOOL_DIR: z.string('SPOOL_DIR must name a folder for readings that were not acknowledged'),
+  CONTROL_PORT: z.coerce.number().int().min(0).max(65_535).default(0),
+})
+
+const TICK_MS = 200
+const LOOK_EVERY_MS = 1_500
+
+function say(sentence: string) {
+  console.log(`hearth simulator: ${sentence}`)
+}
+
+async function main() {
+  const environment = environmentSchema.parse(process.env)
+  const { demo, seededAtMs } = readDemoFile(environment.DEMO_FILE)
+  const toaster = demo.signIns.find((one) => one.role === 'toaster')
+  if (toaster === undefined) throw new Error('The demo file names no toaster to sign in as.')
+  const board = createFaultBoard(Date.now)
+  const gateways = demo.gateways.map((gateway) =>
+    createSimulatedGateway({
+      demo: gateway,
+      serverUrl: environment.SERVER_URL,
+      spoolDir: environment.SPOOL_DIR,
+      board,
+      say,
+    }),
+  )
+  const room = createRoom({
+    view: createServerView({
+      serverUrl: environment.SERVER_URL,
+      email: toaster.email,
+      password: toaster.password,
+    }),
+    own: openOwnFirings(join(environment.SPOOL_DIR, 'own-firings.json'), seededAtMs),
+    gateways: demo.gateways,
+    say,
+  })
+  if (environment.CONTROL_PORT !== 0) {
+    await startControl(environment.CONTROL_PORT, board, ({ hearth, kind }) => {
+      say(`on command: ${kind} at hearth ${hearth}`)
+      if (kind === 'restart') void gatewayOf(gateways, hearth)?.restart()
+    })
+    say(`takes faults at http://127.0.0.1:${environment.CONTROL_PORT}/faults`)
+  }
+  say(`${demo.gateways.length} gateways read ${demo.gateways.flatMap((one) => one.hearths).length} hearths`)
+  await run(room, gateways, (hearth, readings) => board.spoil(hearth, readings))
+}
+
+function gatewayOf(gateways: readonly SimulatedGateway[], hearth: number): SimulatedGateway | undefined {
+  return gateways.find((gateway) => gateway.demo.hearths.includes(hearth))
+}
+
+type Spoil = ReturnType<typeof createFaultBoard>['spoil']
+
+/** Reads five times a second until told to end; then lets what is under way arrive. */
+async function run(room: Room, gateways: readonly SimulatedGateway[], spoil: Spoil) {
+  const ending = new AbortController()
+  for (const signal of ['SIGTERM', 'SIGINT'] as const) process.once(signal, () => ending.abort())
+  const ticking = setInterval(() => {
+    const readings = room.tick(Date.now())
+    for (const gateway of gateways) {
+      const own = gateway.demo.hearths.map(
+        (hearth) => [hearth, spoil(hearth, readings.get(hearth) ?? [])] as const,
+      )
+      gateway.record(new Map(own))
+    }
+  }, TICK_MS)
+  await keepLooking(room, ending.signal)
+  clearInterval(ticking)
+  await Promise.all(gateways.map((gateway) => gateway.stop()))
+}
+
+/** Looks at the server over and over; says what is wrong once, however long it stays so. */
+async function keepLooking(room: Room, ending: AbortSignal) {
+  let trouble: string | null = null
+  while (!ending.aborted) {
+    try {
+      await room.look(Date.now())
+      if (trouble !== null) say('the server answers again')
+      trouble = null
+    } catch (error) {
+      const sentence = error instanceof Error ? error.message : String(error)
+      if (sentence !== trouble) say(`looking at the server: ${sentence}`)
+      trouble = sentence
+    }
+    await sleep(LOOK_EVERY_MS, undefined, { signal: ending }).catch(() => {})
+  }
+}
+
+try {
+  await main()
+  process.exit(0)
+} catch (error) {
+  const sentence = error instanceof z.ZodError ? z.prettifyError(error) : String(error)
+  console.error(`hearth simulator: ${sentence}`)
+  process.exit(1)
+}
