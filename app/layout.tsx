@@ -46,6 +46,9 @@ export const metadata: Metadata = {
   formatDetection: { telephone: false, date: false, address: false, email: false },
 }
 
+/** Each page carries a nonce of its own, so none is made beforehand. */
+export const dynamic = 'force-dynamic'
+
 export const viewport: Viewport = {
   width: 'device-width',
   initialScale: 1,

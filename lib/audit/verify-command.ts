@@ -16,6 +16,10 @@ function readAnchor(text: string | undefined): Anchor | null {
   return { seq: Number(match[1]), hash: match[2] ?? '' }
 }
 
+// The environment is checked whole; what only a web server needs may be absent here and is never used.
+process.env['APP_ORIGIN'] ??= 'http://127.0.0.1'
+process.env['SESSION_SECRET'] ??= 'not used here: this program only reads'
+
 try {
   const chain = await verifyChain(systemActor('audit verification'), readAnchor(process.argv[2]))
   if (chain.isIntact) {

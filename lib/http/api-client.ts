@@ -1,4 +1,3 @@
-import type { Problem } from '@/components/ui/problem'
 import type { Method } from '@/lib/http/operation'
 
 /**
@@ -31,8 +30,12 @@ export function isApiProblem(error: unknown): error is ApiProblem {
   return typeof error === 'object' && error !== null && Reflect.get(error, brand) === true
 }
 
-/** What a form or dialog shows for anything caught. */
-export function problemOf(error: unknown): Problem {
+/** What a form or dialog shows for anything caught: a title, a sentence, and a sentence a field. */
+export function problemOf(error: unknown): {
+  title: string
+  detail: string
+  fields?: Readonly<Record<string, string>>
+} {
   if (isApiProblem(error)) return error.problem
   return {
     title: 'This did not work',

@@ -170,11 +170,15 @@ describe('the verification', () => {
 async function runCommand(): Promise<{ code: number; stdout: string }> {
   const env = { PATH: process.env['PATH'], HOME: process.env['HOME'], DATABASE_URL: database.databaseUrl }
   try {
-    const done = await promisify(execFile)(process.execPath, ['--import', 'tsx', 'lib/setup/audit-verify.ts'], { env })
+    const done = await promisify(execFile)(
+      process.execPath,
+      ['--import', 'tsx', 'lib/audit/verify-command.ts'],
+      { env },
+    )
     return { code: 0, stdout: done.stdout }
   } catch (error) {
     const code = Number(Reflect.get(Object(error), 'code'))
-    return { code, stdout: String(Reflect.get(Object(error), 'stdout')) }
+    return { code, stdout: String(Reflect.get(Object(error), 'stderr')) }
   }
 }
 
