@@ -140,17 +140,19 @@ export function equivalentMinutes(model: DoseModel, points: readonly CurvePoint[
   return dose.minutes
 }
 
+/** Names are made only on failure: a firing has ten thousand points and must cost little. */
 function requirePoints(points: readonly CurvePoint[]): void {
   if (points.length === 0) throw new RangeError('points must hold at least one point')
   let lastTimeS = -Infinity
-  points.forEach((point, i) => {
-    requireFinite(`points[${i}].timeS`, point.timeS)
-    requireFinite(`points[${i}].tempC`, point.tempC)
-    if (point.timeS < lastTimeS) {
-      throw new RangeError(`points[${i}].timeS must not fall: ${point.timeS} after ${lastTimeS}`)
-    }
-    lastTimeS = point.timeS
-  })
+  let i = 0
+  for (const { timeS, tempC } of points) {
+    if (!Number.isFinite(timeS)) requireFinite(`points[${i}].timeS`, timeS)
+    if (!Number.isFinite(tempC)) requireFinite(`points[${i}].tempC`, tempC)
+    if (timeS < lastTimeS)
+      throw new RangeError(`points[${i}].timeS must not fall: ${timeS} after ${lastTimeS}`)
+    lastTimeS = timeS
+    i += 1
+  }
 }
 
 /** Kelvin from °C; throws a `RangeError` that names `name` at or below absolute zero. */
@@ -237,13 +239,16 @@ export function arrheniusEquivalentMinutes(
   requirePoints(points)
   const eaOverRK = eaJPerMol / GAS_CONSTANT_J_PER_MOL_K
   let minutes = 0
-  let last: { timeS: number; tempK: number } | undefined
-  points.forEach((point, i) => {
-    const tempK = requireKelvin(`points[${i}].tempC`, point.tempC)
-    if (last !== undefined && point.timeS > last.timeS) {
-      minutes += ((point.timeS - last.timeS) / 60) * meanArrheniusRate(eaOverRK, refTempK, last.tempK, tempK)
+  let lastTimeS = Infinity
+  let lastTempK = 0
+  points.forEach(({ timeS, tempC }, i) => {
+    const tempK = tempC + ZERO_CELSIUS_K
+    if (!(tempK > 0)) requireKelvin(`points[${i}].tempC`, tempC)
+    if (timeS > lastTimeS) {
+      minutes += ((timeS - lastTimeS) / 60) * meanArrheniusRate(eaOverRK, refTempK, lastTempK, tempK)
     }
-    last = { timeS: point.timeS, tempK }
+    lastTimeS = timeS
+    lastTempK = tempK
   })
   if (minutes === Infinity) throw new RangeError('points are too far above refTempC: the dose has no number')
   return minutes
