@@ -9,7 +9,7 @@ export function Facts({
   isRuled?: boolean
 }) {
   return (
-    <dl className="grid grid-cols-[minmax(7rem,max-content)_1fr]">
+    <dl className="grid grid-cols-[fit-content(45%)_1fr]">
       {facts.map((fact) => (
         <div
           key={fact.name}

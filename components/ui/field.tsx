@@ -56,10 +56,7 @@ export function Field({
   const { label, hint, error, unit, isOptional, isLabelHidden, className } = frame
   return (
     <div className={classNames('min-w-0', className)}>
-      <label
-        htmlFor={wiring.id}
-        className={isLabelHidden ? 'sr-only' : 'mb-1 block text-small font-[560] fireside-text'}
-      >
+      <label htmlFor={wiring.id} className={isLabelHidden ? 'sr-only' : 'mb-1 block text-small font-[560]'}>
         {label}
         {isOptional ? <span className="font-normal text-mute"> (optional)</span> : null}
       </label>
@@ -72,12 +69,12 @@ export function Field({
         ) : null}
       </div>
       {isShown(hint) ? (
-        <p id={`${wiring.id}-hint`} className="mt-1 text-small text-soft fireside-text">
+        <p id={`${wiring.id}-hint`} className="mt-1 text-small text-soft">
           {hint}
         </p>
       ) : null}
       {isShown(error) ? (
-        <p id={`${wiring.id}-error`} className="mt-1 text-small font-[560] text-red fireside-text">
+        <p id={`${wiring.id}-error`} className="mt-1 text-small font-[560] text-red">
           {error}
         </p>
       ) : null}

@@ -54,17 +54,6 @@ export function StaveGauge({
           className="fill-plan-line opacity-45"
         />
         <rect width={toX(fraction ?? 0)} height={height} className="fill-toast" />
-        {planFraction === null ? null : (
-          <line
-            x1={toX(planFraction)}
-            x2={toX(planFraction)}
-            y1={height * 0.3}
-            y2={height * 0.7}
-            className="stroke-text"
-            strokeWidth="1.5"
-            strokeDasharray="3 2"
-          />
-        )}
       </g>
       <path d={outline} className="fill-none stroke-edge" strokeWidth="1.25" />
       <line x1={toX(1)} x2={toX(1)} y1="0" y2={height} className="stroke-text" strokeWidth="2.5" />

@@ -48,7 +48,10 @@ export function Table<Row>({
   if (rows.length === 0 && empty !== undefined) return <>{empty}</>
   return (
     <div className="relative overflow-x-auto" role="region" aria-label={caption} tabIndex={0}>
-      <table className="w-full border-collapse">
+      <table
+        className="group w-full border-collapse"
+        data-inset={isRowSelected === undefined ? undefined : true}
+      >
         <caption className={isCaptionShown ? 'mb-1 text-left font-[640]' : 'sr-only'}>{caption}</caption>
         <thead>
           <tr className="border-b border-line">
@@ -80,7 +83,8 @@ export function Table<Row>({
   )
 }
 
-const cellClass = 'py-[5.5px] pr-5 last:pr-[10px] first:pl-[10px] align-top'
+/** A table whose rows can be chosen is inset, so that the mark of the chosen row stands clear of its words. */
+const cellClass = 'py-[5.5px] pr-5 last:pr-[10px] group-data-inset:first:pl-[10px] align-top'
 
 function BodyCell<Row>({ column, row }: { column: Column<Row>; row: Row }) {
   const className = classNames(
@@ -139,8 +143,9 @@ function HeadCell<Row>({
           direction !== null && 'font-[640] text-text',
         )}
       >
+        {column.isNumeric ? <SortMark direction={direction} /> : null}
         <span>{name}</span>
-        <SortMark direction={direction} />
+        {column.isNumeric ? null : <SortMark direction={direction} />}
       </Link>
     </th>
   )

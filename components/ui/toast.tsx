@@ -73,7 +73,7 @@ function ToastLine({ toast, onGone }: { toast: ShownToast; onGone: (id: number) 
   return (
     <div
       className={classNames(
-        'fireside-text pointer-events-auto flex max-w-full items-center gap-4 rounded-control bg-text px-4 py-2 text-ground shadow-float',
+        'pointer-events-auto flex max-w-full items-center gap-4 rounded-control bg-text px-4 py-2 text-ground shadow-float',
         isWrong && 'bg-alarm-red! text-on-alarm!',
       )}
       onMouseEnter={() => setIsHeld(true)}
