@@ -1,8 +1,8 @@
 import type { CommittedRows } from '@/lib/live/hub-door'
 import { shared } from '@/lib/runtime'
 
-/** A row older than this when it is committed may belong to a firing that is sealed already. */
-const lateAfterMs = 15_000
+/** A row older than this when it is committed may belong to a firing that is sealed already: see `sealAfterMs`. */
+export const lateAfterMs = 2_000
 
 /** Earliest and latest instant of rows that came late, by probe number. */
 export type LateSpan = { probeNo: number; fromMs: number; toMs: number }

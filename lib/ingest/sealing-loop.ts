@@ -1,14 +1,18 @@
 import { forkEm, queryRows } from '@/lib/db/orm'
 import type { LateSpan } from '@/lib/ingest/late-rows'
-import { takeLateSpans } from '@/lib/ingest/late-rows'
+import { lateAfterMs, takeLateSpans } from '@/lib/ingest/late-rows'
 import { sealFiring } from '@/lib/ingest/seal-firing'
 import { oldestMs } from '@/lib/ingest/sort-readings'
 import { notifyFiringChanged } from '@/lib/live/notify'
 import { log } from '@/lib/log'
 import { now } from '@/lib/runtime'
 
-/** A firing whose gateway is silent is sealed with what there is this long after its end. */
+/** A firing whose gateway has been silent for this long is sealed with what there is. */
 export const sealingGraceMs = 120_000
+/** And one whose gateway speaks, but of other things, this long after its end. */
+export const sealingLatestMs = 30 * 60_000
+/** Not sooner: a row that comes after the seal is then one that `noteLateRows` remembers. */
+const sealAfterMs = lateAfterMs + 1_000
 const everyMs = 3_000
 /** A firing that could not be sealed or scored is left alone for this long. */
 const retryMs = 30_000
@@ -27,7 +31,7 @@ export type SealingLoop = {
 
 /**
  * Seals ended firings and has them scored, every few seconds. A firing is due once each of its gateways has
- * acknowledged a reading past its end, or after the grace; one that is sealed is looked at again when readings of its
+ * acknowledged a reading past its end, or has been silent for the grace; one that is sealed is looked at again when readings of its
  * time come late, and once after a start.
  */
 export function startSealingLoop(options: SealingOptions = {}): SealingLoop {
@@ -89,26 +93,29 @@ export function startSealingLoop(options: SealingOptions = {}): SealingLoop {
 
 type IdRow = { id: string }
 
-/** Ended, not sealed, and either every gateway is past the end or the grace is over. */
+/** Ended, not sealed, and each gateway either past the end, or silent for the grace. */
 async function dueFirings(): Promise<string[]> {
+  const atMs = now().getTime()
   const rows = await queryRows<IdRow>(
     await forkEm(),
     `with ended as (
        select f.id, f.ended_at, (extract(epoch from f.ended_at) * 1000)::bigint as ended_ms
          from firings f
-        where f.state in ('finished', 'abandoned') and f.preheat_at is not null
+        where f.state in ('finished', 'abandoned') and f.preheat_at is not null and f.ended_at < ?::timestamptz
           and not exists (select from seals s where s.firing_id = f.id)
           and exists (select from firing_probes fp where fp.firing_id = f.id))
      select e.id from ended e
       where e.ended_at < ?::timestamptz
          or not exists (
-           select from firing_probes fp join probes p on p.id = fp.probe_id
-            where fp.firing_id = e.id and not exists (
-              select from probes q join readings r on r.probe_no = q.no join gateway_boots b on b.no = r.boot_no
-               where q.gateway_id = p.gateway_id and r.at_ms >= e.ended_ms and r.at_ms < e.ended_ms + 600000
-                 and r.seq <= b.acked_seq))
+           select from firing_probes fp
+             join probes p on p.id = fp.probe_id join gateways g on g.id = p.gateway_id
+            where fp.firing_id = e.id and greatest(e.ended_at, g.last_seen_at) >= ?::timestamptz
+              and not exists (
+                select from probes q join readings r on r.probe_no = q.no join gateway_boots b on b.no = r.boot_no
+                 where q.gateway_id = g.id and r.at_ms >= e.ended_ms and r.at_ms < e.ended_ms + 600000
+                   and r.seq <= b.acked_seq))
       order by e.ended_at limit 50`,
-    [new Date(now().getTime() - sealingGraceMs)],
+    [new Date(atMs - sealAfterMs), new Date(atMs - sealingLatestMs), new Date(atMs - sealingGraceMs)],
   )
   return rows.map((row) => row.id)
 }
