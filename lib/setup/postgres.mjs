@@ -39,6 +39,8 @@ const ROLES = { superuser: 'postgres', owner: OWNER_ROLE, app: APP_ROLE }
 export function startCluster(name, { fast = false } = {}) {
   if (fast && name === 'main') throw new Error('the main cluster is never run without fsync')
   return withLock(`postgres ${name}`, async () => {
+    // First: Debian's package brings the user that the cluster belongs to.
+    await postgresPrograms()
     const place = await clusterPlace(name)
     const bin = await programsFor(name, place.folder)
     const cluster = { name, ...place, bin, passwords: await clusterPasswords(name) }
