@@ -1,6 +1,7 @@
 import { randomBytes } from 'node:crypto'
 import type { NextRequest } from 'next/server'
 import { NextResponse } from 'next/server'
+import { pagePathHeader } from '@/lib/http/next-path'
 import { dataPolicy, pagePolicy, securityHeaders } from '@/lib/http/security-headers'
 
 /** Runs before every page and API answer but readings, which come too often and hold nothing for a browser. */
@@ -20,6 +21,7 @@ export function proxy(request: NextRequest): NextResponse {
   // Next reads the nonce for its own scripts from the policy of the request.
   const forPage = new Headers(request.headers)
   forPage.set('x-nonce', nonce)
+  forPage.set(pagePathHeader, `${request.nextUrl.pathname}${request.nextUrl.search}`)
   forPage.set('content-security-policy', policy)
   return withHeaders(NextResponse.next({ request: { headers: forPage } }), {
     ...headers,
