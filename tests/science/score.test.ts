@@ -213,6 +213,15 @@ describe('band and shape', () => {
     expect(term(score, 'shape').pointsLost).toBe(0)
   })
 
+  test('a curve just inside its band is all in it, one just outside not at all', () => {
+    const off = (bands: number) => (timeS: number) =>
+      planC(timeS) + bands * (timeS < 720 ? 80 / 6 : timeS < 1200 ? 12 : 7)
+    expect(term(scoreFiring(firing({ lead: readings(off(0.98)) })), 'inBand').measured).toBeGreaterThan(99)
+    expect(term(scoreFiring(firing({ lead: readings(off(-0.98)) })), 'inBand').measured).toBeGreaterThan(99)
+    expect(term(scoreFiring(firing({ lead: readings(off(1.04)) })), 'inBand').measured).toBeLessThan(1)
+    expect(term(scoreFiring(firing({ lead: readings(off(-1.04)) })), 'inBand').measured).toBeLessThan(1)
+  })
+
   test('a constant deviation of two bands is a shape of 2 and loses half', () => {
     const deviation = (timeS: number) => {
       const half = timeS < 720 ? 80 / 6 : timeS < 1200 ? 12 : 7

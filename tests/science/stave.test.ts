@@ -15,7 +15,7 @@ import {
   tempCAtDepth,
   toastDepthMm,
 } from '../../lib/science/stave'
-import { densityKgPerM3, heatCapacityJPerKgK } from '../../lib/science/wood'
+import { conductivityWPerMK, densityKgPerM3, heatCapacityJPerKgK } from '../../lib/science/wood'
 import checks from './reference/checks.json'
 
 const stave: StaveOptions = {
@@ -215,6 +215,23 @@ describe('the stave model with the handbook’s wood', () => {
     expect(face.high - face.value).toBeCloseTo((face.value - tempCAtDepth(follower, 2)) / 4, 9)
     // The wood behind the probe does not depend on how the layer before it is estimated.
     expect(Math.abs(tempCAtDepth(follower, 10) - tempCAtDepth(truth, 10))).toBeLessThan(0.5)
+  })
+
+  test('in the steady state heat crosses dry wood as its conductivity, rising 0.25 % per °C above 24 °C, says', () => {
+    const state = createStave({
+      ...stave,
+      probeDepthMm: 0,
+      moisturePercent: 0,
+      startTempC: 100,
+      longestStepS: 30,
+    })
+    run(state, () => 200, 60_000, 30)
+    const coldC = tempCAtDepth(state, 27)
+    const k24 = conductivityWPerMK(0.64, 0)
+    // Kirchhoff: q·L = ∫ k dT = k24·((T1 − T2) + 0.0025/2·((T1 − 24)² − (T2 − 24)²)).
+    const bend = (0.0025 / 2) * ((200 - 24) ** 2 - (coldC - 24) ** 2)
+    const fluxWPerM2 = (k24 * (200 - coldC + bend)) / 0.027
+    expect(Math.abs((10 * (coldC - 20)) / fluxWPerM2 - 1)).toBeLessThan(0.001)
   })
 
   test('wood lingers near 100 °C while wet', () => {
