@@ -4,10 +4,10 @@ import type { ProbeAssignment, ProbeRole } from '@/lib/ingest/firing-probes'
 import { readFiringProbes } from '@/lib/ingest/firing-probes'
 import { readHot } from '@/lib/ingest/read-hot'
 import { readSealed } from '@/lib/ingest/read-sealed'
+import { recordSpacingS } from '@/lib/ingest/record-spacing'
 import type { ReadingColumns } from '@/lib/ingest/reading-columns'
 import { appendRow, emptyColumns } from '@/lib/ingest/reading-columns'
 import type { ReadingSeries } from '@/lib/science/gaps'
-import { medianSpacingS } from '@/lib/science/gaps'
 
 /** What one probe said in one period of a firing, in stored units. */
 export type RawProbeReadings = { assignment: ProbeAssignment; columns: ReadingColumns }
@@ -79,9 +79,6 @@ export function toReadingSeries(series: FiringSeries, toastAtMs: number): Readin
   }
 }
 
-/** Spacing when a record is too short to tell: the room's usual 5 readings a second. */
-export const usualSpacingS = 0.2
-
 function joinParts(role: ProbeRole, parts: readonly RawProbeReadings[]): FiringSeries {
   const atMs: number[] = []
   const tempC: number[] = []
@@ -100,7 +97,7 @@ function joinParts(role: ProbeRole, parts: readonly RawProbeReadings[]): FiringS
     assignments: parts.map((part) => part.assignment),
     atMs: Float64Array.from(atMs),
     tempC: Float64Array.from(tempC),
-    spacingS: atMs.length < 3 ? usualSpacingS : medianSpacingS(atMs) / 1000,
+    spacingS: recordSpacingS(atMs),
   }
 }
 

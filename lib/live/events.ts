@@ -114,16 +114,27 @@ export const firingJoinedSchema = z.object({
 })
 export type FiringJoined = z.infer<typeof firingJoinedSchema>
 
+/** One firing of the room overview. */
+export const roomFiringSchema = firingStateSchema
+  .omit({ forecast: true, stave: true })
+  .extend({ hearthNumber: z.number().int().nullable(), serial: z.string(), recipeName: z.string() })
+export type RoomFiring = z.infer<typeof roomFiringSchema>
+
+export const roomStateSchema = z.object({ atMs: z.number().int(), firings: z.array(roomFiringSchema) })
+export type RoomState = z.infer<typeof roomStateSchema>
+
 export const events = {
   /** client → server, acknowledged with firingJoinedSchema or a problem */
   firingJoin: 'firing:join',
   firingLeave: 'firing:leave',
-  /** client → server, acknowledged with the states of all live firings; joins the room overview */
+  /** client → server, acknowledged with roomStateSchema; joins the room overview */
   roomJoin: 'room:join',
   /** server → client */
   firingReadings: 'firing:readings',
   firingState: 'firing:state',
   /** server → client: marks, phase, finish: the client fetches what it needs again */
+  /** once a second: every live firing without forecast and stave */
+  roomState: 'room:state',
   firingChanged: 'firing:changed',
   roomChanged: 'room:changed',
   sessionEnded: 'session:ended',
@@ -136,3 +147,7 @@ export const firingChangedSchema = z.object({
   revision: z.number().int(),
   what: z.string(),
 })
+export type FiringChanged = z.infer<typeof firingChangedSchema>
+
+/** Client → server: leave a firing. */
+export const leaveFiringSchema = z.strictObject({ firingId: z.uuid() })

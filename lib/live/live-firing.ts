@@ -1,0 +1,208 @@
+import { randomUUID } from 'node:crypto'
+import type { ProbeAssignment } from '@/lib/ingest/firing-probes'
+import { recordSpacingS } from '@/lib/ingest/record-spacing'
+import type { FiringJoined, FiringState } from '@/lib/live/events'
+import type { FiringFacts } from '@/lib/live/firing-facts'
+import { createLiveAlarms } from '@/lib/live/live-alarms'
+import { liveForecast } from '@/lib/live/live-forecast'
+import type { NewestFlag, Role, Signal } from '@/lib/live/live-signals'
+import { liveSignals } from '@/lib/live/live-signals'
+import { createLiveStave } from '@/lib/live/live-stave'
+import type { PointStream } from '@/lib/live/point-stream'
+import { createPointStream } from '@/lib/live/point-stream'
+import type { RoleCurve } from '@/lib/live/role-curve'
+import { createRoleCurve } from '@/lib/live/role-curve'
+import { createRunningDose } from '@/lib/live/running-dose'
+import { nextAction, stageNow } from '@/lib/live/stage-now'
+import { planDoseAt } from '@/lib/recipes/plan-of'
+import { climbRateCPerMin } from '@/lib/science/curve'
+import { fillGaps, gapExtremes } from '@/lib/science/gaps'
+import { planTempCAt } from '@/lib/science/plan'
+import { climbsCPerMin } from '@/lib/science/score-limits'
+
+/** What makes viewers be told at once, and not only at the next second. */
+export type Glance = {
+  signals: Signal[]
+  alarm: FiringState['alarm']
+  words: string
+  position: number | null
+}
+
+/** One firing as the hub holds it: its readings so far and everything computed from them. */
+export type LiveFiring = {
+  readonly epoch: string
+  readonly stream: PointStream
+  facts: () => FiringFacts
+  /** The same firing read again; its probes and their periods must not have shrunk. */
+  setFacts: (facts: FiringFacts) => void
+  put: (assignment: ProbeAssignment, atMs: number, tempC: number, flag: number) => void
+  /** Advances dose and alarms; cheap enough for every tick. */
+  glance: (atMs: number) => Glance
+  /** Advances everything. */
+  state: (atMs: number) => FiringState
+  staveColumns: () => FiringJoined['staveColumns']
+}
+
+const climbWindowS = 30
+/** Gaps widen the interval slowly; looking for them walks the whole curve. */
+const gapsEveryMs = 5_000
+
+export function createLiveFiring(firstFacts: FiringFacts): LiveFiring {
+  const epoch = randomUUID()
+  const stream = createPointStream()
+  const curves: Record<Role, RoleCurve> = {
+    lead: createRoleCurve(),
+    opposite: createRoleCurve(),
+    coals: createRoleCurve(),
+  }
+  const none: NewestFlag = { atMs: -Infinity, flag: 0 }
+  const flags: Record<Role, NewestFlag> = { lead: { ...none }, opposite: { ...none }, coals: { ...none } }
+  let facts = firstFacts
+  const dose = createRunningDose(facts.rules.dose, (curve) => {
+    return 1000 * facts.rules.gaps.gapFromSpacings * recordSpacingS(curve.since(0).atMs)
+  })
+  const alarms = createLiveAlarms(facts)
+  let stave = createLiveStave(facts)
+  let doseMin = 0
+  let gaps: DoseGaps = { atMs: -Infinity, log10Half: facts.rules.errors.sameMountLog10, isIncomplete: false }
+  let alarm: FiringState['alarm'] = null
+
+  const setWindow = () => {
+    const { toastMs, restMs, endedMs } = facts
+    dose.setWindow(toastMs === null ? null : { toastMs, restMs: restMs ?? endedMs })
+  }
+  setWindow()
+
+  const advance = (atMs: number): Signal[] => {
+    doseMin = dose.advance(curves.lead)
+    stave.advance(curves.lead, atMs)
+    const signals = liveSignals(facts, curves, flags, atMs)
+    const lead = signals.find((signal) => signal.role === 'lead')
+    const windowClimbCPerMin = climbOver(curves.lead, facts.rules.limits.climbWindowS, atMs)
+    alarm = alarms.see({ facts, lead, windowClimbCPerMin, atMs })
+    return signals
+  }
+
+  return {
+    epoch,
+    stream,
+    facts: () => facts,
+    setFacts: (newer) => {
+      const isStaveNew = newer.toastMs !== facts.toastMs || newer.moisturePercent !== facts.moisturePercent
+      facts = newer
+      setWindow()
+      if (isStaveNew) stave = createLiveStave(facts)
+      gaps = { ...gaps, atMs: -Infinity }
+    },
+    put: ({ role }, atMs, tempC, flag) => {
+      const curve = curves[role]
+      const effect = curve.put(atMs, tempC)
+      if (atMs >= flags[role].atMs) flags[role] = { atMs, flag }
+      if (effect === 'same') return
+      stream.push(role, atMs, tempC)
+      if (role === 'lead' && effect !== 'appended') {
+        dose.touch(curve.indexFrom(atMs))
+        if (effect === 'inserted') stave.touch(curve.indexFrom(atMs))
+      }
+    },
+    glance: (atMs) => {
+      const signals = advance(atMs)
+      const { words } = nextAction(facts, atMs)
+      return { signals, alarm, words, position: stageNow(facts, atMs)?.position ?? null }
+    },
+    state: (atMs) => {
+      const signals = advance(atMs)
+      const { toastMs, plan } = facts
+      const toastS = toastMs === null ? null : (atMs - toastMs) / 1000
+      const lead = signals.find((signal) => signal.role === 'lead')
+      const isLive = lead?.condition === 'live'
+      const climb = isLive ? climbNow(curves.lead) : null
+      if (atMs - gaps.atMs >= gapsEveryMs) gaps = doseGaps(facts, curves.lead, doseMin, atMs)
+      return {
+        firingId: facts.firingId,
+        epoch,
+        atMs: Math.round(atMs),
+        state: facts.state,
+        revision: facts.revision,
+        signals,
+        woodTempC: isLive ? lead.tempC : null,
+        planTempC: toastS === null || toastS < 0 ? null : planTempCAt(plan.points, toastS),
+        climbCPerMin: climb === null ? null : Math.round(climb * 100) / 100,
+        toastS,
+        stage: stageNow(facts, atMs),
+        next: nextAction(facts, atMs),
+        dose: {
+          minutes: doseMin,
+          targetMinutes: plan.targetDoseMin,
+          planMinutesNow:
+            toastS === null || toastS < 0 ? 0 : planDoseAt(plan.points, facts.rules.dose, toastS),
+          goodToPercent: 100 * (10 ** gaps.log10Half - 1),
+          isIncomplete: gaps.isIncomplete,
+        },
+        forecast: liveForecast({
+          facts,
+          lead,
+          doseMin,
+          climbCPerMin: climb,
+          intervalLog10: gaps.log10Half,
+          atMs,
+        }),
+        stave: stave.newest(),
+        alarm,
+      }
+    },
+    staveColumns: () => stave.columns(),
+  }
+}
+
+function climbNow(curve: RoleCurve): number | null {
+  const last = curve.length === 0 ? NaN : curve.atMs(curve.length - 1)
+  const recent = curve.since(last - climbWindowS * 1000)
+  if (recent.atMs.length === 0) return null
+  return climbRateCPerMin(
+    recent.atMs.map((atMs) => (atMs - last) / 1000),
+    recent.tempC,
+    climbWindowS,
+  )
+}
+
+/** Least-squares climb over the last whole window of readings; null when there is none. */
+function climbOver(curve: RoleCurve, windowS: number, atMs: number): number | null {
+  const recent = curve.since(atMs - windowS * 1000 - 2_000)
+  const timeS: number[] = []
+  const tempC: number[] = []
+  recent.atMs.forEach((at, i) => {
+    const temp = recent.tempC[i] ?? NaN
+    if (Number.isNaN(temp)) return
+    timeS.push((at - atMs) / 1000)
+    tempC.push(temp)
+  })
+  const climb = climbsCPerMin({ timeS, tempC }, windowS).at(-1) ?? NaN
+  return Number.isNaN(climb) ? null : climb
+}
+
+type DoseGaps = { atMs: number; log10Half: number; isIncomplete: boolean }
+
+/** How good the dose is: the same-mount interval, widened by gaps over 30 s, and whether gaps leave it incomplete. */
+function doseGaps(facts: FiringFacts, curve: RoleCurve, doseMin: number, atMs: number): DoseGaps {
+  const { rules, toastMs, restMs, plan } = facts
+  const assumed = rules.errors.sameMountLog10
+  const none = { atMs, log10Half: assumed, isIncomplete: false }
+  if (toastMs === null) return none
+  const toS = ((restMs ?? atMs) - toastMs) / 1000
+  if (toS <= 0) return none
+  const read = curve.since(toastMs - 1_000)
+  const timeS = read.atMs.map((at) => (at - toastMs) / 1000)
+  const series = { timeS, tempC: read.tempC, spacingS: recordSpacingS(read.atMs) }
+  const filled = fillGaps(series, { fromS: 0, toS }, rules.gaps)
+  if (filled === null) return { ...none, isIncomplete: toS > rules.gaps.widenUpToS }
+  if (filled.gaps.every((gap) => gap.treatment === 'interpolated') || doseMin <= 0) {
+    return { ...none, isIncomplete: filled.isIncomplete }
+  }
+  const lastC = plan.points.at(-1)?.tempC ?? 0
+  const extremes = gapExtremes(filled, rules.dose, (at) => planTempCAt(plan.points, at) ?? lastC)
+  const lowMin = Math.max(doseMin - extremes.joinedMin + extremes.lowMin, doseMin * 1e-3)
+  const highMin = doseMin - extremes.joinedMin + extremes.highMin
+  const gapHalf = Math.max(Math.log10(doseMin / lowMin), Math.log10(highMin / doseMin), 0)
+  return { atMs, log10Half: Math.hypot(assumed, gapHalf), isIncomplete: filled.isIncomplete }
+}
