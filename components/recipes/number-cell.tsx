@@ -1,0 +1,106 @@
+'use client'
+
+import { useState } from 'react'
+import type { KeyboardEvent } from 'react'
+import { classNames } from '@/components/ui/class-names'
+import { fieldId } from '@/components/ui/field-id'
+import { toTyped } from '@/components/ui/number-field'
+import {
+  fromShownDifference,
+  fromShownTemp,
+  parseDecimal,
+  toShownDifference,
+  toShownTemp,
+  unitName,
+} from '@/lib/format'
+import type { TemperatureUnit } from '@/lib/format'
+
+export type Quantity = 'number' | 'temperature' | 'difference'
+
+export type NumberCellProps = {
+  /** The field's path, as an error names it. */
+  name: string
+  /** Read out; the row or column shows it. */
+  label: string
+  /** As stored: °C, min, mm. */
+  value: number | null
+  onChange: (value: number | null) => void
+  quantity?: Quantity
+  unit: TemperatureUnit
+  decimals?: number
+  error?: string | undefined
+  className?: string
+  disabled?: boolean
+  onKeyDown?: (event: KeyboardEvent<HTMLInputElement>) => void
+  onFocus?: () => void
+  onBlur?: () => void
+}
+
+export const cellClass =
+  'min-h-[30px] min-w-0 rounded-control border border-transparent bg-transparent px-[5px] py-[2px] hover:border-line ' +
+  'focus:border-water focus:bg-raised aria-invalid:border-red disabled:text-mute disabled:hover:border-transparent'
+
+function toShown(value: number, quantity: Quantity, unit: TemperatureUnit): number {
+  if (quantity === 'temperature') return toShownTemp(value, unit)
+  return quantity === 'difference' ? toShownDifference(value, unit) : value
+}
+
+function fromShown(value: number, quantity: Quantity, unit: TemperatureUnit): number {
+  if (quantity === 'temperature') return fromShownTemp(value, unit)
+  return quantity === 'difference' ? fromShownDifference(value, unit) : value
+}
+
+/** What a typed cell stands for, as stored; null when it is no number. */
+export function readCell(typed: string, quantity: Quantity, unit: TemperatureUnit): number | null {
+  const value = parseDecimal(typed)
+  return value === null ? null : fromShown(value, quantity, unit)
+}
+
+/** A number in a table or a line of words: quiet until pointed at, keeps exactly what was typed. */
+export function NumberCell(props: NumberCellProps) {
+  const { name, label, value, onChange, quantity = 'number', unit, decimals = 1, error, className } = props
+  const [typed, setTyped] = useState(() => show(value))
+  const typedValue = readCell(typed, quantity, unit)
+  const isAsTyped =
+    value === null || typedValue === null ? value === typedValue : Math.abs(value - typedValue) < 1e-9
+  const unitWords = quantity === 'number' ? '' : `, ${unitName(unit)}`
+
+  function show(shown: number | null): string {
+    return shown === null ? '' : toTyped(toShown(shown, quantity, unit), decimals)
+  }
+
+  return (
+    <input
+      id={fieldId(name)}
+      name={name}
+      aria-label={`${label}${unitWords}`}
+      aria-invalid={error === undefined ? undefined : true}
+      aria-describedby={error === undefined ? undefined : `${fieldId(name)}-error`}
+      inputMode="decimal"
+      autoComplete="off"
+      disabled={props.disabled}
+      className={classNames(cellClass, 'text-right', className)}
+      value={isAsTyped ? typed : show(value)}
+      onChange={(event) => {
+        setTyped(event.target.value)
+        onChange(readCell(event.target.value, quantity, unit))
+      }}
+      onKeyDown={props.onKeyDown}
+      onFocus={(event) => {
+        event.target.select()
+        props.onFocus?.()
+      }}
+      onBlur={props.onBlur}
+    />
+  )
+}
+
+/** What is wrong, under the cell that it is about. */
+export function CellError({ name, error }: { name: string; error: string | undefined }) {
+  if (error === undefined) return null
+  return (
+    <p id={`${fieldId(name)}-error`} className="text-small font-[560] text-red">
+      {error}
+    </p>
+  )
+}
