@@ -21,7 +21,7 @@ export const ScoreEntity = defineEntity({
     doseLowMinutes: p.double().nullable(),
     doseHighMinutes: p.double().nullable(),
     planDoseMinutes: p.double(),
-    deltaLog10Dose: p.double().nullable(),
+    deltaLog10Dose: p.double().nullable().fieldName('delta_log10_dose'),
     toastDepthMm: p.double().nullable(),
     result: p.json<unknown>(),
     sketch: p.json<unknown>().onCreate(() => ({})),

@@ -5,7 +5,7 @@ import { dropDatabase, ensureDatabase } from './postgres.mjs'
 import { run, tail } from './run.mjs'
 import { say, SetupError } from './say.mjs'
 
-export const SCENARIOS = ['demo', 'empty', 'busy', 'year']
+export const SCENARIOS = ['demo', 'empty', 'busy']
 const RECORD = 'scenario.json'
 
 /** Brings the schema up to date. `environment` has `DATABASE_OWNER_URL`. */
