@@ -1,11 +1,9 @@
 import { existsSync } from 'node:fs'
+import { dirname } from 'node:path'
 import { isRoot } from './paths.mjs'
 import { withLock } from './lock.mjs'
 import { run, tail } from './run.mjs'
 import { say, SetupError } from './say.mjs'
-
-const ENVIRONMENT = 'DEBIAN_FRONTEND=noninteractive'
-const INSTALL = 'apt-get -q -y -o DPkg::Lock::Timeout=600 install --no-install-recommends'
 
 // Debian's PostgreSQL package makes and starts a cluster on port 5432 of its own accord. We want the programs
 // only, so the package is told not to, for the length of this installation.
@@ -26,26 +24,16 @@ export async function installDebianPackages(packages, why) {
       `Install ${why} yourself, then run this again.`,
     )
   }
-  const prefix = isRoot ? [] : ['sudo', '-n']
   if (!isRoot && (await run('sudo', ['-n', 'true'])).code !== 0) {
     throw new SetupError(
       `${why} is not installed, and this user may not install it.`,
-      `Type this, then run the command again:\n${byHand}`,
+      `Type this (as root without the sudo), then run the command again:\n${byHand}`,
     )
   }
   say(`installing ${why} from Debian's packages (once; a minute or two)`)
-  const script = [
-    'set -e',
-    `mkdir -p ${QUIET_CLUSTER.replace(/\/[^/]+$/, '')}`,
-    `printf 'create_main_cluster = false\\n' > ${QUIET_CLUSTER}`,
-    `trap 'rm -f ${QUIET_CLUSTER}' EXIT`,
-    // A list that is too old names files that are gone: ask for fresh ones first, and go on with the old when offline.
-    'apt-get -q update || true',
-    `${INSTALL} ${packages.join(' ')}`,
-  ].join('\n')
-  const result = await withLock('apt', () => run('env', [ENVIRONMENT, ...prefixed(prefix, script)]), {
-    scope: 'machine',
-  })
+  const command = ['env', 'DEBIAN_FRONTEND=noninteractive', 'sh', '-c', installScript(packages)]
+  const [file, ...args] = isRoot ? command : ['sudo', '-n', ...command]
+  const result = await withLock('apt', () => run(file, args), { scope: 'machine' })
   if (result.code !== 0) {
     throw new SetupError(
       `${why} could not be installed from Debian's packages.`,
@@ -54,7 +42,17 @@ export async function installDebianPackages(packages, why) {
   }
 }
 
-function prefixed(prefix, script) {
-  // sudo drops the environment, so the variable is set again behind it.
-  return prefix.length ? [...prefix, 'env', ENVIRONMENT, 'sh', '-c', script] : ['sh', '-c', script]
+function installScript(packages) {
+  const withoutCluster = [
+    `mkdir -p ${dirname(QUIET_CLUSTER)}`,
+    `printf 'create_main_cluster = false\n' > ${QUIET_CLUSTER}`,
+    `trap 'rm -f ${QUIET_CLUSTER}' EXIT`,
+  ]
+  return [
+    'set -e',
+    ...(packages.includes('postgresql') ? withoutCluster : []),
+    // A list that is too old names files that are gone: ask for fresh ones, and go on with the old when offline.
+    'apt-get -q update || true',
+    `apt-get -q -y -o DPkg::Lock::Timeout=600 install --no-install-recommends ${packages.join(' ')}`,
+  ].join('\n')
 }

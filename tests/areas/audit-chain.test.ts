@@ -168,7 +168,12 @@ describe('the verification', () => {
 
 /** The command as `npm run audit:verify` runs it: a program of its own, given the database's address. */
 async function runCommand(): Promise<{ code: number; stdout: string }> {
-  const env = { PATH: process.env['PATH'], HOME: process.env['HOME'], DATABASE_URL: database.databaseUrl }
+  const env: NodeJS.ProcessEnv = {
+    NODE_ENV: 'test',
+    PATH: process.env['PATH'],
+    HOME: process.env['HOME'],
+    DATABASE_URL: database.databaseUrl,
+  }
   try {
     const done = await promisify(execFile)(
       process.execPath,
