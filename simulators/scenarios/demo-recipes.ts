@@ -41,7 +41,7 @@ function barrel(lines: StageLine[], more: Partial<RecipeContent> = {}): RecipeCo
     stages: lines.map(stage),
     doseTargetMinutes: null,
     doseToleranceLog10: 0.12,
-    limits: { woodMaximumC: 215, climbMaximumCPerMin: 14, spreadC: 8 },
+    limits: { woodMaximumC: 215, climbMaximumCPerMin: 22, spreadC: 8 },
     restMinutes: 8,
     flavourIntent: '',
     notes: '',
@@ -186,7 +186,7 @@ export const demoRecipes: DemoRecipe[] = [
           {
             flavourIntent: 'High and short: roasted nut at the face, fresh wood behind.',
             notes: 'Demo recipe, invented.',
-            limits: { woodMaximumC: 220, climbMaximumCPerMin: 14, spreadC: 9 },
+            limits: { woodMaximumC: 220, climbMaximumCPerMin: 22, spreadC: 9 },
           },
         ),
         daysAgo: 160,
@@ -210,7 +210,7 @@ export const demoRecipes: DemoRecipe[] = [
           {
             flavourIntent: 'Smoke, clove, dark chocolate.',
             notes: 'Demo recipe, invented.',
-            limits: { woodMaximumC: 222, climbMaximumCPerMin: 14, spreadC: 9 },
+            limits: { woodMaximumC: 222, climbMaximumCPerMin: 22, spreadC: 9 },
           },
         ),
         daysAgo: 140,

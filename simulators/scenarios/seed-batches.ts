@@ -119,8 +119,8 @@ async function seedFiring({
     engine: {
       seed: plan.daysAgo * 100 + index,
       skill: Math.min(
-        0.98,
-        Math.max(0.45, 0.84 + random.gaussian() * 0.07 - (index % cast.toasters.length) * 0.05),
+        0.95,
+        Math.max(0.2, 0.62 + random.gaussian() * 0.18 - (index % cast.toasters.length) * 0.06),
       ),
       moisturePercent: Math.round((plan.moisturePercent + random.gaussian() * 0.7) * 10) / 10,
       ...trouble?.engine,
