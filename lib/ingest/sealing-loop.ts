@@ -1,4 +1,5 @@
 import { forkEm, queryRows } from '@/lib/db/orm'
+import { isAppError } from '@/lib/errors'
 import type { LateSpan } from '@/lib/ingest/late-rows'
 import { lateAfterMs, takeLateSpans } from '@/lib/ingest/late-rows'
 import { sealFiring } from '@/lib/ingest/seal-firing'
@@ -40,6 +41,8 @@ export function startSealingLoop(options: SealingOptions = {}): SealingLoop {
   let timer: NodeJS.Timeout | undefined
   let underWay: Promise<void> = Promise.resolve()
   const failedAtMs = new Map<string, number>()
+  /** What a person would have to mend first, such as a firing that never toasted; looked at again after a restart. */
+  const hopeless = new Set<string>()
 
   const attempt = async (firingId: string, work: () => Promise<void>) => {
     if (isStopped || now().getTime() - (failedAtMs.get(firingId) ?? -Infinity) < retryMs) return
@@ -62,10 +65,10 @@ export function startSealingLoop(options: SealingOptions = {}): SealingLoop {
       await attempt(firingId, () => seal(firingId))
     const { scoreSealed } = options
     if (scoreSealed === undefined) return
-    for (const firingId of await unscored()) {
+    for (const firingId of (await unscored()).filter((id) => !hopeless.has(id))) {
       await attempt(firingId, async () => {
-        await scoreSealed(firingId)
-        notifyFiringChanged(firingId, 'scored')
+        if (await isScored(scoreSealed, firingId)) notifyFiringChanged(firingId, 'scored')
+        else hopeless.add(firingId)
       })
     }
   }
@@ -88,6 +91,18 @@ export function startSealingLoop(options: SealingOptions = {}): SealingLoop {
       clearTimeout(timer)
       await underWay
     },
+  }
+}
+
+/** False when the verb says that this firing cannot be scored as it is. */
+async function isScored(score: (firingId: string) => Promise<void>, firingId: string): Promise<boolean> {
+  try {
+    await score(firingId)
+    return true
+  } catch (error) {
+    if (!isAppError(error) || error.kind !== 'conflict') throw error
+    log().info({ firingId }, `a firing is not scored: ${error.detail}`)
+    return false
   }
 }
 

@@ -3,7 +3,7 @@ import { AppError } from '@/lib/errors'
 import { convertReading } from '@/lib/ingest/convert-reading'
 import type { ProbeAssignment } from '@/lib/ingest/firing-probes'
 import { readHot } from '@/lib/ingest/read-hot'
-import type { FiringJoined, RoomFiring, RoomState } from '@/lib/live/events'
+import type { FiringJoined, FiringState, RoomFiring, RoomState } from '@/lib/live/events'
 import { events } from '@/lib/live/events'
 import type { FiringFacts } from '@/lib/live/firing-facts'
 import { readFiringFacts, readLiveStamps } from '@/lib/live/firing-facts'
@@ -50,6 +50,7 @@ type Held = {
   /** Number of the newest point that viewers were sent. */
   emittedIndex: number
   stateAtMs: number
+  state: FiringState | null
   told: string
   endedAtMs: number | null
 }
@@ -75,6 +76,7 @@ export function createHub(output: HubOutput): Hub {
       stamp,
       emittedIndex: -1,
       stateAtMs: -Infinity,
+      state: null,
       told: '',
       endedAtMs: null,
     }
@@ -191,7 +193,8 @@ export function createHub(output: HubOutput): Hub {
     if (!isDue && told === one.told) return
     one.told = told
     one.stateAtMs = atMs
-    output.toFiring(firingId, events.firingState, live.state(atMs))
+    one.state = live.state(atMs)
+    output.toFiring(firingId, events.firingState, one.state)
   }
 
   let roomAtMs = -Infinity
@@ -211,7 +214,7 @@ export function createHub(output: HubOutput): Hub {
     const atMs = nowMs()
     const firings = [...held.values()]
       .filter((one) => one.endedAtMs === null)
-      .map((one) => toRoomFiring(one.live, atMs))
+      .map((one) => toRoomFiring(one.live.facts(), one.state ?? one.live.state(atMs)))
       .sort((a, b) => (a.hearthNumber ?? 99) - (b.hearthNumber ?? 99))
     return { atMs: Math.round(atMs), firings }
   }
@@ -318,9 +321,9 @@ function tellingOf(live: LiveFiring, atMs: number): string {
   return [revision, state, ...conditions, alarm?.words, words, position].join('|')
 }
 
-function toRoomFiring(live: LiveFiring, atMs: number): RoomFiring {
-  const { forecast: _forecast, stave: _stave, ...rest } = live.state(atMs)
-  const { hearthNumber, serial, recipeName } = live.facts()
+function toRoomFiring(facts: FiringFacts, state: FiringState): RoomFiring {
+  const { forecast: _forecast, stave: _stave, ...rest } = state
+  const { hearthNumber, serial, recipeName } = facts
   return { ...rest, hearthNumber, serial, recipeName }
 }
 

@@ -8,6 +8,8 @@ const doneBeforeS = 120
 const missedAfterS = 120
 /** A look leaves no mark: it is over after this. */
 const lookedAfterS = 30
+/** A stage that is over waits this long for its mark; then the plan's minutes go on without it. */
+const waitsForMarkS = 120
 /** The last stage of a toast that goes on has no end yet. */
 const openEndS = 1e9
 
@@ -31,7 +33,7 @@ export function stageNow(facts: FiringFacts, atMs: number): FiringState['stage']
   const stages = matchedStages(facts)
   const position = Math.max(
     0,
-    stages.findLastIndex((stage) => stage.startS <= toastS),
+    stages.findLastIndex((stage) => stage.startS + (stage.isMarked ? 0 : waitsForMarkS) <= toastS),
   )
   const stage = stages[position]
   if (stage === undefined) return null
