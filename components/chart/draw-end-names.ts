@@ -1,5 +1,6 @@
 import { formatDoseFigure } from '@/lib/format'
 import { spreadLabels } from './label-layout'
+import { NAME_LINE } from './pair-layout'
 import type { TextStyle } from './pair-layout'
 import { lastReading } from './pair-model'
 import type { ModelLine } from './pair-model'
@@ -17,7 +18,7 @@ export function drawEndNames(scene: PairScene): SvgNode[] {
   const { layout } = scene
   return [
     ...spreadNames(scene, fireNames(scene), layout.fire.top - 4, layout.fire.bottom),
-    ...spreadNames(scene, doseNames(scene), (layout.dose?.top ?? 0) - 8, (layout.dose?.bottom ?? 0) + 4),
+    ...spreadNames(scene, doseNames(scene), layout.dose?.top ?? 0, layout.dose?.bottom ?? 0),
     ...drawDoseStem(scene),
   ]
 }
@@ -36,6 +37,16 @@ function fireNames(scene: PairScene): EndName[] {
       fill: 'fill-mute',
     })
   }
+  if (model.limitC !== null) {
+    const y = layout.toFireY(model.limitC)
+    names.push({
+      words: limitWords(model.limitC, model.unit),
+      x: layout.right + OFF_PX,
+      y,
+      style: type.label,
+      fill: 'fill-red',
+    })
+  }
   if (!isLive(model)) {
     names.push(...lineNames(scene, [model.lead], type.label, 'fill-text'))
     names.push(
@@ -46,16 +57,6 @@ function fireNames(scene: PairScene): EndName[] {
         'fill-mute',
       ),
     )
-  }
-  if (model.limitC !== null) {
-    const y = layout.toFireY(model.limitC)
-    names.push({
-      words: limitWords(model.limitC, model.unit),
-      x: layout.right + OFF_PX,
-      y,
-      style: type.label,
-      fill: 'fill-red',
-    })
   }
   return names.filter((name) => name.words !== '')
 }
@@ -77,7 +78,7 @@ function lineNames(
 
 function doseNames({ model, layout, type }: PairScene): EndName[] {
   const { dose } = model
-  if (dose === null) return []
+  if (dose === null || layout.dose === null) return []
   const names: EndName[] = []
   const last = lastMinutes(dose.line)
   if (last !== null) {
@@ -116,7 +117,7 @@ function doseNames({ model, layout, type }: PairScene): EndName[] {
 function drawDoseStem({ model, layout }: PairScene): SvgNode[] {
   const { dose } = model
   const last = dose === null ? null : lastMinutes(dose.line)
-  if (dose === null || last === null || dose.range === null) return []
+  if (dose === null || layout.dose === null || last === null || dose.range === null) return []
   const x = round(layout.toX(last.timeS))
   return [
     pathNode(
@@ -144,7 +145,7 @@ function lastMinutes(line: {
  */
 function spreadNames(scene: PairScene, names: readonly EndName[], low: number, high: number): SvgNode[] {
   const { layout, measure } = scene
-  const size = scene.type.label.px * 1.32
+  const size = scene.type.label.px * NAME_LINE
   const isGutter = (name: EndName) => name.x + measure(name.words, name.style) > layout.right
   const gutter = names.filter(isGutter)
   const gutterX = layout.right + OFF_PX
@@ -160,7 +161,8 @@ function spreadNames(scene: PairScene, names: readonly EndName[], low: number, h
   ]
 }
 
-function placeColumn(names: readonly EndName[], size: number, low: number, high: number): SvgNode[] {
+function placeColumn(all: readonly EndName[], size: number, low: number, high: number): SvgNode[] {
+  const names = keepWhatFits(all, Math.max(Math.floor((high - low) / size + 1e-9), 1))
   const centres = spreadLabels(
     names.map((name) => ({ centre: name.y, size })),
     0,
@@ -173,4 +175,14 @@ function placeColumn(names: readonly EndName[], size: number, low: number, high:
       fill: name.fill,
     }),
   )
+}
+
+/** The first names, which matter most, and a count of the rest. */
+function keepWhatFits(names: readonly EndName[], most: number): readonly EndName[] {
+  const last = names[most - 1]
+  if (names.length <= most || last === undefined) return names
+  return [
+    ...names.slice(0, most - 1),
+    { ...last, words: `and ${names.length - most + 1} more`, fill: 'fill-mute' },
+  ]
 }

@@ -112,7 +112,8 @@ function leadAt({ model }: PairScene, timeS: number): number {
 function drawTitles({ model, layout, type }: PairScene): SvgNode[] {
   const look = { style: type.strong, fill: 'fill-soft', halo: HALO }
   const nodes: SvgNode[] = []
-  if (model.dose !== null) nodes.push(textNode(model.dose.title, layout.left, layout.doseTitleBaseline, look))
+  if (model.dose !== null && layout.dose !== null)
+    nodes.push(textNode(model.dose.title, layout.left, layout.doseTitleBaseline, look))
   if (layout.woodTitleBaseline !== null) {
     nodes.push(
       textNode('Inside the stave, mm from the fire (model)', layout.left, layout.woodTitleBaseline, look),
@@ -207,7 +208,7 @@ function drawPointed({ model, layout, type, pointedS }: PairScene): SvgNode[] {
     nodes.push({ tag: 'circle', attributes: { cx: x, cy: y, r: 3.5, class: 'fill-text' } })
     nodes.push(textNode(formatTempBare(tempC, model.unit), textX, y - 9, look))
   }
-  if (model.dose !== null) {
+  if (model.dose !== null && layout.dose !== null) {
     const minutes = valueAt(model.dose.line.times, model.dose.line.minutes, pointedS)
     if (!Number.isNaN(minutes))
       nodes.push(textNode(formatDoseFigure(minutes), textX, layout.toDoseY(minutes) - 7, look))

@@ -1,6 +1,7 @@
 import { formatTempBare } from '@/lib/format'
 import { spreadLabels } from './label-layout'
 import { createSvgSink, traceLine } from './line-path'
+import { NAME_LINE } from './pair-layout'
 import type { TextStyle } from './pair-layout'
 import { pathNode, textNode } from './pair-scene'
 import type { PairScene } from './pair-scene'
@@ -108,12 +109,12 @@ function placeWoodNames(scene: PairScene, names: readonly WoodName[]): SvgNode[]
   const isTight = isLive(model) && right.some((name) => end + measure(name.words, name.style) > layout.width)
   const lines = (name: WoodName) =>
     isTight && name.words.startsWith('toasted ') ? ['toasted', name.words.slice(8)] : [name.words]
-  const size = type.label.px * 1.32
+  const size = type.label.px * NAME_LINE
   const wood = layout.wood ?? { top: 0, bottom: 0 }
   const centres = spreadLabels(
     right.map((name) => ({ centre: name.y, size: size * lines(name).length })),
     0,
-    wood.top - 2,
+    wood.top,
     wood.bottom + 2 - (isRemarkShown(scene) ? type.label.px * 1.6 : 0),
   )
   const atRight = right.flatMap((name, i) =>

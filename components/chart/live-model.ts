@@ -105,8 +105,11 @@ function coverLatest(base: PairModel, temps: Float64Array): { lowC: number; high
     if (temp > high) high = temp
   }
   if (low > high || (low >= base.lowC && high <= base.highC)) return { lowC: base.lowC, highC: base.highC }
-  const wide = widenTempRange(Math.min(low, base.lowC + 6), Math.max(high, base.highC - 6))
-  return { lowC: Math.min(wide.lowC, base.lowC), highC: Math.max(wide.highC, base.highC) }
+  const wide = widenTempRange(low, high)
+  return {
+    lowC: low < base.lowC ? wide.lowC : base.lowC,
+    highC: high > base.highC ? wide.highC : base.highC,
+  }
 }
 
 function toFutureLine(points: NonNullable<PairProps['future']>): ModelLine {

@@ -71,5 +71,8 @@ export function tabulatePair(model: PairModel): { heads: string[]; rows: PairTab
     plan: show(valueAt(bandTimes, bandMids, i * 300)),
     temps: lines.map((line) => show(valueAt(line.times, line.temps, i * 300))),
   }))
-  return { heads: ['Time', model.planName, ...lines.map((line) => line.name)], rows }
+  return {
+    heads: ['Time', model.planName === '' ? 'plan' : model.planName, ...lines.map((line) => line.name)],
+    rows,
+  }
 }

@@ -23,7 +23,7 @@ export function CustomerShell({
   return (
     <div className="min-h-dvh">
       <SkipLink />
-      <div
+      <header
         data-shell="bar"
         className="flex min-h-[51px] flex-wrap items-center gap-x-8 gap-y-1 border-b border-line px-7 py-1"
       >
@@ -46,7 +46,7 @@ export function CustomerShell({
         <div className="ml-auto">
           <PersonMenu person={person} />
         </div>
-      </div>
+      </header>
       <main id="main" tabIndex={-1} className="mx-auto max-w-[72rem] px-7 pt-6 pb-12">
         {children}
       </main>

@@ -22,7 +22,7 @@ export function DeskShell({ items, person, homeHref = '/', find, children }: Des
   return (
     <div className="min-h-dvh">
       <SkipLink />
-      <div
+      <header
         data-shell="bar"
         className="flex min-h-[51px] flex-wrap items-center gap-x-8 gap-y-1 border-b border-line px-7 py-1"
       >
@@ -45,7 +45,7 @@ export function DeskShell({ items, person, homeHref = '/', find, children }: Des
           {find}
           <PersonMenu person={person} />
         </div>
-      </div>
+      </header>
       <main id="main" tabIndex={-1} className="px-7 pt-6 pb-12">
         {children}
       </main>

@@ -48,7 +48,7 @@ export function FiringSpecimen() {
         <Pair {...sampleFinished()} />
         <div className="space-y-6">
           <div>
-            <h3 className="mb-1">Why 90 points</h3>
+            <h2 className="mb-1">Why 90 points</h2>
             <Table
               caption="Why 90 points"
               rowKey={(row) => row.term}
@@ -62,7 +62,7 @@ export function FiringSpecimen() {
             />
           </div>
           <div>
-            <h3 className="mb-1">What happened</h3>
+            <h2 className="mb-1">What happened</h2>
             <Facts isRuled facts={happened} />
           </div>
         </div>
