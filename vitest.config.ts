@@ -27,7 +27,7 @@ export default defineConfig({
   test: {
     maxWorkers: 2,
     projects: [
-      project('house', ['tests/architecture.test.ts', 'tests/lockfile.test.ts']),
+      project('house', ['tests/architecture.test.ts', 'tests/lockfile.test.ts', 'tests/types.test.ts']),
       project('science', ['tests/science/**/*.test.ts']),
       project('ui', ['tests/ui/**/*.test.{ts,tsx}'], { environment: 'happy-dom' }),
       project('areas', ['tests/areas/**/*.test.ts'], database),
