@@ -1,6 +1,7 @@
 import { createServer } from 'node:http'
 import next from 'next'
 import { env } from '@/lib/env'
+import { prepareRequest } from '@/lib/http/prepare-request'
 import { startServerWork } from '@/lib/live/start-server-work'
 import { log } from '@/lib/log'
 
@@ -14,6 +15,7 @@ const handle = app.getRequestHandler()
 await app.prepare()
 
 const server = createServer((request, response) => {
+  prepareRequest(request, response)
   handle(request, response).catch((error: unknown) => {
     log().error({ err: error }, 'a request failed unexpectedly')
     if (!response.headersSent) response.writeHead(500)

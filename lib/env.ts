@@ -5,6 +5,8 @@ const envSchema = z.object({
   DATABASE_URL: z.string().min(1),
   SESSION_SECRET: z.string().min(32),
   APP_ORIGIN: z.url(),
+  /** Addresses of reverse proxies on other machines, with commas between; one on this machine is trusted anyway. */
+  TRUSTED_PROXIES: z.string().default(''),
   PORT: z.coerce.number().int().min(1).max(65535).default(3000),
   EMBERSTAVE_MODE: z.enum(['demo', 'dev', 'serve', 'test']).default('serve'),
   SMTP_URL: z.string().optional(),

@@ -1,6 +1,7 @@
 import { operations as accounts } from '@/lib/accounts/operations'
 import { operations as audit } from '@/lib/audit/operations'
 import { operations as batches } from '@/lib/batches/operations'
+import { operations as firings } from '@/lib/firings/operations'
 import { operations as http } from '@/lib/http/operations'
 import { operations as ingest } from '@/lib/ingest/operations'
 import { operations as probes } from '@/lib/probes/operations'
@@ -16,6 +17,7 @@ const areas: readonly Readonly<Record<string, AnyOperation>>[] = [
   accounts,
   audit,
   batches,
+  firings,
   http,
   ingest,
   probes,

@@ -4,7 +4,7 @@ import { checkOrigin } from '@/lib/auth/check-origin'
 import { readSessionActor } from '@/lib/auth/read-session-actor'
 import type { FieldErrors } from '@/lib/errors'
 import { AppError } from '@/lib/errors'
-import type { Operation } from '@/lib/http/operation'
+import type { Access, Operation } from '@/lib/http/operation'
 import { problemResponse } from '@/lib/http/problem'
 import { readJsonBody } from '@/lib/http/read-json-body'
 
@@ -96,11 +96,21 @@ export function route<Params, Query, Body>(
       const actor = await readSessionActor(request.headers.get('cookie'))
       if (actor === null)
         throw new AppError('not signed in', 'Your session has ended. Sign in and try again.')
+      requireAccess(operation.access, actor)
       return toResponse(await handle(actor, await readCall(operation, request, context)), operation.status)
     } catch (error) {
       return problemResponse(error)
     }
   }
+}
+
+/** Turns away a role that can never succeed before anything of the request is read; the verb authorises as well. */
+function requireAccess(access: Access, actor: PersonActor): void {
+  if (typeof access !== 'string' && access.includes(actor.role)) return
+  throw new AppError(
+    'not allowed',
+    'This is not for your role. Ask your administrator if it should be yours.',
+  )
 }
 
 /** A route that needs no session (sign-in, health, links, gateways); the verb authorises what it must. */
