@@ -31,6 +31,10 @@ function say(sentence: string) {
 async function main() {
   const environment = environmentSchema.parse(process.env)
   const { demo, seededAtMs } = readDemoFile(environment.DEMO_FILE)
+  if (demo.gateways.length === 0) {
+    say('the seeded site has no gateways yet, so there is nothing to simulate')
+    return waitForEnd()
+  }
   const toaster = demo.signIns.find((one) => one.role === 'toaster')
   if (toaster === undefined) throw new Error('The demo file names no toaster to sign in as.')
   const board = createFaultBoard(Date.now)
@@ -66,6 +70,19 @@ async function main() {
 
 function gatewayOf(gateways: readonly SimulatedGateway[], hearth: number): SimulatedGateway | undefined {
   return gateways.find((gateway) => gateway.demo.hearths.includes(hearth))
+}
+
+/** Stays there, as the programs that it is started with do, until told to end. */
+function waitForEnd(): Promise<void> {
+  return new Promise((resolve) => {
+    const idle = setInterval(() => {}, 60_000)
+    for (const signal of ['SIGTERM', 'SIGINT'] as const) {
+      process.once(signal, () => {
+        clearInterval(idle)
+        resolve()
+      })
+    }
+  })
 }
 
 type Spoil = ReturnType<typeof createFaultBoard>['spoil']
