@@ -35,7 +35,7 @@ function NumberIn({ props, number }: { props: ConditionsProps; number: Numbered 
       unit={props.unit}
       error={props.errors[number.name]}
       onBlur={props.onEndStep}
-      className="w-[3.9rem]"
+      isInline
     />
   )
 }
@@ -66,7 +66,6 @@ export function BeforeTheFire(props: ConditionsProps) {
         <InlineText
           name="sizeAndShape"
           label="Size and shape"
-          className="w-[11rem]"
           value={draft.sizeAndShape}
           error={props.errors['sizeAndShape']}
           onChange={(sizeAndShape) => onChange({ sizeAndShape }, 'sizeAndShape')}
@@ -175,7 +174,6 @@ export function BeforeTheFire(props: ConditionsProps) {
         <InlineText
           name="leadPlace.side"
           label="Lead probe, side"
-          className="w-[3rem]"
           value={leadPlace.side}
           error={props.errors['leadPlace.side']}
           onChange={(side) => setLead({ side }, 'side')}

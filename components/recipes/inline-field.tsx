@@ -3,7 +3,7 @@
 import type { ReactNode } from 'react'
 import { classNames } from '@/components/ui/class-names'
 import { fieldId } from '@/components/ui/field-id'
-import { CellError, cellClass } from './number-cell'
+import { CellError, cellClass, inlineWidth } from './number-cell'
 
 /** One line of the bench's left column: a name, then quiet inputs within words, errors under them. */
 export function InlineRow({
@@ -37,7 +37,6 @@ export function InlineText({
   onChange,
   onBlur,
   error,
-  className,
 }: {
   name: string
   label: string
@@ -45,7 +44,6 @@ export function InlineText({
   onChange: (value: string) => void
   onBlur?: () => void
   error?: string | undefined
-  className?: string
 }) {
   return (
     <input
@@ -55,7 +53,8 @@ export function InlineText({
       aria-invalid={error === undefined ? undefined : true}
       aria-describedby={error === undefined ? undefined : `${fieldId(name)}-error`}
       autoComplete="off"
-      className={classNames(cellClass, className)}
+      className={cellClass}
+      style={inlineWidth(value)}
       value={value}
       onChange={(event) => onChange(event.target.value)}
       onBlur={onBlur}

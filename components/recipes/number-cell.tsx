@@ -30,6 +30,8 @@ export type NumberCellProps = {
   decimals?: number
   error?: string | undefined
   className?: string
+  /** Within a line of words: as wide as what is typed, and standing left. */
+  isInline?: boolean
   disabled?: boolean
   onKeyDown?: (event: KeyboardEvent<HTMLInputElement>) => void
   onFocus?: () => void
@@ -50,6 +52,11 @@ function fromShown(value: number, quantity: Quantity, unit: TemperatureUnit): nu
   return quantity === 'difference' ? fromShownDifference(value, unit) : value
 }
 
+/** Wide enough for the text, its padding and one more figure. */
+export function inlineWidth(text: string): { width: string } {
+  return { width: `calc(${Math.max(text.length, 2)}ch + 18px)` }
+}
+
 /** What a typed cell stands for, as stored; null when it is no number. */
 export function readCell(typed: string, quantity: Quantity, unit: TemperatureUnit): number | null {
   const value = parseDecimal(typed)
@@ -59,15 +66,14 @@ export function readCell(typed: string, quantity: Quantity, unit: TemperatureUni
 /** A number in a table or a line of words: quiet until pointed at, keeps exactly what was typed. */
 export function NumberCell(props: NumberCellProps) {
   const { name, label, value, onChange, quantity = 'number', unit, decimals = 1, error, className } = props
+  const show = (shown: number | null) =>
+    shown === null ? '' : toTyped(toShown(shown, quantity, unit), decimals)
   const [typed, setTyped] = useState(() => show(value))
   const typedValue = readCell(typed, quantity, unit)
   const isAsTyped =
     value === null || typedValue === null ? value === typedValue : Math.abs(value - typedValue) < 1e-9
+  const text = isAsTyped ? typed : show(value)
   const unitWords = quantity === 'number' ? '' : `, ${unitName(unit)}`
-
-  function show(shown: number | null): string {
-    return shown === null ? '' : toTyped(toShown(shown, quantity, unit), decimals)
-  }
 
   return (
     <input
@@ -79,8 +85,9 @@ export function NumberCell(props: NumberCellProps) {
       inputMode="decimal"
       autoComplete="off"
       disabled={props.disabled}
-      className={classNames(cellClass, 'text-right', className)}
-      value={isAsTyped ? typed : show(value)}
+      className={classNames(cellClass, props.isInline ? 'text-left' : 'text-right', className)}
+      style={props.isInline ? inlineWidth(text) : undefined}
+      value={text}
       onChange={(event) => {
         setTyped(event.target.value)
         onChange(readCell(event.target.value, quantity, unit))

@@ -35,7 +35,7 @@ export function PlanFigures({
   const isOff = plan.doseMin < plan.targetLowMin || plan.doseMin > plan.targetHighMin
   return (
     <div>
-      <dl className="flex flex-wrap gap-x-8 gap-y-1">
+      <dl className="flex flex-wrap gap-x-6 gap-y-1">
         <Figure name={`Dose at ${depthMm} mm`}>
           {formatDoseFigure(plan.doseMin)} min at {formatTemp(rules.dose.refTempC, unit)}
         </Figure>
@@ -46,8 +46,9 @@ export function PlanFigures({
           </span>
         </Figure>
         <Figure name="Toast depth (model)">{depthWords(wood)}</Figure>
-        <Figure name="Slow index">{formatDoseFigure(slowMin)}</Figure>
-        <Figure name="Fast index">{formatDoseFigure(fastMin)}</Figure>
+        <Figure name="Slow and fast index">
+          {formatDoseFigure(slowMin)}, {formatDoseFigure(fastMin)}
+        </Figure>
         <Figure name="Fire">
           {formatNumber(plan.totalS / 60, (plan.totalS / 60) % 1 === 0 ? 0 : 1)} min
         </Figure>

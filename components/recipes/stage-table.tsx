@@ -233,8 +233,7 @@ function SelectedStage(props: StageTableProps) {
       </div>
       <CellError name={name} error={errors[name]} />
       <p className="mt-1 text-mute">
-        Do: an action and its minute, “feed at 6; lid on at 11”. Rows from a spreadsheet can be pasted into a
-        stage’s name. Alt with an arrow moves a row.
+        Do: “feed at 6; lid on at 11”. Alt with an arrow moves a row; rows can be pasted from a spreadsheet.
       </p>
     </div>
   )

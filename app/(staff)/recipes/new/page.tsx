@@ -1,8 +1,9 @@
 import type { Metadata } from 'next'
+import { redirect } from 'next/navigation'
 import { NewRecipeForm } from '@/components/recipes/new-recipe-form'
 import { PageHead } from '@/components/ui/page-head'
 import { requirePageActor } from '@/lib/auth/page-actor'
-import { requirePermission } from '@/lib/auth/permissions'
+import { isAllowed } from '@/lib/auth/permissions'
 import { recipeChoices } from '@/lib/recipes/recipe-choices'
 import { currentSite } from '@/lib/site/current-site'
 
@@ -10,7 +11,7 @@ export const metadata: Metadata = { title: 'New recipe' }
 
 export default async function NewRecipePage() {
   const actor = await requirePageActor()
-  requirePermission(actor, 'recipes:write')
+  if (!isAllowed(actor, 'recipes:write')) redirect('/recipes')
   const [{ customers }, { rules }] = await Promise.all([recipeChoices(actor), currentSite()])
   const { doseToleranceLog10, bendMin } = rules
   return (
