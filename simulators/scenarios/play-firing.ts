@@ -13,7 +13,7 @@ import type { RecipeContent } from '@/lib/recipes/schema'
 import { setClock } from '@/lib/runtime'
 import type { HearthMark, HearthOptions, HearthProbe, HearthReading } from '@/simulators/hearth/hearth'
 import { createHearth } from '@/simulators/hearth/hearth'
-import type { HearthRecipe } from '@/simulators/hearth/recipe'
+import { hearthRecipeOf } from '@/simulators/hearth/recipe-of-content'
 
 /** A gateway as the seed speaks for it: its boot and the next number. */
 export type SeedGateway = { identity: GatewayIdentity; bootId: string; nextSeq: number }
@@ -36,27 +36,6 @@ export type SeedFiring = {
 }
 
 type Played = { readings: HearthReading[]; marks: HearthMark[]; endS: number; toastS: number | null }
-
-/** What the engine needs of a recipe version. */
-export function hearthRecipeOf(content: RecipeContent): HearthRecipe {
-  return {
-    planStartTempC: content.planStartTempC,
-    stages: content.stages.map((stage) => ({
-      name: stage.name,
-      kind: stage.kind,
-      targetTempC: stage.targetTempC,
-      durationS: stage.minutes * 60,
-      bandC: stage.bandC,
-      lid: stage.lid,
-      cues: stage.cues.map((cue) => ({ action: cue.action, minute: cue.minute, words: cue.words })),
-    })),
-    bend: { minimumMinutes: content.bend.minimumMinutes, woodLimitC: content.bend.woodLimitC },
-    preheat: { minutes: content.preheat.minutes, waterTempC: content.preheat.waterTempC },
-    restMinutes: content.restMinutes,
-    thicknessMm: content.thicknessMm,
-    probeDepthMm: content.leadPlace.depthMm,
-  }
-}
 
 /** Runs the engine at one reading a second, to the end or to the stop. */
 function playEngine(firing: SeedFiring): Played {

@@ -11,6 +11,10 @@ const scenarios: Record<string, (say: (line: string) => void) => Promise<void>> 
   empty: seedEmpty,
 }
 
+// The people of a scenario are invented: nothing is mailed to them, and invitations are taken up by their links.
+process.env['SMTP_URL'] = ''
+process.env['LOG_LEVEL'] = 'fatal'
+
 const say = (line: string) => process.stdout.write(`  ${line}\n`)
 const name = process.argv[2] ?? 'demo'
 const scenario = scenarios[name]
