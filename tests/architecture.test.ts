@@ -20,7 +20,7 @@ it('the project keeps its own rules of direction, size and names', () => {
   const sources = readSources()
   expect(sources.size).toBeGreaterThan(50)
   expect(architectureOffences(sources)).toEqual([])
-})
+}, 120_000)
 
 describe('the checker finds what is planted', () => {
   const lines = (count: number) => Array.from({ length: count }, () => 'const x = 1').join('\n') + '\n'

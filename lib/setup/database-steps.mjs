@@ -1,10 +1,12 @@
-import { DATABASE, withOwner } from './environment.mjs'
+import { rmSync } from 'node:fs'
+import { DATABASE, SPOOL_DIR, withOwner } from './environment.mjs'
 import { keep, readKept } from './kept.mjs'
 import { typescript } from './processes.mjs'
 import { dropDatabase, ensureDatabase } from './postgres.mjs'
 import { run, tail } from './run.mjs'
 import { say, SetupError } from './say.mjs'
 
+/** As in `simulators/scenarios/seed.ts`; known here too, so that a wrong name is refused before anything is removed. */
 export const SCENARIOS = ['demo', 'empty', 'busy']
 const RECORD = 'scenario.json'
 
@@ -42,6 +44,8 @@ async function loadScenario(cluster, environment, name) {
   const isNew = await ensureDatabase(cluster, DATABASE)
   await migrate(owner)
   if (isNew) {
+    // Readings that wait for a database that is gone belong to nobody.
+    rmSync(SPOOL_DIR, { recursive: true, force: true })
     keep(RECORD, { name, finished: false })
     say(`loading the scenario “${name}” (once; up to two minutes)`)
   }

@@ -9,6 +9,7 @@ export const DATABASE = 'emberstave'
 export const MAIL_SMTP = 'mail-smtp'
 export const MAIL_PAGE = 'mail-page'
 export const DEMO_FILE = join(dataDir, 'demo.json')
+export const SPOOL_DIR = join(dataDir, 'spool')
 
 /**
  * What this clone's own server, seed and simulators are told, everything on this machine's loopback. The owner's
@@ -35,7 +36,7 @@ export async function localEnvironment({ cluster, port, mode }) {
     MAIL_PAGE_PORT: String(pagePort),
     DATA_DIR: dataDir,
     DEMO_FILE,
-    SPOOL_DIR: join(dataDir, 'spool'),
+    SPOOL_DIR,
     SERVER_URL: `http://127.0.0.1:${port}`,
     LOG_LEVEL: process.env.LOG_LEVEL ?? (mode === 'dev' ? 'info' : 'warn'),
     NEXT_TELEMETRY_DISABLED: '1',
