@@ -30,6 +30,9 @@ export type FiringSeries = {
   spacingS: number
 }
 
+/** For a picture: some roles, and nothing converted before an instant (NaN stands there). Left out: everything. */
+export type WantedReadings = { roles?: readonly ProbeRole[]; fromMs?: number }
+
 export type FiringReadings = { sealRevision: number | null; series: FiringSeries[] }
 
 /** A firing's readings as they are stored: from its newest seal, or from the table while there is none. */
@@ -60,12 +63,13 @@ export async function firingReadings(
   em: EntityManager,
   firingId: string,
   sealRevision?: number,
+  wanted: WantedReadings = {},
 ): Promise<FiringReadings> {
   const raw = await rawFiringReadings(em, firingId, sealRevision)
-  const roles: ProbeRole[] = ['lead', 'opposite', 'coals']
+  const roles: readonly ProbeRole[] = wanted.roles ?? ['lead', 'opposite', 'coals']
   const series = roles.flatMap((role) => {
     const parts = raw.probes.filter((probe) => probe.assignment.role === role)
-    return parts.length === 0 ? [] : [joinParts(role, parts)]
+    return parts.length === 0 ? [] : [joinParts(role, parts, wanted.fromMs ?? -Infinity)]
   })
   return { sealRevision: raw.sealRevision, series }
 }
@@ -79,12 +83,12 @@ export function toReadingSeries(series: FiringSeries, toastAtMs: number): Readin
   }
 }
 
-function joinParts(role: ProbeRole, parts: readonly RawProbeReadings[]): FiringSeries {
+function joinParts(role: ProbeRole, parts: readonly RawProbeReadings[], fromMs: number): FiringSeries {
   const atMs: number[] = []
   const tempC: number[] = []
   for (const { assignment, columns } of parts) {
     columns.atMs.forEach((at, i) => {
-      const temp = convertRow(assignment, columns, i)
+      const temp = at < fromMs ? NaN : convertRow(assignment, columns, i)
       if (at === atMs.at(-1)) tempC[tempC.length - 1] = warmer(tempC.at(-1) ?? NaN, temp)
       else {
         atMs.push(at)
