@@ -1,0 +1,27 @@
+import type { Metadata } from 'next'
+import { FiresideConsole } from '@/components/live/fireside-console'
+import { requirePageActor } from '@/lib/auth/page-actor'
+import { isAllowed } from '@/lib/auth/permissions'
+import { getFiring } from '@/lib/firings/get-firing'
+import { orNotFound } from '@/lib/http/or-not-found'
+import { nowMs } from '@/lib/runtime'
+import { currentSite } from '@/lib/site/current-site'
+
+export const metadata: Metadata = { title: 'Fireside' }
+
+export default async function FiresidePage({ params }: { params: Promise<{ id: string }> }) {
+  const actor = await requirePageActor()
+  const { id } = await params
+  const [firing, site] = await Promise.all([orNotFound(getFiring(actor, { id }), id), currentSite()])
+  return (
+    <FiresideConsole
+      key={firing.id}
+      firing={firing}
+      rules={site.rules}
+      zone={site.timeZone}
+      unit={actor.temperatureUnit}
+      canRun={isAllowed(actor, firing.isTrial ? 'firings:run trial' : 'firings:run')}
+      serverNowMs={nowMs()}
+    />
+  )
+}

@@ -1,0 +1,38 @@
+import type { Metadata } from 'next'
+import { redirect } from 'next/navigation'
+import { RoomStartConsole } from '@/components/live/room-start-console'
+import { requirePageActor } from '@/lib/auth/page-actor'
+import { isAllowed, requirePermission } from '@/lib/auth/permissions'
+import { listPieces } from '@/lib/batches/list-pieces'
+import type { SearchParams } from '@/lib/http/page-query'
+import { listHearths } from '@/lib/probes/list-hearths'
+import { listProbes } from '@/lib/probes/list-probes'
+import { listWaterChecks } from '@/lib/probes/list-water-checks'
+import { currentSite } from '@/lib/site/current-site'
+
+export const metadata: Metadata = { title: 'Start preheat' }
+
+export default async function StartPage({ searchParams }: { searchParams: SearchParams }) {
+  const actor = await requirePageActor()
+  requirePermission(actor, 'firings:run trial')
+  const { hearth: asked } = await searchParams
+  const hearth = (await listHearths(actor)).items.find((one) => String(one.number) === asked && one.isActive)
+  if (hearth === undefined) redirect('/room')
+  if (hearth.live !== null) redirect(`/fireside/${hearth.live.firingId}`)
+  const [queue, probes, water, site] = await Promise.all([
+    listPieces(actor, { show: 'waiting', limit: 50 }),
+    listProbes(actor, { hearthId: hearth.id, limit: 50 }),
+    listWaterChecks(actor, { limit: 1 }),
+    currentSite(),
+  ])
+  return (
+    <RoomStartConsole
+      hearth={hearth}
+      queue={queue.items}
+      probes={probes.items}
+      water={water.items[0] ?? null}
+      zone={site.timeZone}
+      isTrial={!isAllowed(actor, 'firings:run')}
+    />
+  )
+}

@@ -1,0 +1,120 @@
+import {
+  addToQueue,
+  dropFromQueue,
+  moveInQueue,
+  nextToSend,
+  noteResult,
+  noteTry,
+  parseQueue,
+  printQueue,
+  undoInQueue,
+} from './fireside-mark-queue'
+import type { MarkDraft, MarkQueue, SendResult } from './fireside-mark-queue'
+
+/** The part of localStorage that is used; a test gives its own. */
+export type MarkStorage = Pick<Storage, 'getItem' | 'setItem' | 'removeItem'>
+
+export type MarkSender = {
+  read: () => MarkQueue
+  subscribe: (onChange: () => void) => () => void
+  add: (mark: MarkDraft) => void
+  undo: (id: string, undoing: { id: string; at: string }) => void
+  move: (mark: MarkDraft, moved: { id: string; at: string }) => MarkDraft
+  drop: (id: string) => void
+  /** Sends what waits, one after another, until the queue is empty or the server does not answer. */
+  flush: () => Promise<void>
+  /** Another tab of this browser wrote the queue. */
+  reread: () => void
+}
+
+/**
+ * Keeps the queue in the browser and sends it. The kept list is read before every step, so that two tabs on one
+ * firing do not write over each other; where the browser keeps nothing, memory does.
+ */
+export function createMarkSender(options: {
+  key: string
+  storage: MarkStorage | null
+  send: (mark: MarkDraft) => Promise<SendResult>
+  onTaken?: (mark: MarkDraft) => void
+}): MarkSender {
+  const { key, storage, send } = options
+  const listeners = new Set<() => void>()
+  let queue: MarkQueue = readKept(storage, key) ?? []
+  let underWay: Promise<void> | null = null
+  let isKept = true
+
+  const change = (step: (from: MarkQueue) => MarkQueue) => {
+    const from = isKept ? (readKept(storage, key) ?? queue) : queue
+    queue = step(from)
+    isKept = keep(storage, key, queue)
+    for (const listener of listeners) listener()
+  }
+
+  const sendAll = async () => {
+    for (let next = nextToSend(queue); next !== null; next = nextToSend(queue)) {
+      const { mark } = next
+      change((from) => noteTry(from, mark.id))
+      const result = await send(mark)
+      change((from) => noteResult(from, mark.id, result))
+      if (result.kind === 'unanswered') return
+      if (result.kind === 'taken') options.onTaken?.(mark)
+    }
+  }
+  /** One at a time: who asks meanwhile waits for the one under way. */
+  const flush = () => {
+    underWay ??= sendAll().finally(() => {
+      underWay = null
+    })
+    return underWay
+  }
+
+  return {
+    read: () => queue,
+    subscribe: (onChange) => {
+      listeners.add(onChange)
+      return () => listeners.delete(onChange)
+    },
+    add: (mark) => {
+      change((from) => addToQueue(from, mark))
+      void flush()
+    },
+    undo: (id, undoing) => {
+      change((from) => undoInQueue(from, id, undoing))
+      void flush()
+    },
+    move: (mark, moved) => {
+      let inForce = mark
+      change((from) => {
+        const step = moveInQueue(from, mark, moved)
+        inForce = step.mark
+        return step.queue
+      })
+      void flush()
+      return inForce
+    },
+    drop: (id) => change((from) => dropFromQueue(from, id)),
+    flush,
+    reread: () => change((from) => from),
+  }
+}
+
+/** Null where the browser keeps nothing (private windows, a full disk). */
+function readKept(storage: MarkStorage | null, key: string): MarkQueue | null {
+  try {
+    const text = storage?.getItem(key) ?? null
+    return storage === null ? null : parseQueue(text)
+  } catch {
+    return null
+  }
+}
+
+/** False when the browser did not keep it: memory then holds it until the page goes. */
+function keep(storage: MarkStorage | null, key: string, queue: MarkQueue): boolean {
+  try {
+    if (queue.length === 0) storage?.removeItem(key)
+    else storage?.setItem(key, printQueue(queue))
+    return true
+  } catch {
+    return false
+  }
+}

@@ -1,0 +1,119 @@
+'use client'
+
+import { useRouter } from 'next/navigation'
+import { useState } from 'react'
+import type { Problem } from '@/components/ui/problem'
+import { useRequest } from '@/components/ui/use-request'
+import type { TemperatureUnit } from '@/lib/format'
+import { ApiProblem, callApi } from '@/lib/http/api-client'
+import { FiresideFinish } from './fireside-finish'
+import type { FinishWords } from './fireside-finish'
+import { nextToSend } from './fireside-mark-queue'
+import type { MarkSender } from './fireside-mark-sender'
+import { FiresideAbandon, FiresideMore } from './fireside-more'
+import { FiresideNote } from './fireside-note'
+
+export type FiresideSheetName = 'more' | 'note' | 'finish' | 'abandon'
+
+/** The sheets over the fireside; the finish and the abandoning go to the server once every mark is there. */
+export function FiresideSheets({
+  sheet,
+  onSheet,
+  firingId,
+  canRun,
+  unit,
+  areKeysOn,
+  onKeysOn,
+  sender,
+  waitingCount,
+  onTurn,
+  onNote,
+  onChanged,
+}: {
+  sheet: FiresideSheetName | null
+  onSheet: (sheet: FiresideSheetName | null) => void
+  firingId: string
+  canRun: boolean
+  unit: TemperatureUnit
+  areKeysOn: boolean
+  onKeysOn: (isOn: boolean) => void
+  sender: MarkSender
+  waitingCount: number
+  onTurn: () => void
+  onNote: (words: string) => void
+  onChanged: () => void
+}) {
+  const router = useRouter()
+  const { isBusy, problem, send } = useRequest()
+  const [isLeaving, setIsLeaving] = useState(false)
+  const close = () => onSheet(null)
+
+  const end = async (verb: 'finish' | 'abandon', body: FinishWords | { reason: string }) => {
+    const isDone = await send(async () => {
+      await sendWaiting(sender)
+      await callApi('POST', `/api/firings/{id}/${verb}`, { params: { id: firingId }, body })
+    })
+    if (!isDone) return
+    setIsLeaving(true)
+    onChanged()
+    router.push(`/firings/${firingId}`)
+  }
+  const shown: { isBusy: boolean; problem: Problem | null } = { isBusy: isBusy || isLeaving, problem }
+
+  if (sheet === 'more') {
+    return (
+      <FiresideMore
+        firingId={firingId}
+        canRun={canRun}
+        areKeysOn={areKeysOn}
+        onKeysOn={onKeysOn}
+        onTurn={() => {
+          onTurn()
+          close()
+        }}
+        onAbandon={() => onSheet('abandon')}
+        onClose={close}
+      />
+    )
+  }
+  if (sheet === 'note') {
+    return (
+      <FiresideNote
+        onClose={close}
+        onSave={(words) => {
+          onNote(words)
+          close()
+        }}
+      />
+    )
+  }
+  if (sheet === 'abandon') {
+    return (
+      <FiresideAbandon {...shown} onAbandon={(reason) => void end('abandon', { reason })} onClose={close} />
+    )
+  }
+  if (sheet !== 'finish') return null
+  return (
+    <FiresideFinish
+      {...shown}
+      unit={unit}
+      waitingCount={waitingCount}
+      onFinish={(words) => void end('finish', words)}
+      onClose={close}
+    />
+  )
+}
+
+/** @throws ApiProblem while marks wait: a firing that has ended takes none. */
+async function sendWaiting(sender: MarkSender): Promise<void> {
+  await sender.flush()
+  if (nextToSend(sender.read()) === null) return
+  throw new ApiProblem({
+    title: 'Marks wait to be sent',
+    status: 0,
+    detail: 'They are kept here and sent as soon as the server answers. Then try again.',
+    fields: {},
+    current: undefined,
+    retryAfterS: null,
+  })
+}

@@ -1,0 +1,75 @@
+'use client'
+
+import { useEffect, useState, useSyncExternalStore } from 'react'
+import { apiPath, isApiProblem, tryApi } from '@/lib/http/api-client'
+import type { MarkDto } from '@/lib/firings/schema'
+import type { MarkDraft, MarkQueue, SendResult } from './fireside-mark-queue'
+import { createMarkSender } from './fireside-mark-sender'
+import type { MarkSender, MarkStorage } from './fireside-mark-sender'
+
+const RETRY_MS = 2_000
+const empty: MarkQueue = []
+
+/** The mark sender of a firing in this browser: sends at once, again when the network is back, and every two seconds. */
+export function useMarkSender(
+  firingId: string,
+  onTaken: () => void,
+): { sender: MarkSender; queue: MarkQueue } {
+  const [sender] = useState(() =>
+    createMarkSender({
+      key: markKey(firingId),
+      storage: browserStorage(),
+      send: (mark) => sendMark(firingId, mark),
+      onTaken,
+    }),
+  )
+  const queue = useSyncExternalStore(sender.subscribe, sender.read, () => empty)
+  useEffect(() => {
+    const flush = () => void sender.flush()
+    const reread = (event: StorageEvent) => {
+      if (event.key === markKey(firingId)) sender.reread()
+    }
+    flush()
+    const timer = setInterval(flush, RETRY_MS)
+    window.addEventListener('online', flush)
+    window.addEventListener('storage', reread)
+    return () => {
+      clearInterval(timer)
+      window.removeEventListener('online', flush)
+      window.removeEventListener('storage', reread)
+    }
+  }, [sender, firingId])
+  return { sender, queue }
+}
+
+function markKey(firingId: string): string {
+  return `emberstave.marks.${firingId}`
+}
+
+function browserStorage(): MarkStorage | null {
+  try {
+    return typeof window === 'undefined' ? null : window.localStorage
+  } catch {
+    return null
+  }
+}
+
+/** A refusal is for good only when the server understood the mark and will not have it. */
+export async function sendMark(firingId: string, mark: MarkDraft): Promise<SendResult> {
+  try {
+    const path = apiPath('/api/firings/{id}/marks', { id: firingId })
+    const { problem } = await tryApi<MarkDto>('POST', path, { body: mark })
+    if (problem === null) return { kind: 'taken' }
+    return isRefusal(problem.status)
+      ? { kind: 'refused', sentence: Object.values(problem.fields)[0] ?? problem.detail }
+      : { kind: 'unanswered' }
+  } catch (error) {
+    if (isApiProblem(error)) return { kind: 'unanswered' }
+    throw error
+  }
+}
+
+/** Not when nobody answered, the session ended (signing in again sends it), or the server is busy. */
+export function isRefusal(status: number): boolean {
+  return status >= 400 && status < 500 && status !== 401 && status !== 408 && status !== 429
+}
