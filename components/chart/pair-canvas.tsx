@@ -53,7 +53,7 @@ export function PairCanvas(props: PairCanvasProps) {
         ref={root}
         role="img"
         aria-label={describePair(model)}
-        className="absolute inset-0 overflow-hidden"
+        className="absolute inset-0 overflow-hidden contain-strict"
       />
       {onDragPoint === undefined || frame === null ? null : (
         <DragHandles

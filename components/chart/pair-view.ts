@@ -61,6 +61,8 @@ export function createPairView(root: HTMLElement, firstProps: PairProps): PairVi
   const text = createTextMeasure(parts.measure)
   const plot = createFirePlot(parts.plot)
   const live = createLiveModel(buildPairModel(firstProps))
+  let box = { width: 0, height: 0 }
+  let ground = readGround(root)
   let pointedPx: number | null = null
   let frame = 0
   let isGone = false
@@ -69,17 +71,16 @@ export function createPairView(root: HTMLElement, firstProps: PairProps): PairVi
 
   function draw() {
     frame = 0
-    const box = { width: parts.root.clientWidth, height: parts.root.clientHeight }
     if (isGone || box.width === 0 || box.height === 0) return
     const model = live.read()
-    const isFireside = parts.root.closest('[data-ground]')?.getAttribute('data-ground') === 'fireside'
+    const { isFireside, colours } = ground
     const type = choosePairType(isFireside, model.size)
     const layout = layOutPair(model, box, type, isFireside, text.measure)
     const pointedS = pointedPx === null ? null : toPointedS(layout, model, pointedPx)
     const scene: PairScene = { model, layout, type, isFireside, measure: text.measure, pointedS }
     placeParts(parts, layout)
     paintSvgLayer(parts.under, drawUnder(scene))
-    plot.draw(model, layout, readPlotColours(parts.root), isFireside)
+    plot.draw(model, layout, colours, isFireside)
     paintedWood = drawWoodCanvas(parts.wood, model, layout, paintedWood)
     paintSvgLayer(parts.over, drawOver(scene))
     tellLayout?.(layout, model)
@@ -89,7 +90,12 @@ export function createPairView(root: HTMLElement, firstProps: PairProps): PairVi
     if (frame === 0 && !isGone) frame = requestAnimationFrame(draw)
   }
 
-  const sizes = new ResizeObserver(schedule)
+  // Sizes and colours are read here, not in the frame, where reading them would force the page's layout.
+  const sizes = new ResizeObserver(([entry]) => {
+    if (entry !== undefined) box = { width: entry.contentRect.width, height: entry.contentRect.height }
+    ground = readGround(parts.root)
+    schedule()
+  })
   sizes.observe(parts.root)
   const density = watchDensity(() => {
     paintedWood = null
@@ -138,18 +144,32 @@ export function createPairView(root: HTMLElement, firstProps: PairProps): PairVi
   }
 }
 
+function readGround(root: HTMLElement) {
+  const isFireside = root.closest('[data-ground]')?.getAttribute('data-ground') === 'fireside'
+  return { isFireside, colours: readPlotColours(root) }
+}
+
 function toPointedS(layout: PairLayout, model: PairModel, xPx: number): number | null {
   if (xPx < layout.left || xPx > layout.right) return null
   return Math.round(((xPx - layout.left) / (layout.right - layout.left)) * model.xMaxS)
 }
 
+/** Sets what differs: writing an equal value would still cost the page a layout. */
 function placeParts(parts: PairParts, layout: PairLayout) {
   for (const layer of [parts.under, parts.over]) {
-    layer.setAttribute('width', String(layout.width))
-    layer.setAttribute('height', String(layout.height))
+    setAttribute(layer, 'width', String(layout.width))
+    setAttribute(layer, 'height', String(layout.height))
   }
-  parts.plot.style.left = `${layout.left}px`
-  parts.plot.style.top = `${layout.fire.top}px`
+  setStyle(parts.plot, 'left', `${layout.left}px`)
+  setStyle(parts.plot, 'top', `${layout.fire.top}px`)
+}
+
+function setAttribute(element: Element, name: string, value: string) {
+  if (element.getAttribute(name) !== value) element.setAttribute(name, value)
+}
+
+function setStyle(element: HTMLElement, name: 'left' | 'top' | 'width' | 'height', value: string) {
+  if (element.style[name] !== value) element.style[name] = value
 }
 
 type PaintedWood = {
@@ -168,7 +188,8 @@ function drawWoodCanvas(
   before: PaintedWood | null,
 ): PaintedWood | null {
   const { wood } = model
-  canvas.hidden = wood === null || layout.wood === null || wood.times.length < 2
+  const isHidden = wood === null || layout.wood === null || wood.times.length < 2
+  if (canvas.hidden !== isHidden) canvas.hidden = isHidden
   if (wood === null || layout.wood === null || wood.times.length < 2) return null
   const startX = layout.toX(wood.times[0] ?? 0)
   const widthPx = layout.toX(wood.times.at(-1) ?? 0) - startX
@@ -176,10 +197,10 @@ function drawWoodCanvas(
   const ratio = Math.min(window.devicePixelRatio || 1, 2)
   const width = Math.max(Math.round(widthPx * ratio), 1)
   const height = Math.max(Math.round(heightPx * ratio), 1)
-  canvas.style.left = `${startX}px`
-  canvas.style.top = `${layout.wood.top}px`
-  canvas.style.width = `${widthPx}px`
-  canvas.style.height = `${heightPx}px`
+  setStyle(canvas, 'left', `${startX}px`)
+  setStyle(canvas, 'top', `${layout.wood.top}px`)
+  setStyle(canvas, 'width', `${widthPx}px`)
+  setStyle(canvas, 'height', `${heightPx}px`)
   const painted = {
     log10Dose: wood.log10Dose,
     times: wood.times,
