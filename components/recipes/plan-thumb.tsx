@@ -46,6 +46,7 @@ export function PlanThumb({
       unit={unit}
       widthPx={150}
       heightPx={62}
+      woodShare={0.38}
       className="h-[62px] w-[150px]"
     />
   )
