@@ -30,7 +30,7 @@ export function FiresideChart({
   const pair = useRef<PairHandle>(null)
   const taken = useRef({ lead: nothingTaken, opposite: nothingTaken })
   const { plan, content, toastMs, shownMarks, serial, hearthNumber } = facts
-  const { feeds, columns, state } = live
+  const { columns, state } = live
   const props: PairProps = useMemo(
     () => ({
       size: 'large',
@@ -55,6 +55,7 @@ export function FiresideChart({
   // After every render, since feeds grow in place: what they grew by goes to the picture.
   useEffect(() => {
     const handle = pair.current
+    const feeds = live.feeds()
     if (handle === null || feeds === null || toastMs === null) return
     for (const role of roles) {
       const from = takeFrom(feeds[role], taken.current[role])
