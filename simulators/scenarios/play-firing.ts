@@ -35,10 +35,10 @@ export type SeedFiring = {
   finish?: { colour: string; smell: string; outsideTempC: number; remarks: string }
 }
 
-type Played = { readings: HearthReading[]; marks: HearthMark[]; endS: number; toastS: number | null }
+export type Played = { readings: HearthReading[]; marks: HearthMark[]; endS: number; toastS: number | null }
 
 /** Runs the engine at one reading a second, to the end or to the stop. */
-function playEngine(firing: SeedFiring): Played {
+export function playEngine(firing: SeedFiring): Played {
   const hearth = createHearth({ ...firing.engine, recipe: hearthRecipeOf(firing.content) })
   const played: Played = { readings: [], marks: [], endS: 0, toastS: null }
   while (hearth.phase() !== 'finished') {
@@ -123,7 +123,7 @@ type MarkFields = {
 }
 
 /** The engine says which stage begins (from 0); the mark says which stage ended (from 1): the same number. */
-function toMark(mark: HearthMark): MarkFields {
+export function toMark(mark: HearthMark): MarkFields {
   if (mark.kind === 'stage') return { kind: 'stage', stagePosition: mark.stageIndex, words: '' }
   if (mark.kind !== 'phase') return { kind: mark.kind, words: '' }
   if (mark.phase === 'bending' || mark.phase === 'toasting' || mark.phase === 'resting') {
