@@ -144,16 +144,13 @@ export function createLiveFiringClient(
   }
   const onEnded = () => change({ connection: { kind: 'ended' } })
 
-  const bindings: [string, (payload: never) => void][] = [
-    ['connect', join],
-    ['disconnect', onDisconnect],
-    ['connect_error', onRefused],
-    ['firing:readings', onReadings],
-    ['firing:state', onState],
-    ['firing:changed', onChanged],
-    ['session:ended', onEnded],
-  ]
-  for (const [event, listener] of bindings) socket.on(event, listener)
+  socket.on('connect', join)
+  socket.on('disconnect', onDisconnect)
+  socket.on('connect_error', onRefused)
+  socket.on('firing:readings', onReadings)
+  socket.on('firing:state', onState)
+  socket.on('firing:changed', onChanged)
+  socket.on('session:ended', onEnded)
   if (socket.connected) join()
 
   return {
@@ -166,7 +163,13 @@ export function createLiveFiringClient(
     close: () => {
       isClosed = true
       clearTimeout(retry)
-      for (const [event, listener] of bindings) socket.off(event, listener)
+      socket.off('connect', join)
+      socket.off('disconnect', onDisconnect)
+      socket.off('connect_error', onRefused)
+      socket.off('firing:readings', onReadings)
+      socket.off('firing:state', onState)
+      socket.off('firing:changed', onChanged)
+      socket.off('session:ended', onEnded)
       if (socket.connected) socket.emit('firing:leave', { firingId }, () => {})
       listeners.clear()
     },

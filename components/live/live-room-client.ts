@@ -53,15 +53,13 @@ export function createLiveRoomClient(socket: Socket, nowMs: () => number = Date.
     if (error.data !== undefined) change({ connection: { kind: 'refused', problem: error.data } })
     else if (snapshot.connection.kind === 'live') onDisconnect()
   }
-  const bindings: [string, (payload: never) => void][] = [
-    ['connect', join],
-    ['disconnect', onDisconnect],
-    ['connect_error', onRefused],
-    ['room:state', onRoom],
-    ['room:changed', onChanged],
-    ['session:ended', () => change({ connection: { kind: 'ended' } })],
-  ]
-  for (const [event, listener] of bindings) socket.on(event, listener)
+  const onEnded = () => change({ connection: { kind: 'ended' } })
+  socket.on('connect', join)
+  socket.on('disconnect', onDisconnect)
+  socket.on('connect_error', onRefused)
+  socket.on('room:state', onRoom)
+  socket.on('room:changed', onChanged)
+  socket.on('session:ended', onEnded)
   if (socket.connected) join()
   return {
     snapshot: () => snapshot,
@@ -71,7 +69,12 @@ export function createLiveRoomClient(socket: Socket, nowMs: () => number = Date.
     },
     close: () => {
       isClosed = true
-      for (const [event, listener] of bindings) socket.off(event, listener)
+      socket.off('connect', join)
+      socket.off('disconnect', onDisconnect)
+      socket.off('connect_error', onRefused)
+      socket.off('room:state', onRoom)
+      socket.off('room:changed', onChanged)
+      socket.off('session:ended', onEnded)
       listeners.clear()
     },
   }
