@@ -33,7 +33,7 @@ export function DoseFacts({
       value: (
         <Figure figure={`${formatDoseFigure(dose.doseMin)} ${at}`}>
           {score.verdict === 'incomplete'
-            ? 'as far as it was read; nothing is compared with it.'
+            ? 'with what is missing joined straight, so nothing is compared with it.'
             : `from toast start to rest start; the target is ${formatDoseFigure(score.targetDoseMin)}.`}
         </Figure>
       ),
@@ -74,9 +74,14 @@ export function DoseFacts({
   return (
     <section>
       <h2 className="mb-1">The dose and how sure it is</h2>
-      <Facts isRuled facts={facts} />
+      <Facts isRuled facts={score.verdict === 'incomplete' ? facts.filter(isOfIncomplete) : facts} />
     </section>
   )
+}
+
+/** Without the record there is no interval, no index and no depth to claim. */
+function isOfIncomplete(fact: { name: string }): boolean {
+  return fact.name === 'Dose' || fact.name === 'Beside it'
 }
 
 function besideWords({ bendDoseMin, restDoseMin }: Score): string {

@@ -29,12 +29,14 @@ export function FiringView({ picture, unit }: { picture: FiringPicture; unit: Te
             <FiringPair picture={picture} unit={unit} />
           )}
           {score === null ? null : <DoseFacts score={score.result} refTempC={refTempC} unit={unit} />}
+          <div className="grid gap-x-9 gap-y-6 lg:grid-cols-2">
+            <ProbeFacts picture={picture} unit={unit} />
+            <FiringRemarks firing={picture.firing} unit={unit} />
+          </div>
         </div>
         <div className="min-w-0 space-y-6">
           {score === null ? null : <TermTable score={score.result} refTempC={refTempC} unit={unit} />}
           <HappenedList picture={picture} />
-          <ProbeFacts picture={picture} unit={unit} />
-          <FiringRemarks firing={picture.firing} unit={unit} />
         </div>
       </div>
     </>

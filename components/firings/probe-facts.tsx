@@ -2,7 +2,7 @@ import { silenceWords, treatmentWords } from '@/components/firings/gap-words'
 import { Facts } from '@/components/ui/facts'
 import type { FiringPicture, ProbeCheckFact } from '@/lib/firings/picture-types'
 import type { FiringDto } from '@/lib/firings/schema'
-import { formatInstant, formatNumber, formatTempBare, unitName } from '@/lib/format'
+import { formatInstant, formatNumber, toShownTemp, unitName } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
 import type { Gap } from '@/lib/science/gaps'
 
@@ -13,12 +13,13 @@ export function ProbeFacts({ picture, unit }: { picture: FiringPicture; unit: Te
   const { firing, checks, timeZone, curves } = picture
   if (firing.probes.length === 0) return null
   const probes = firing.probes.map((probe) => ({
-    name: `${capital(probe.height)}${probe.height === 'coals' ? '' : ` ${probe.side}`}${probe.role === 'lead' ? ', lead' : ''}`,
+    name: `${capital(shortPlace(probe))}${probe.role === 'lead' ? ', lead' : ''}`,
     value: (
       <>
         {probeWords(probe)},{' '}
         <CheckWords
           checks={checks.filter((check) => check.probeId === probe.probeId)}
+          isWood={probe.role !== 'coals'}
           zone={timeZone}
           unit={unit}
         />
@@ -35,28 +36,44 @@ export function ProbeFacts({ picture, unit }: { picture: FiringPicture; unit: Te
   )
 }
 
+function shortPlace(probe: Probe): string {
+  return probe.height === 'coals' ? probe.height : `${probe.height} ${probe.side}`
+}
+
+/** The probe's own name is said only where it is not that of its place. */
 function probeWords(probe: Probe): string {
   const depth = `${formatNumber(probe.depthMm, probe.depthMm % 1 === 0 ? 0 : 1)}\u00a0mm`
   const where = probe.role === 'coals' ? 'over the coals' : `${depth}, ${probe.mounting}`
-  return `${probe.name}: ${where}, ${probe.thermocoupleType} class ${probe.iecClass}`
+  const isNamedByPlace = probe.name.toLowerCase() === shortPlace(probe).toLowerCase()
+  return `${isNamedByPlace ? '' : `${probe.name}: `}${where}, ${probe.thermocoupleType} class ${probe.iecClass}`
 }
 
 function CheckWords({
   checks,
+  isWood,
   zone,
   unit,
 }: {
   checks: readonly ProbeCheckFact[]
+  /** A coals probe makes no dose and needs no check. */
+  isWood: boolean
   zone: string
   unit: TemperatureUnit
 }) {
   const newest = checks.map((check) => check.checkedAt).sort()
   const last = newest.at(-1)
-  if (last === undefined) return <span className="text-amber">never checked before this firing</span>
-  const points = checks.map((check) => formatTempBare(check.referenceTempC, unit)).join(', ')
+  if (last === undefined) {
+    return (
+      <span className={isWood ? 'text-amber' : ''}>
+        {isWood ? 'never checked before this firing' : 'not checked'}
+      </span>
+    )
+  }
+  const points = checks.map((check) => formatNumber(toShownTemp(check.referenceTempC, unit))).join(', ')
   return (
     <>
-      checked {formatInstant(last, zone, 'date')} at {points} {unitName(unit).slice(1)}
+      checked {formatInstant(last, zone, 'date')} at {points}
+      {`\u00a0${unitName(unit)}`}
       {checks.some((check) => check.wasOverdue) ? (
         <span className="text-amber">, overdue when the firing began</span>
       ) : null}

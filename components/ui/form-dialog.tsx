@@ -12,15 +12,21 @@ import type { SelectOption } from '@/components/ui/select-field'
 import { SelectField } from '@/components/ui/select-field'
 import { TextArea } from '@/components/ui/text-area'
 import { TextField } from '@/components/ui/text-field'
-import { parseDecimal } from '@/lib/format'
+import { fromShownDifference, fromShownTemp, parseDecimal, unitName } from '@/lib/format'
+import type { TemperatureUnit } from '@/lib/format'
 import { callApi, problemOf } from '@/lib/http/api-client'
 import type { Method } from '@/lib/http/operation'
+import { shownSentence } from '@/lib/recipes/shown-sentence'
 
 export type FormField = {
   name: string
   label: string
-  /** 'date' is sent as the instant at noon of that day; 'number' takes a decimal comma or point. */
-  kind: 'text' | 'number' | 'select' | 'date' | 'checkbox' | 'words' | 'password'
+  /**
+   * 'date' is sent as the instant at noon of that day; 'number' takes a decimal comma or point; 'temperature' and
+   * 'difference' are typed in the person's unit and sent in °C.
+   */
+  kind:
+    'text' | 'number' | 'temperature' | 'difference' | 'select' | 'date' | 'checkbox' | 'words' | 'password'
   options?: readonly SelectOption[]
   unit?: string
   hint?: string
@@ -31,10 +37,14 @@ export type FormField = {
 
 export type FormDialogProps = {
   openLabel: string
-  openKind?: 'plain' | 'main'
+  openKind?: 'plain' | 'main' | 'quiet'
+  /** Read out after the label, where several rows have the same: "probe Bilge A". */
+  openFor?: string
   title: string
   submitLabel: string
   method: Method
+  /** For fields that hold a temperature; default °C. */
+  personUnit?: TemperatureUnit
   /** With the ids already in it. */
   path: string
   fields: readonly FormField[]
@@ -49,12 +59,15 @@ export type FormDialogProps = {
 function bodyOf(
   fields: readonly FormField[],
   values: Readonly<Record<string, string | boolean>>,
+  unit: TemperatureUnit,
 ): Record<string, unknown> {
   const body: Record<string, unknown> = {}
   for (const field of fields) {
     const value = values[field.name] ?? ''
     if (typeof value === 'boolean') body[field.name] = value
     else if (value.trim() === '' && field.isLeftOutWhenEmpty) continue
+    else if (field.kind === 'temperature' || field.kind === 'difference')
+      body[field.name] = toSentC(field.kind, value, unit)
     else if (field.kind === 'number')
       body[field.name] = value.trim() === '' ? null : (parseDecimal(value) ?? value)
     else if (field.kind === 'date')
@@ -63,6 +76,30 @@ function bodyOf(
     else body[field.name] = value
   }
   return body
+}
+
+/** What was typed in the person's unit, in °C; left as it is when it is no number, for the server to name it. */
+function toSentC(
+  kind: 'temperature' | 'difference',
+  typed: string,
+  unit: TemperatureUnit,
+): number | string | null {
+  if (typed.trim() === '') return null
+  const value = parseDecimal(typed)
+  if (value === null) return typed
+  return (kind === 'temperature' ? fromShownTemp : fromShownDifference)(value, unit)
+}
+
+/** The server's sentences say °C; a person reads their own unit. */
+function shownProblem(problem: Problem, fields: readonly FormField[], unit: TemperatureUnit): Problem {
+  if (problem.fields === undefined) return problem
+  const kindOf = new Map(fields.map((field) => [field.name, field.kind]))
+  const shown = Object.entries(problem.fields).map(([name, sentence]) => [
+    name,
+    // The path tells a difference, which is converted without the 32.
+    shownSentence(kindOf.get(name) === 'difference' ? 'bandC' : name, sentence, unit),
+  ])
+  return { ...problem, fields: Object.fromEntries(shown) }
 }
 
 function startValues(fields: readonly FormField[]): Record<string, string | boolean> {
@@ -81,21 +118,29 @@ export function FormDialog(props: FormDialogProps) {
   const [values, setValues] = useState(() => startValues(props.fields))
   const [problem, setProblem] = useState<Problem | null>(null)
   const [isBusy, setIsBusy] = useState(false)
+  const [isTouched, setIsTouched] = useState(false)
+  const unit = props.personUnit ?? 'C'
+
+  /** What was typed before stays; otherwise it begins with what holds now. */
+  function open() {
+    if (!isTouched) setValues(startValues(props.fields))
+    setIsOpen(true)
+  }
 
   async function submit(event: FormEvent) {
     event.preventDefault()
     setIsBusy(true)
     try {
       const answer = await callApi<{ id?: string } | null>(props.method, props.path, {
-        body: { ...bodyOf(props.fields, values), ...props.fixed },
+        body: { ...bodyOf(props.fields, values, unit), ...props.fixed },
       })
       setProblem(null)
       setIsOpen(false)
-      setValues(startValues(props.fields))
+      setIsTouched(false)
       if (props.doneHref === undefined) router.refresh()
       else router.push(props.doneHref.replace('{id}', answer?.id ?? ''))
     } catch (error) {
-      setProblem(problemOf(error))
+      setProblem(shownProblem(problemOf(error), props.fields, unit))
     } finally {
       setIsBusy(false)
     }
@@ -104,8 +149,9 @@ export function FormDialog(props: FormDialogProps) {
   const formId = `form-${props.path.replaceAll(/\W+/g, '-')}`
   return (
     <>
-      <Button kind={props.openKind ?? 'plain'} onClick={() => setIsOpen(true)}>
+      <Button kind={props.openKind ?? 'plain'} onClick={open}>
         {props.openLabel}
+        {props.openFor === undefined ? null : <span className="sr-only"> {props.openFor}</span>}
       </Button>
       <Dialog
         isOpen={isOpen}
@@ -133,7 +179,11 @@ export function FormDialog(props: FormDialogProps) {
               field={field}
               value={values[field.name] ?? ''}
               error={problem?.fields?.[field.name]}
-              onValue={(value) => setValues((before) => ({ ...before, [field.name]: value }))}
+              unit={unit}
+              onValue={(value) => {
+                setIsTouched(true)
+                setValues((before) => ({ ...before, [field.name]: value }))
+              }}
             />
           ))}
         </form>
@@ -146,14 +196,18 @@ function OneField({
   field,
   value,
   error,
+  unit,
   onValue,
 }: {
   field: FormField
   value: string | boolean
   error: string | undefined
+  unit: TemperatureUnit
   onValue: (value: string | boolean) => void
 }) {
-  const frame = { name: field.name, label: field.label, hint: field.hint, unit: field.unit, error }
+  const isTemperature = field.kind === 'temperature' || field.kind === 'difference'
+  const shownUnit = isTemperature ? unitName(unit) : field.unit
+  const frame = { name: field.name, label: field.label, hint: field.hint, unit: shownUnit, error }
   if (typeof value === 'boolean') {
     return (
       <Checkbox
@@ -184,7 +238,7 @@ function OneField({
     <TextField
       {...frame}
       type={type}
-      inputMode={field.kind === 'number' ? 'decimal' : undefined}
+      inputMode={field.kind === 'number' || isTemperature ? 'decimal' : undefined}
       autoComplete={field.kind === 'password' ? 'current-password' : 'off'}
       value={value}
       onChange={(event) => onValue(event.target.value)}

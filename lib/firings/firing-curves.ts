@@ -107,7 +107,7 @@ function planDoseOf(plan: Plan, rules: SiteRules): FiringCurves['planDose'] {
   }
 }
 
-/** The stave under the joined curve: it is a model either way, and says so. */
+/** The stave under the joined curve, up to the first gap that cannot be joined: what came after is not known. */
 function woodOf(
   firing: FiringDto,
   lead: FilledSeries,
@@ -116,7 +116,7 @@ function woodOf(
 ): PictureWood | null {
   const columns = detail.woodColumns ?? 160
   const points = stavePoints(lead)
-  if (columns === 0 || points.length < 2) return null
+  if (columns === 0 || (points.at(-1)?.timeS ?? 0) <= (points[0]?.timeS ?? 0)) return null
   const history = staveHistory({
     ...staveOptionsOf(firing, rules),
     points,
@@ -126,13 +126,15 @@ function woodOf(
   })
   const wood = trimWood(history)
   const scored = detail.toastDepthMm ?? null
-  if (scored !== null) wood.toastDepthMm[wood.toastDepthMm.length - 1] = scored
+  if (scored !== null && wood.timesS.at(-1) === lastTimeS(lead.timeS))
+    wood.toastDepthMm[wood.toastDepthMm.length - 1] = scored
   return wood
 }
 
 function stavePoints(lead: FilledSeries): CurvePoint[] {
   const points: CurvePoint[] = []
-  const last = lead.timeS.length - 1
+  const openS = lead.gaps.find((gap) => gap.treatment === 'incomplete')?.startS ?? Infinity
+  const last = lead.timeS.findLastIndex((timeS) => timeS <= openS)
   for (let i = 0; i <= last; i += 1) {
     const timeS = lead.timeS[i] ?? NaN
     if (i !== 0 && i !== last && timeS - (points.at(-1)?.timeS ?? 0) < staveStepS) continue
