@@ -4,7 +4,7 @@ import { SelectField } from '@/components/ui/select-field'
 import { TextField } from '@/components/ui/text-field'
 import type { CustomerDto } from '@/lib/accounts/schema'
 import type { Role } from '@/lib/auth/actor'
-import { callApi } from '@/lib/http/api-client'
+import { ApiProblem, callApi, isApiProblem } from '@/lib/http/api-client'
 
 export type AccountDraft = {
   email: string
@@ -25,7 +25,13 @@ export const roleHints: Record<Role, string> = {
   customer: 'Follows the orders of one customer, and nothing else.',
 }
 
-export const accountLabels = { email: 'E-mail', name: 'Name', role: 'Role', customerId: 'Customer' }
+export const accountLabels = {
+  email: 'E-mail',
+  name: 'Name',
+  role: 'Role',
+  customerId: 'Customer',
+  newCustomerName: 'New customer',
+}
 
 const roleOptions = (['administrator', 'master cooper', 'chemist', 'toaster', 'customer'] as const).map(
   (role) => ({ value: role, label: role }),
@@ -102,9 +108,19 @@ export async function roleBody(draft: AccountDraft, onDraft: (draft: AccountDraf
   if (draft.customerId !== 'new') {
     return { role: draft.role, customerId: draft.customerId === '' ? null : draft.customerId }
   }
-  const customer = await callApi<CustomerDto>('POST', '/api/customers', {
-    body: { name: draft.newCustomerName },
-  })
+  const customer = await createCustomer(draft.newCustomerName)
   onDraft({ ...draft, customerId: customer.id })
   return { role: draft.role, customerId: customer.id }
+}
+
+/** The customer's fault belongs to the customer's own field, not to the person's name. */
+async function createCustomer(name: string): Promise<CustomerDto> {
+  try {
+    return await callApi<CustomerDto>('POST', '/api/customers', { body: { name } })
+  } catch (error) {
+    if (!isApiProblem(error)) throw error
+    const { name: sentence, ...others } = error.problem.fields
+    if (sentence === undefined) throw error
+    throw new ApiProblem({ ...error.problem, fields: { ...others, newCustomerName: sentence } })
+  }
 }

@@ -5,7 +5,7 @@ export function deviceWords(userAgent: string | null): string {
     [/\bEdg\//, 'Edge'],
     [/\bOPR\//, 'Opera'],
     [/\bFirefox\/|\bFxiOS\//, 'Firefox'],
-    [/\bChrom(e|ium)\/|\bCriOS\//, 'Chrome'],
+    [/Chrom(e|ium)\/|\bCriOS\//, 'Chrome'],
     [/\bSafari\//, 'Safari'],
     [/^curl\//, 'curl'],
   ])

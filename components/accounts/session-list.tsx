@@ -3,8 +3,6 @@
 import { useRouter } from 'next/navigation'
 import { Button } from '@/components/ui/button'
 import { FormError } from '@/components/ui/form-error'
-import type { Column } from '@/components/ui/table'
-import { Table } from '@/components/ui/table'
 import { Time } from '@/components/ui/time'
 import { useToast } from '@/components/ui/toast'
 import { useRequest } from '@/components/ui/use-request'
@@ -26,29 +24,36 @@ export function SessionList({ sessions, timeZone }: { sessions: readonly Session
     router.refresh()
   }
 
-  const columns: Column<SessionDto>[] = [
-    { key: 'device', head: 'Device', isRowHead: true, cell: (one) => deviceWords(one.userAgent) },
-    { key: 'address', head: 'Address', cell: (one) => one.address ?? 'not known' },
-    { key: 'started', head: 'Signed in', cell: (one) => <Time at={one.startedAt} zone={timeZone} /> },
-    { key: 'seen', head: 'Last used', cell: (one) => <Time at={one.lastSeenAt} zone={timeZone} /> },
-    {
-      key: 'end',
-      head: <span className="sr-only">End</span>,
-      cell: (one) =>
-        one.isThisOne ? (
-          <span className="text-soft">this one</span>
-        ) : (
-          <Button kind="quiet" onClick={() => end(one)}>
-            Sign out there
-          </Button>
-        ),
-    },
-  ]
   return (
     <section className="mt-9 max-w-[60rem]">
       <h2 className="mb-2">Where you are signed in</h2>
       <FormError problem={problem} />
-      <Table caption="Your open sessions" columns={columns} rows={sessions} rowKey={(one) => one.id} />
+      <ul className="border-t border-line">
+        {sessions.map((one) => (
+          <li
+            key={one.id}
+            className="flex flex-wrap items-center justify-between gap-x-6 gap-y-1 border-b border-line py-2"
+          >
+            <div className="min-w-0">
+              <p>
+                {deviceWords(one.userAgent)}
+                <span className="text-soft">, {one.address ?? 'address not known'}</span>
+              </p>
+              <p className="text-small text-soft">
+                Signed in <Time at={one.startedAt} zone={timeZone} />, last used{' '}
+                <Time at={one.lastSeenAt} zone={timeZone} />
+              </p>
+            </div>
+            {one.isThisOne ? (
+              <span className="text-soft">this device</span>
+            ) : (
+              <Button kind="quiet" onClick={() => end(one)}>
+                Sign out there
+              </Button>
+            )}
+          </li>
+        ))}
+      </ul>
     </section>
   )
 }

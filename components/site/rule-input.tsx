@@ -3,6 +3,7 @@
 import { Checkbox } from '@/components/ui/checkbox'
 import { NumberField } from '@/components/ui/number-field'
 import { TemperatureField } from '@/components/ui/temperature-field'
+import { unitName } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
 import type { RuleField } from './rule-fields'
 
@@ -42,6 +43,7 @@ export function RuleInput({
       <TemperatureField
         {...common}
         kind={field.kind}
+        {...(field.kind === 'difference' ? { what: `a difference in ${unitName(unit)}` } : {})}
         personUnit={unit}
         valueC={number}
         minC={bounds.min}

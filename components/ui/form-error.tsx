@@ -22,7 +22,10 @@ export function FormError({
   return (
     <div ref={box} role="alert" tabIndex={-1} className="mb-4 border-l-4 border-red py-1 pl-3">
       <p className="font-[640]">{problem.title ?? 'This was not saved.'}</p>
-      {problem.detail === undefined || problem.detail === problem.title ? null : <p>{problem.detail}</p>}
+      {/* With named fields the sentences beside them say it all. */}
+      {problem.detail === undefined || problem.detail === problem.title || fields.length > 0 ? null : (
+        <p>{problem.detail}</p>
+      )}
       {fields.length === 0 ? null : (
         <ul className="mt-1">
           {fields.map(([name, message]) => (

@@ -5,7 +5,8 @@ import { holdLock } from './lock.mjs'
 import { ensurePackages } from './packages.mjs'
 import { makeDataDir } from './paths.mjs'
 import { serverPort } from './ports.mjs'
-import { createProcesses, endLeftovers } from './processes.mjs'
+import { createProcesses, endLeftovers, typescript } from './processes.mjs'
+import { run } from './run.mjs'
 import { main, say, SetupError } from './say.mjs'
 import { serveEnvironment, serveTroubles } from './serve-environment.mjs'
 
@@ -27,9 +28,19 @@ await main(async () => {
   await ensureBuild(command)
   const forServer = { ...environment }
   delete forServer.DATABASE_OWNER_URL
+  await greetFirstAdministrator(forServer)
   const processes = createProcesses()
   say(`starting the server on port ${environment.PORT} for ${environment.APP_ORIGIN}`)
   processes.start('server', 'server.ts', forServer)
   endingIsSuccess()
   await processes.untilOneEnds()
 })
+
+/** While nobody has an account, prints the one-time link that makes the first administrator. */
+async function greetFirstAdministrator(env) {
+  const program = typescript('lib/setup/first-administrator.ts')
+  const { code } = await run(process.execPath, program, { env, show: true })
+  if (code !== 0) {
+    throw new SetupError('The database could not be asked for accounts.', 'Look at DATABASE_URL and its role.')
+  }
+}

@@ -8,7 +8,7 @@ import { setClock } from '@/lib/runtime'
 import { callRoute } from '@/tests/support/api'
 import type { TestDatabase } from '@/tests/support/database'
 import { createTestDatabase } from '@/tests/support/database'
-import { useTestEnvironment } from '@/tests/support/environment'
+import { setTestEnvironment } from '@/tests/support/environment'
 import type { TestPeople } from '@/tests/support/people'
 import { createPeople, createPerson, testPassword } from '@/tests/support/people'
 
@@ -44,7 +44,7 @@ beforeAll(async () => {
   const { port } = mailServer.server.address() as AddressInfo
   process.env['SMTP_URL'] = `smtp://127.0.0.1:${port}`
   database = await createTestDatabase()
-  useTestEnvironment(database)
+  setTestEnvironment(database)
   const link = await createFirstAdministratorLink()
   firstLink = link?.url ?? ''
 })

@@ -1,7 +1,7 @@
 import type { TestDatabase } from '@/tests/support/database'
 
 /** Points this process at a test database, as `npm start` would point a server. Call it before any verb. */
-export function useTestEnvironment(database: Pick<TestDatabase, 'databaseUrl'>): void {
+export function setTestEnvironment(database: Pick<TestDatabase, 'databaseUrl'>): void {
   Object.assign(process.env, {
     DATABASE_URL: database.databaseUrl,
     SESSION_SECRET: 'a secret for tests only, of no worth anywhere',

@@ -6,7 +6,7 @@ import { forkEm, queryRows } from '@/lib/db/orm'
 import { now } from '@/lib/runtime'
 import { defaultSiteRules } from '@/lib/science/site-rules'
 import type { TestDatabase } from '@/tests/support/database'
-import { useTestEnvironment } from '@/tests/support/environment'
+import { setTestEnvironment } from '@/tests/support/environment'
 
 export type TestPerson = {
   accountId: string
@@ -40,7 +40,7 @@ export const testPassword = 'resin lantern gravel 41'
  * settings with the product's default rules. Also points this process at the database.
  */
 export async function createPeople(database: Pick<TestDatabase, 'databaseUrl'>): Promise<TestPeople> {
-  useTestEnvironment(database)
+  setTestEnvironment(database)
   const passwordHash = await hashPassword(testPassword)
   await createTestSite()
   const first = await createTestCustomer('Upper Terrace Winery')

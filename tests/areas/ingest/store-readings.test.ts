@@ -8,7 +8,7 @@ import { storeReadings } from '@/lib/ingest/store-readings'
 import { hubDoor } from '@/lib/live/hub-door'
 import type { TestDatabase } from '@/tests/support/database'
 import { createTestDatabase } from '@/tests/support/database'
-import { useTestEnvironment } from '@/tests/support/environment'
+import { setTestEnvironment } from '@/tests/support/environment'
 import type { TestGateway, TestProbe } from '@/tests/support/room'
 import { createTestGateway, createTestProbe } from '@/tests/support/room'
 
@@ -21,7 +21,7 @@ let retired: TestProbe
 
 beforeAll(async () => {
   database = await createTestDatabase()
-  useTestEnvironment(database)
+  setTestEnvironment(database)
   gateway = await createTestGateway()
   probe = await createTestProbe(gateway.gatewayId, 1)
   retired = await createTestProbe(gateway.gatewayId, 2, { isRetired: true })
