@@ -80,7 +80,7 @@ export function BeforeTheFire(props: ConditionsProps) {
             onChange: (thicknessMm) => onChange({ thicknessMm }, 'thicknessMm'),
           }}
         />
-        mm thick
+        mm
       </InlineRow>
       <InlineRow
         name="Stave moisture"
@@ -188,7 +188,7 @@ export function BeforeTheFire(props: ConditionsProps) {
             onChange: (depthMm) => setLead({ depthMm }, 'depthMm'),
           }}
         />
-        mm deep
+        mm
         <InlineChoice
           name="leadPlace.mounting"
           label="Lead probe, mounting"

@@ -119,7 +119,7 @@ function StageList({
   doses: readonly number[]
   unit: TemperatureUnit
 }) {
-  const head = 'py-[5px] pr-4 font-normal'
+  const head = 'py-[5px] pr-4 font-normal whitespace-nowrap'
   return (
     <table className="w-full border-collapse">
       <caption className="sr-only">Stages of the fire</caption>

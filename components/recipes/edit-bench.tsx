@@ -124,7 +124,7 @@ export function EditBench({ version, shadow, rules, unit, sub }: EditBenchProps)
       takeProblem(answer.problem)
       return
     }
-    toast({ words: `Version ${sent.number} is in review. The master coopers have been told.` })
+    toast({ words: `Version ${sent.number} is in review.` })
     router.refresh()
   }, [isUnsaved, router, save, saved, takeProblem, toast])
 

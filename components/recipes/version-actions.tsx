@@ -134,7 +134,7 @@ export function VersionActions({ version, rights }: { version: RecipeVersionDto;
         reasonLabel="What should change"
         onConfirm={sendBack}
       >
-        It becomes a draft again, and {version.author.name} is told by e-mail.
+        It becomes a draft again, and {version.author.name} finds your reason on it.
       </ConfirmDialog>
       <SignDialog
         isOpen={ask === 'withdraw'}

@@ -19,7 +19,7 @@ export function VersionTable({ versions, zone }: { versions: readonly RecipeVers
           head: 'Version',
           isRowHead: true,
           cell: (version) => (
-            <Link href={`/recipe-versions/${version.id}`} className="link">
+            <Link href={`/recipe-versions/${version.id}`} className="link whitespace-nowrap">
               version {version.number}
             </Link>
           ),
@@ -29,7 +29,7 @@ export function VersionTable({ versions, zone }: { versions: readonly RecipeVers
           head: 'State',
           cell: ({ state }) => <StateText state={state} tone={versionTone(state)} />,
         },
-        { key: 'author', head: 'By', cell: ({ author }) => author.name },
+        { key: 'author', head: 'By', className: 'whitespace-nowrap', cell: ({ author }) => author.name },
         {
           key: 'when',
           head: 'Since',
@@ -38,7 +38,7 @@ export function VersionTable({ versions, zone }: { versions: readonly RecipeVers
         { key: 'why', head: 'Why', className: 'w-full', cell: why },
         {
           key: 'dose',
-          head: 'Target dose',
+          head: <span className="whitespace-nowrap">Target dose</span>,
           unit: 'min',
           isNumeric: true,
           cell: ({ targetDoseMinutes }) => formatDoseFigure(targetDoseMinutes),

@@ -22,7 +22,7 @@ export function PersonShell({ places, person, homeHref, customer, children }: Pe
   const pathname = usePathname()
   const items = places.map((place) => ({
     ...place,
-    isCurrent: pathname === place.href || pathname.startsWith(`${place.href}/`),
+    isCurrent: isWithin(pathname, place.href),
   }))
   return (
     <ToastProvider>
@@ -42,4 +42,10 @@ export function PersonShell({ places, person, homeHref, customer, children }: Pe
       )}
     </ToastProvider>
   )
+}
+
+/** A version's bench belongs to the recipes, though its address does not begin with theirs. */
+function isWithin(pathname: string, href: string): boolean {
+  const own = pathname.replace(/^\/recipe-versions(?=\/)/, '/recipes')
+  return own === href || own.startsWith(`${href}/`)
 }
