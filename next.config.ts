@@ -13,7 +13,8 @@ const config: NextConfig = {
     'nodemailer',
     'pg',
   ],
-  experimental: { authInterrupts: true },
+  // A build's cache on disk takes longer to write than it saves: builds are rare and hashed by lib/setup/build.mjs.
+  experimental: { authInterrupts: true, turbopackFileSystemCacheForBuild: false },
   // Types are held once, by `npm run check` and by tests/types.test.ts, instead of again in every build.
   typescript: { ignoreBuildErrors: true },
 }
