@@ -41,6 +41,9 @@ async function greetFirstAdministrator(env) {
   const program = typescript('lib/setup/first-administrator.ts')
   const { code } = await run(process.execPath, program, { env, show: true })
   if (code !== 0) {
-    throw new SetupError('The database could not be asked for accounts.', 'Look at DATABASE_URL and its role.')
+    throw new SetupError(
+      'The database could not be asked for accounts.',
+      'Look at DATABASE_URL and its role.',
+    )
   }
 }
