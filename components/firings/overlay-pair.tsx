@@ -30,6 +30,7 @@ export function OverlayPair({
       className="h-[560px]"
       title={`${firings.length} firings over one another`}
       planBand={first.curves.planBand}
+      planName=""
       stages={first.curves.stages}
       lead={lineOf(first)}
       others={others.map(lineOf)}

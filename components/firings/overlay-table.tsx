@@ -174,7 +174,7 @@ function doseRows(refTempC: number, unit: TemperatureUnit): Row[] {
 
 function termRows(unit: TemperatureUnit): Row[] {
   return ruleset1.termOrder.map((key) => ({
-    key,
+    key: `term ${key}`,
     name: ruleset1.terms[key].name,
     cell: ({ score }) => {
       const term = score?.result.terms.find((one) => one.key === key)

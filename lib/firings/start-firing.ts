@@ -72,6 +72,8 @@ async function begin(person: PersonActor, input: Input): Promise<FiringDto> {
       isFirstOfDay: await isFirstOfDay(em, at),
     })
     em.create(FiringPlacementEntity, { firingId: firing.id, hearthId: hearth.id, fromAt: at })
+    // First, so that a taken hearth is named as such and not by its probes.
+    await em.flush()
     addProbes(em, firing.id, probes, at)
     await em.flush()
     await writeAuditEntry(
