@@ -27,14 +27,14 @@ export function DoseFigure(props: DoseFigureProps) {
           {formatInstant(nowMs, zone, 'time')}
         </span>
       </p>
-      <div className="mt-1 flex items-center justify-between gap-3">
-        <p className={classNames(firesideType.action.className, 'whitespace-nowrap')}>
+      <div className="mt-1 flex items-center justify-between gap-2">
+        <p className={classNames(firesideType.action.className, '-tracking-[0.02em] whitespace-nowrap')}>
           {dose === null ? '–' : roundPercent(dose.minutes / dose.targetMinutes)}
         </p>
         <p className={classNames(firesideType.label.className, 'whitespace-nowrap text-soft')}>
           {dose === null ? '' : `plan ${roundPercent(dose.planMinutesNow / dose.targetMinutes)}`}
         </p>
-        <Gauge dose={dose} toleranceLog10={toleranceLog10} />
+        <Gauge dose={dose} toleranceLog10={toleranceLog10} width={GAUGE_PX} />
       </div>
       <p className={classNames(firesideType.text.className, 'mt-2 line-clamp-2')}>
         {forecast === null ? noForecastWords : forecast.sentence}
@@ -52,8 +52,11 @@ function doseLabel(dose: FiringState['dose'] | null): string {
   return `Dose, good to ±${formatNumber(Math.ceil(dose.goodToPercent))}\u00a0%`
 }
 
+/** Leaves room for 100 % beside the plan's 100 %. */
+const GAUGE_PX = 116
+
 function Gauge({ dose, toleranceLog10 }: Pick<DoseFigureProps, 'dose' | 'toleranceLog10'>) {
-  if (dose === null) return <StaveGauge fraction={null} toleranceLog10={toleranceLog10} />
+  if (dose === null) return <StaveGauge fraction={null} toleranceLog10={toleranceLog10} width={GAUGE_PX} />
   const fraction = dose.minutes / dose.targetMinutes
   const factor = 1 + dose.goodToPercent / 100
   return (
@@ -62,6 +65,7 @@ function Gauge({ dose, toleranceLog10 }: Pick<DoseFigureProps, 'dose' | 'toleran
       range={{ low: fraction / factor, high: fraction * factor }}
       planFraction={dose.planMinutesNow / dose.targetMinutes}
       toleranceLog10={toleranceLog10}
+      width={GAUGE_PX}
     />
   )
 }

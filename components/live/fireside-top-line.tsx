@@ -37,16 +37,16 @@ export function TopLine({ headline, instruction, age, level, isSeen, onSeen }: T
     >
       <div className="min-w-0 flex-1">
         <p className={classNames(firesideType.action.className, '-tracking-[0.015em]')}>{headline}</p>
-        <p className="mt-1 flex items-baseline justify-between gap-4 text-[28px] leading-[1.05]">
-          <span>
+        {instruction === '' && level === 'amber' ? null : (
+          <p className="mt-1 text-[28px] leading-[1.05]">
             {level === 'red' ? (
               <span className="mr-3 border-2 border-current px-2 font-[640]">NOW</span>
             ) : null}
             {instruction}
-          </span>
-          <span className="shrink-0">{age}</span>
-        </p>
+          </p>
+        )}
       </div>
+      <span className="shrink-0 self-end pb-2 text-[28px] leading-none">{age}</span>
       {onSeen === undefined ? null : (
         <button
           type="button"

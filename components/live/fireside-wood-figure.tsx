@@ -27,7 +27,7 @@ export function WoodFigure({
   zone: string
 }) {
   return (
-    <div className="min-w-0 border-r border-line px-6 py-3">
+    <div className="min-w-0 border-r border-line py-3 pr-5 pl-6">
       <p className={classNames(firesideType.label.className, 'flex justify-between gap-3 text-soft')}>
         <span>
           {depthMm === 0 ? 'Face' : `Wood at ${depthMm} mm`}, {unitName(unit)}
@@ -41,16 +41,17 @@ export function WoodFigure({
           <p
             className={classNames(
               firesideType.numeral.className,
+              'shrink-0',
               (lead.kind === 'old' || lead.kind === 'cut' || isFar) && 'text-amber',
             )}
           >
             {numeralOf(lead, unit)}
           </p>
-          <p className="text-right text-[24px] leading-[1.25]">
+          <p className="min-w-0 text-right text-[22px] leading-[1.2]">
             {lead.kind === 'live' ? (
               <>
                 {planTempC === null ? null : (
-                  <span className={classNames('block font-[640] whitespace-nowrap', isFar && 'text-amber')}>
+                  <span className={classNames('block font-[640]', isFar && 'text-amber')}>
                     {formatFromPlan(lead.tempC - planTempC, unit)}
                   </span>
                 )}

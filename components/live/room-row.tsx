@@ -10,6 +10,7 @@ import { roundPercent } from './fireside-dose-figure'
 import type { ProbeReading } from './fireside-reading'
 import { clockFigures } from './fireside-step'
 import { roomType } from './fireside-type'
+import { splitAlarmWords } from './fireside-top-line'
 import type { RoomTime } from './room-view'
 
 export type RoomRowProps = {
@@ -35,11 +36,15 @@ export function RoomRow(props: RoomRowProps) {
     <Link
       href={`/fireside/${props.firingId}`}
       className={classNames(
-        'relative grid min-h-0 grid-cols-[176px_minmax(0,1fr)_175px_190px_262px] items-center border-b border-line pr-6 pl-6 active:bg-wash',
-        edge === 'amber' && 'border-l-8 border-l-amber pl-4',
-        edge === 'red' && 'border-l-8 border-l-red pl-4',
+        'relative grid min-h-0 grid-cols-[176px_minmax(0,1fr)_175px_190px_262px] items-center border-b border-line px-6 active:bg-wash',
       )}
     >
+      {edge === null ? null : (
+        <span
+          aria-hidden="true"
+          className={classNames('absolute inset-y-0 left-0 w-2', edge === 'red' ? 'bg-red' : 'bg-amber')}
+        />
+      )}
       <div className="min-w-0 pr-3">
         <p className={numeral}>
           <span className="sr-only">Hearth </span>
@@ -69,7 +74,9 @@ export function RoomRow(props: RoomRowProps) {
         <p
           className={classNames(roomType.words.className, 'mt-1 line-clamp-2', edge !== null && 'font-[560]')}
         >
-          {firing?.alarm === null || firing === null ? timeWords(time) : firing.alarm.words}
+          {firing === null || firing.alarm === null
+            ? timeWords(time)
+            : splitAlarmWords(firing.alarm.words).headline}
         </p>
       </div>
     </Link>
@@ -94,7 +101,7 @@ function Percent({ text }: { text: string }) {
 
 function doseWords(firing: RoomFiring | null): string {
   if (firing === null) return 'dose not known'
-  if (firing.dose.isIncomplete) return 'dose incomplete, a gap'
+  if (firing.dose.isIncomplete) return 'incomplete, gap'
   return `dose, plan ${roundPercent(firing.dose.planMinutesNow / firing.dose.targetMinutes)}`
 }
 
