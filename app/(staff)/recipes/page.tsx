@@ -1,11 +1,5 @@
 import type { Metadata } from 'next'
-import { RecipeTable } from '@/components/recipes/recipe-table'
-import { LinkButton } from '@/components/ui/link-button'
-import { Notice } from '@/components/ui/notice'
-import { PageHead } from '@/components/ui/page-head'
-import { Pager } from '@/components/ui/pager'
-import { SearchForm } from '@/components/ui/search-form'
-import { changeQuery, readSort, writeSort } from '@/components/ui/url-query'
+import { RecipeList } from '@/components/recipes/recipe-list'
 import { requirePageActor } from '@/lib/auth/page-actor'
 import type { SearchParams } from '@/lib/http/page-query'
 import { readPageQuery } from '@/lib/http/page-query'
@@ -20,41 +14,21 @@ export const metadata: Metadata = { title: 'Recipes' }
 export default async function RecipesPage({ searchParams }: { searchParams: SearchParams }) {
   const actor = await requirePageActor()
   const { query, raw, faults } = await readPageQuery(recipeListQuerySchema, searchParams)
-  const [page, choices, site] = await Promise.all([
-    listRecipes(actor, query),
-    recipeChoices(actor),
-    currentSite(),
-  ])
-  const href = (changes: Record<string, string | null>) => changeQuery('/recipes', raw, changes)
-  const newRecipe = (
-    <LinkButton kind="main" href="/recipes/new">
-      New recipe
-    </LinkButton>
-  )
+  const page = await listRecipes(actor, query)
+  const { customers, canWrite } = await recipeChoices(actor)
+  const { rules, timeZone } = await currentSite()
   return (
-    <>
-      <PageHead title="Recipes" actions={choices.canWrite ? newRecipe : undefined} />
-      <SearchForm
-        action="/recipes"
-        values={raw}
-        hint="Name, customer, intent"
-        selects={filterSelects(choices.customers, actor.role)}
-      />
-      {faults.length === 0 ? null : <Notice className="mb-3">{faults.join(' ')}</Notice>}
-      <RecipeTable
-        recipes={page.items}
-        rules={site.rules}
-        unit={actor.temperatureUnit}
-        zone={site.timeZone}
-        sort={readSort(query.sort, { key: 'name', direction: 'asc' })}
-        sortHref={(sort) => href({ sort: writeSort(sort) })}
-        isFiltered={Object.keys(raw).some((key) => key !== 'sort')}
-        canWrite={choices.canWrite}
-      />
-      <Pager
-        firstHref={query.cursor === undefined ? undefined : href({ cursor: null })}
-        nextHref={page.nextCursor === null ? undefined : href({ cursor: page.nextCursor })}
-      />
-    </>
+    <RecipeList
+      recipes={page.items}
+      nextCursor={page.nextCursor}
+      query={raw}
+      sort={query.sort}
+      faults={faults}
+      selects={filterSelects(customers, actor.role)}
+      rules={rules}
+      unit={actor.temperatureUnit}
+      zone={timeZone}
+      canWrite={canWrite}
+    />
   )
 }
