@@ -1,5 +1,6 @@
 import type { Socket } from 'socket.io-client'
 import { io } from 'socket.io-client'
+import { keepConnected } from '@/components/live/keep-connected'
 
 type Shared = { socket: Socket; users: number }
 let shared: Shared | null = null
@@ -16,6 +17,7 @@ export function takeLiveSocket(): { socket: Socket; release: () => void } {
     users: 0,
   }
   const taken = shared
+  if (taken.users === 0) keepConnected(taken.socket)
   taken.users += 1
   let isHeld = true
   return {

@@ -11,7 +11,7 @@ import { log } from '@/lib/log'
 const recheckMs = 2_500
 
 export type Gateways = {
-  /** Refuses new messages, lets those under way finish, then closes. */
+  /** Takes no more messages and lets those under way finish; a gateway hears nothing and sends again. */
   stop: () => Promise<void>
 }
 
@@ -44,7 +44,6 @@ export function attachGateways(io: Server): Gateways {
       isStopping = true
       stopRechecking()
       await Promise.all(underWay)
-      gateways.disconnectSockets(true)
     },
   }
 }

@@ -1,4 +1,4 @@
-import type { Namespace, Server, Socket } from 'socket.io'
+import type { Server, Socket } from 'socket.io'
 import type * as z from 'zod'
 import type { PersonActor } from '@/lib/auth/actor'
 import { requirePermission } from '@/lib/auth/permissions'
@@ -33,20 +33,24 @@ export function liveOutput(io: Server): HubOutput {
 export function attachLive(io: Server, hub: Hub): () => void {
   const live = io.of('/live')
   const viewers = new Map<Socket, Viewer>()
+  // A socket that goes before it is connected leaves nothing behind.
+  const admitted = new WeakMap<Socket, PersonActor>()
   live.use((socket, next) => {
     admit(socket).then(
       (actor) => {
-        viewers.set(socket, { actor })
+        admitted.set(socket, actor)
         next()
       },
       (error: unknown) => next(refusal(error)),
     )
   })
   live.on('connection', (socket) => {
+    const actor = admitted.get(socket)
+    if (actor !== undefined) viewers.set(socket, { actor })
     socket.on('disconnect', () => viewers.delete(socket))
     serve(socket, viewers, hub)
   })
-  return startRechecking(live, viewers)
+  return startRechecking(viewers)
 }
 
 /** @throws AppError 'not allowed' for another site's page or a role that may not follow, 'not signed in' */
@@ -120,7 +124,7 @@ function untouched<T>(input: unknown): T {
 }
 
 /** Reads every session again; one that has ended, changed its role or lost the permission loses its sockets. */
-function startRechecking(live: Namespace, viewers: Map<Socket, Viewer>): () => void {
+function startRechecking(viewers: Map<Socket, Viewer>): () => void {
   let isRunning = false
   const recheck = async () => {
     const bySession = new Map<string, [Socket, Viewer][]>()
@@ -154,8 +158,5 @@ function startRechecking(live: Namespace, viewers: Map<Socket, Viewer>): () => v
       .finally(() => (isRunning = false))
   }, recheckMs)
   timer.unref()
-  return () => {
-    clearInterval(timer)
-    live.disconnectSockets(true)
-  }
+  return () => clearInterval(timer)
 }

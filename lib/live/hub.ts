@@ -55,13 +55,18 @@ type Held = {
   endedAtMs: number | null
 }
 
+export type HubOptions = {
+  /** False: it ticks and looks in the database only when told to; for tests. */
+  isSelfWound?: boolean
+}
+
 /** The live hub: one a process. It holds every live firing and tells viewers what it computes. */
-export function createHub(output: HubOutput): Hub {
+export function createHub(output: HubOutput, { isSelfWound = true }: HubOptions = {}): Hub {
   const held = new Map<string, Held>()
   /** Being read from the database: they take rows already, but nobody is told of them yet. */
   const loading = new Map<string, Held>()
   const waiting = new Map<string, string[]>()
-  let timers: NodeJS.Timeout[] = []
+  const timers: NodeJS.Timeout[] = []
   let underWay: Promise<void> = Promise.resolve()
   let isStopped = false
 
@@ -248,7 +253,7 @@ export function createHub(output: HubOutput): Hub {
         void workThroughNotices()
       },
     }
-    timers = [setInterval(tick, tickMs)]
+    if (isSelfWound) timers.push(setInterval(tick, tickMs))
     for (;;) {
       if (isStopped) return
       try {
@@ -259,6 +264,7 @@ export function createHub(output: HubOutput): Hub {
         await new Promise((resolve) => setTimeout(resolve, retryMs).unref())
       }
     }
+    if (!isSelfWound) return
     timers.push(
       setInterval(() => {
         reconcile().catch((error: unknown) => {

@@ -10,6 +10,7 @@ import { startRetention } from '@/lib/ingest/retention'
 import { startSealingLoop } from '@/lib/ingest/sealing-loop'
 import { attachLive, liveOutput } from '@/lib/live/attach-live'
 import { createHub } from '@/lib/live/hub'
+import { settleBackground } from '@/lib/mail/in-background'
 
 /** Largest socket message: 5,000 readings are some 0.8 MB. */
 const largestMessageBytes = 2 * 1024 * 1024
@@ -48,7 +49,9 @@ export function startServerWork(httpServer: HttpServer): ServerWork {
       await sealing.stop()
       stopLive()
       hub.stop()
+      // Without a word of farewell, so that clients take it for a loss and come back by themselves.
       await io.close()
+      await settleBackground()
       await Promise.all([closeIngestPool(), closeOrm()])
     },
   }
