@@ -40,7 +40,7 @@ export function FiringFilters({
         type="search"
         placeholder="Barrel, batch, lot, recipe"
         defaultValue={values['q']}
-        className="w-56"
+        className="w-44"
       />
       <SelectField name="state" label="State" options={states} defaultValue={values['state'] ?? 'fired'} />
       <SelectField

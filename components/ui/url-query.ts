@@ -21,6 +21,11 @@ export function changeQuery(
   return text === '' ? pathname : `${pathname}?${text}`
 }
 
+/** The address of the next page of a list, or undefined on the last one. */
+export function nextPageHref(pathname: string, query: Query, nextCursor: string | null): string | undefined {
+  return nextCursor === null ? undefined : changeQuery(pathname, query, { cursor: nextCursor })
+}
+
 export type Sort = { key: string; direction: 'asc' | 'desc' }
 
 /** "name" sorts upwards, "-name" downwards, as the URL has it. */

@@ -2,7 +2,7 @@ import type { Actor } from '@/lib/auth/actor'
 import { isAllowed, requirePermission } from '@/lib/auth/permissions'
 import type { PieceDto } from '@/lib/batches/schema'
 import type { PieceRow } from '@/lib/batches/to-piece'
-import { pieceSelect, toPiece } from '@/lib/batches/to-piece'
+import { pieceSelect, toCustomerPiece, toPiece } from '@/lib/batches/to-piece'
 import { forkEm, queryRows } from '@/lib/db/orm'
 import { AppError } from '@/lib/errors'
 
@@ -14,5 +14,5 @@ export async function getPiece(actor: Actor, input: { id: string }): Promise<Pie
   if (row === undefined || !(isAllowed(actor, 'batches:read all') || isTheirs)) {
     throw new AppError('not found', 'There is no such barrel.')
   }
-  return toPiece(row)
+  return isAllowed(actor, 'batches:read all') ? toPiece(row) : toCustomerPiece(row)
 }

@@ -3,7 +3,7 @@ import type { Actor } from '@/lib/auth/actor'
 import { isAllowed, requirePermission } from '@/lib/auth/permissions'
 import type { listPiecesQuery, PieceDto } from '@/lib/batches/schema'
 import type { PieceRow } from '@/lib/batches/to-piece'
-import { pieceSelect, toPiece } from '@/lib/batches/to-piece'
+import { pieceSelect, toCustomerPiece, toPiece } from '@/lib/batches/to-piece'
 import { forkEm, queryRows } from '@/lib/db/orm'
 import { sqlFilters } from '@/lib/db/sql-filters'
 import type { Page } from '@/lib/http/cursor'
@@ -40,5 +40,6 @@ export async function listPieces(
     `${pieceSelect} ${filters.where()} order by ${order} limit ?`,
     [...filters.parameters, query.limit + 1],
   )
-  return toPage(rows, query.limit, toPiece, (row) => [row.queue_position, row.id])
+  const toItem = isAllowed(actor, 'batches:read all') ? toPiece : toCustomerPiece
+  return toPage(rows, query.limit, toItem, (row) => [row.queue_position, row.id])
 }

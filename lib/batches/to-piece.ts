@@ -40,6 +40,18 @@ export type PieceRow = {
   dose_high_minutes: number | null
 }
 
+/** A piece as its customer sees it: how far it is, and nothing of the room's judgement before it is certified. */
+export function toCustomerPiece(row: PieceRow): PieceDto {
+  return toPiece({
+    ...row,
+    verdict: null,
+    points: null,
+    dose_minutes: null,
+    dose_low_minutes: null,
+    dose_high_minutes: null,
+  })
+}
+
 export function toPiece(row: PieceRow): PieceDto {
   return {
     id: row.id,

@@ -3,7 +3,7 @@ import { PieceTable } from '@/components/batches/piece-table'
 import { PageHead } from '@/components/ui/page-head'
 import { Pager } from '@/components/ui/pager'
 import { SearchForm } from '@/components/ui/search-form'
-import { changeQuery } from '@/components/ui/url-query'
+import { nextPageHref } from '@/components/ui/url-query'
 import { requirePageActor } from '@/lib/auth/page-actor'
 import { listPieces } from '@/lib/batches/list-pieces'
 import { listPiecesQuery } from '@/lib/batches/schema'
@@ -22,6 +22,7 @@ export default async function BarrelsPage({ searchParams }: { searchParams: Sear
   const actor = await requirePageActor()
   const { query, raw } = await readPageQuery(listPiecesQuery, searchParams)
   const page = await listPieces(actor, query)
+  const nextHref = nextPageHref('/barrels', raw, page.nextCursor)
   return (
     <>
       <PageHead title="Barrels" />

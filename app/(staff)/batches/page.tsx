@@ -4,7 +4,7 @@ import { NewBatch } from '@/components/batches/new-batch'
 import { PageHead } from '@/components/ui/page-head'
 import { Pager } from '@/components/ui/pager'
 import { SearchForm } from '@/components/ui/search-form'
-import { changeQuery } from '@/components/ui/url-query'
+import { nextPageHref } from '@/components/ui/url-query'
 import { requirePageActor } from '@/lib/auth/page-actor'
 import { batchChoices } from '@/lib/batches/batch-choices'
 import { listBatches } from '@/lib/batches/list-batches'
@@ -18,13 +18,12 @@ export default async function BatchesPage({ searchParams }: { searchParams: Sear
   const actor = await requirePageActor()
   const { query, raw } = await readPageQuery(listBatchesQuery, searchParams)
   const [page, choices] = await Promise.all([listBatches(actor, query), batchChoices(actor)])
-  const href = (cursor: string) => changeQuery('/batches', raw, { cursor })
   return (
     <>
       <PageHead title="Batches" actions={choices === null ? undefined : <NewBatch {...choices} />} />
       <SearchForm action="/batches" values={raw} hint="Number, customer, recipe, lot" />
       <BatchTable batches={page.items} />
-      <Pager nextHref={page.nextCursor === null ? undefined : href(page.nextCursor)} />
+      <Pager nextHref={nextPageHref('/batches', raw, page.nextCursor)} />
     </>
   )
 }
