@@ -33,11 +33,7 @@ export default async function BarrelsPage({ searchParams }: { searchParams: Sear
         selects={[{ name: 'show', label: 'Show', options: shows, fallback: 'all' }]}
       />
       <PieceTable pieces={page.items} unit={actor.temperatureUnit} />
-      <Pager
-        nextHref={
-          page.nextCursor === null ? undefined : changeQuery('/barrels', raw, { cursor: page.nextCursor })
-        }
-      />
+      <Pager nextHref={nextHref} />
     </>
   )
 }
