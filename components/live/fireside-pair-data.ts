@@ -7,7 +7,13 @@ import type { PointFeed } from './point-feed'
 
 export type PairReading = { timeS: number; leadC?: number | null; secondC?: number | null }
 
-/** A feed's points from `from` on as the picture takes them, in seconds from the toast start. */
+/** A silence longer than this is drawn as a gap: what is unknown is never a line. */
+const SILENCE_S = 5
+
+/**
+ * A feed's points from `from` on as the picture takes them, in seconds from the toast start. Just behind the last
+ * point before a silence stands a point without reading, which breaks the line.
+ */
 export function toPairReadings(
   feed: Pick<PointFeed, 'length' | 'atMs' | 'tempC'>,
   from: number,
@@ -17,11 +23,15 @@ export function toPairReadings(
   const atMs = feed.atMs()
   const temps = feed.tempC()
   const readings: PairReading[] = []
+  const add = (timeS: number, tempC: number | null) => {
+    if (timeS >= 0) readings.push(role === 'lead' ? { timeS, leadC: tempC } : { timeS, secondC: tempC })
+  }
   for (let i = from; i < feed.length; i += 1) {
     const timeS = ((atMs[i] ?? 0) - toastMs) / 1000
+    const beforeS = i === 0 ? timeS : ((atMs[i - 1] ?? 0) - toastMs) / 1000
+    if (timeS - beforeS > SILENCE_S) add(beforeS + 0.001, null)
     const temp = temps[i] ?? NaN
-    const tempC = Number.isNaN(temp) ? null : temp
-    if (timeS >= 0) readings.push(role === 'lead' ? { timeS, leadC: tempC } : { timeS, secondC: tempC })
+    add(timeS, Number.isNaN(temp) ? null : temp)
   }
   return readings
 }
