@@ -19,7 +19,7 @@ export function BeforeToast({ facts, unit }: { facts: FiresideFacts; unit: Tempe
           <div key={term}>
             <dt className={classNames(firesideType.label.className, 'text-soft')}>{term}</dt>
             <dd className={classNames('text-[34px] leading-[1.15] font-[640]', isOff && 'text-amber')}>
-              {value} <span className="text-[22px] font-normal text-soft">{more}</span>
+              {value} <span className="text-[20px] font-normal text-soft">{more}</span>
             </dd>
           </div>
         ))}

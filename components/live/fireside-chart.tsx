@@ -20,11 +20,14 @@ export function FiresideChart({
   facts,
   live,
   stagePosition,
+  cutNowMs,
   unit,
 }: {
   facts: FiresideFacts
   live: LiveFiring
   stagePosition: number | null
+  /** Set while the server is not heard: the moment goes on, without a head and without a future. */
+  cutNowMs: number | null
   unit: TemperatureUnit
 }) {
   const pair = useRef<PairHandle>(null)
@@ -69,6 +72,11 @@ export function FiresideChart({
     pair.current?.setNow(state.toastS)
     pair.current?.setFuture(toFuture(state, content.limits.woodMaximumC))
   }, [state, content.limits.woodMaximumC])
+  useEffect(() => {
+    if (cutNowMs === null || toastMs === null) return
+    pair.current?.setNow((cutNowMs - toastMs) / 1000)
+    pair.current?.setFuture(null)
+  }, [cutNowMs, toastMs])
 
   return <Pair {...props} ref={pair} className="h-full" />
 }

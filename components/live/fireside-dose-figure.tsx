@@ -52,8 +52,10 @@ function doseLabel(dose: FiringState['dose'] | null): string {
   return `Dose, good to ±${formatNumber(Math.ceil(dose.goodToPercent))}\u00a0%`
 }
 
-/** Leaves room for 100 % beside the plan's 100 %. */
+/** Narrower beside three figures. */
 const GAUGE_PX = 116
+const GAUGE_NARROW_PX = 76
+const THREE_FIGURES_FROM = 0.995
 
 function Gauge({ dose, toleranceLog10 }: Pick<DoseFigureProps, 'dose' | 'toleranceLog10'>) {
   if (dose === null) return <StaveGauge fraction={null} toleranceLog10={toleranceLog10} width={GAUGE_PX} />
@@ -65,7 +67,7 @@ function Gauge({ dose, toleranceLog10 }: Pick<DoseFigureProps, 'dose' | 'toleran
       range={{ low: fraction / factor, high: fraction * factor }}
       planFraction={dose.planMinutesNow / dose.targetMinutes}
       toleranceLog10={toleranceLog10}
-      width={GAUGE_PX}
+      width={fraction < THREE_FIGURES_FROM ? GAUGE_PX : GAUGE_NARROW_PX}
     />
   )
 }

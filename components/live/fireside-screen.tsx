@@ -37,7 +37,7 @@ export function FiresideScreen({
           aria-label="The firing"
           className="relative grid min-h-0 grid-rows-[auto_minmax(0,1fr)_auto]"
         >
-          <div className="grid grid-cols-[404px_minmax(0,1fr)] border-b border-line">{figures}</div>
+          <div className="grid grid-cols-[428px_minmax(0,1fr)] border-b border-line">{figures}</div>
           <div className="relative min-h-0 pt-2 pr-3 pb-1 pl-2">{picture}</div>
           {strip === null ? null : (
             <p className={classNames(firesideType.text.className, 'border-t border-line px-6 py-2')}>

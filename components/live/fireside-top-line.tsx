@@ -30,7 +30,7 @@ export function TopLine({ headline, instruction, age, level, isSeen, onSeen }: T
     <div
       role="alert"
       className={classNames(
-        'flex min-h-[104px] items-center gap-4 px-6 py-1 text-on-alarm',
+        'flex min-h-[104px] items-center gap-4 px-6 pt-1 pb-[10px] text-on-alarm',
         level === 'red' ? 'bg-alarm-red' : 'bg-alarm-amber',
         isSeen ? '' : 'alarm-unseen',
       )}
@@ -38,7 +38,7 @@ export function TopLine({ headline, instruction, age, level, isSeen, onSeen }: T
       <div className="min-w-0 flex-1">
         <p className={classNames(firesideType.action.className, '-tracking-[0.015em]')}>{headline}</p>
         {instruction === '' && level === 'amber' ? null : (
-          <p className="mt-1 text-[28px] leading-[1.05]">
+          <p className="mt-1 line-clamp-2 text-[28px] leading-[1.05]">
             {level === 'red' ? (
               <span className="mr-3 border-2 border-current px-2 font-[640]">NOW</span>
             ) : null}

@@ -140,6 +140,7 @@ function Picture({ facts, live, nowMs, unit }: Pick<FiresideViewProps, 'facts' |
       facts={facts}
       live={live}
       stagePosition={stagePosition}
+      cutNowMs={isCut(live.state, nowMs) ? nowMs : null}
       unit={unit}
     />
   )

@@ -54,8 +54,10 @@ export function RoomStartPieces({
             />
             <span className="min-w-0 text-[22px] leading-[1.2]">
               <span className="block font-[640]">
-                {piece.serial} <span className="font-normal">{piece.recipe.name}</span>, version{' '}
-                {piece.recipe.versionNumber}
+                {piece.serial}{' '}
+                <span className="font-normal">
+                  {piece.recipe.name}, version {piece.recipe.versionNumber}
+                </span>
               </span>
               <span className="block truncate text-[18px] text-soft">
                 Batch {piece.batch.number}, {piece.position} of {piece.batch.pieceCount};{' '}
