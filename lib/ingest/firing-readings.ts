@@ -35,14 +35,18 @@ export type WantedReadings = { roles?: readonly ProbeRole[]; fromMs?: number }
 
 export type FiringReadings = { sealRevision: number | null; series: FiringSeries[] }
 
+const allRoles: readonly ProbeRole[] = ['lead', 'opposite', 'coals']
+
 /** A firing's readings as they are stored: from its newest seal, or from the table while there is none. */
 export async function rawFiringReadings(
   em: EntityManager,
   firingId: string,
   sealRevision?: number,
+  roles: readonly ProbeRole[] = allRoles,
 ): Promise<RawFiringReadings> {
-  const assignments = await readFiringProbes(em, firingId)
-  const sealed = await readSealed(em, firingId, sealRevision)
+  const assignments = (await readFiringProbes(em, firingId)).filter((one) => roles.includes(one.role))
+  const probeIds = roles === allRoles ? undefined : assignments.map((one) => one.probeId)
+  const sealed = await readSealed(em, firingId, sealRevision, probeIds)
   const probes: RawProbeReadings[] = []
   for (const assignment of assignments) {
     const columns =
@@ -65,8 +69,8 @@ export async function firingReadings(
   sealRevision?: number,
   wanted: WantedReadings = {},
 ): Promise<FiringReadings> {
-  const raw = await rawFiringReadings(em, firingId, sealRevision)
-  const roles: readonly ProbeRole[] = wanted.roles ?? ['lead', 'opposite', 'coals']
+  const roles = wanted.roles ?? allRoles
+  const raw = await rawFiringReadings(em, firingId, sealRevision, roles)
   const series = roles.flatMap((role) => {
     const parts = raw.probes.filter((probe) => probe.assignment.role === role)
     return parts.length === 0 ? [] : [joinParts(role, parts, wanted.fromMs ?? -Infinity)]
@@ -76,8 +80,10 @@ export async function firingReadings(
 
 /** A role's curve on the firing's own time axis, s from the toast start. */
 export function toReadingSeries(series: FiringSeries, toastAtMs: number): ReadingSeries {
+  const timeS = new Float64Array(series.atMs.length)
+  for (let i = 0; i < timeS.length; i += 1) timeS[i] = ((series.atMs[i] ?? NaN) - toastAtMs) / 1000
   return {
-    timeS: Float64Array.from(series.atMs, (atMs) => (atMs - toastAtMs) / 1000),
+    timeS,
     tempC: series.tempC,
     spacingS: series.spacingS,
   }
@@ -122,6 +128,9 @@ function convertRow(assignment: ProbeAssignment, columns: ReadingColumns, i: num
 }
 
 function clip(columns: ReadingColumns, period: { fromMs: number; untilMs: number }): ReadingColumns {
+  const first = columns.atMs[0] ?? period.fromMs
+  // A probe that was not swapped read the whole period: nothing to copy.
+  if (first >= period.fromMs && (columns.atMs.at(-1) ?? first) < period.untilMs) return columns
   const clipped = emptyColumns()
   columns.atMs.forEach((atMs, i) => {
     if (atMs >= period.fromMs && atMs < period.untilMs) appendRow(clipped, columns, i)

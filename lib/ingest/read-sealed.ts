@@ -18,7 +18,7 @@ type SealRow = {
 }
 
 /**
- * Reads a firing's newest seal, or the one of a revision; null when there is none.
+ * Reads a firing's newest seal, or the one of a revision, whole or some of its probes; null when there is none.
  *
  * @throws Error when the bytes do not fit their checksum, or were written by an encoding that is not known
  */
@@ -26,12 +26,14 @@ export async function readSealed(
   em: EntityManager,
   firingId: string,
   revision?: number,
+  probeIds?: readonly string[],
 ): Promise<Sealed | null> {
   const rows = await queryRows<SealRow>(
     em,
     `select probe_id, revision, encoding, reading_count, data, sha256, sealed_at from seals
-      where firing_id = ? and revision = coalesce(?::integer, (select max(revision) from seals where firing_id = ?))`,
-    [firingId, revision ?? null, firingId],
+      where firing_id = ? and revision = coalesce(?::integer, (select max(revision) from seals where firing_id = ?))
+        ${probeIds === undefined ? '' : 'and probe_id = any(?::uuid[])'}`,
+    [firingId, revision ?? null, firingId, ...(probeIds === undefined ? [] : [`{${probeIds.join(',')}}`])],
   )
   const [first] = rows
   if (first === undefined) return null
