@@ -93,7 +93,11 @@ export function followFiring(options: Options): FollowedFiring | null {
     for (const mark of marks) errands.push(...errandsOf(mark, new Date(Math.round(atMs)), seenMarkIds))
     return readings
   }
-  while (options.nowMs - atMs > 1_000) advance(1)
+  // What the probes would have said since the last stored reading: sent late, as from a gateway's spool.
+  let backlog: HearthReading[] = []
+  while (options.nowMs - atMs > 1_000) {
+    backlog.push(...advance(1).map((reading) => ({ ...reading, timeS: atMs / 1_000 })))
+  }
 
   const runErrands = async () => {
     for (let errand = errands[0]; errand !== undefined; errand = errands[0]) {
@@ -114,7 +118,9 @@ export function followFiring(options: Options): FollowedFiring | null {
     advanceTo: (nowMs) => {
       const dtS = (nowMs - atMs) / 1_000
       if (dtS <= 0) return []
-      return advance(dtS).map((reading) => ({ ...reading, timeS: nowMs / 1_000 }))
+      const late = backlog
+      backlog = []
+      return [...late, ...advance(dtS).map((reading) => ({ ...reading, timeS: nowMs / 1_000 }))]
     },
     synchronise: async () => {
       if (isRunningErrands) return

@@ -28,6 +28,8 @@ type Place = {
   number: number
   thermocoupleTypes: Partial<Record<HearthProbe, ThermocoupleType>>
   firing: FollowedFiring | null
+  /** False until the server was asked: a hearth that may stand under a fire is never read as if it were cold. */
+  isKnown: boolean
   idle: IdleHearth
   idleReadMs: number
   freeSinceMs: number
@@ -83,9 +85,9 @@ export function createRoom(options: Options): Room {
   const settle = async (place: Place, hearth: ViewedHearth | undefined, nowMs: number) => {
     const liveId = hearth?.live?.firingId ?? null
     if (place.firing !== null && place.firing.firingId !== liveId) release(place, nowMs)
-    if (liveId === null) return
-    if (place.firing === null) await attach(place, liveId, nowMs)
-    else await place.firing.synchronise()
+    if (liveId !== null && place.firing === null) await attach(place, liveId, nowMs)
+    else await place.firing?.synchronise()
+    place.isKnown = true
   }
   const startNext = async (place: Place, hearthId: string, nowMs: number) => {
     // Whatever comes of it, the next try is a pause away.
@@ -107,6 +109,7 @@ export function createRoom(options: Options): Room {
     tick: (nowMs) => {
       const readings = new Map<number, HearthReading[]>()
       for (const place of places.values()) {
+        if (!place.isKnown) continue
         const due = place.firing === null ? readIdle(place, nowMs) : place.firing.advanceTo(nowMs)
         if (due.length > 0) readings.set(place.number, due)
       }
@@ -137,6 +140,7 @@ function placesOf(gateways: readonly DemoGateway[]): Place[] {
         number,
         thermocoupleTypes,
         firing: null,
+        isKnown: false,
         idle: createIdleHearth({ seed: number, thermocoupleTypes }),
         idleReadMs: 0,
         freeSinceMs: 0,

@@ -359,4 +359,23 @@ describe('simulated room', () => {
     expect(temps.length).toBeLessThanOrEqual(62)
     expect(server.calls).toEqual([])
   })
+
+  // Once it read a hearth as cold until the server had been asked, and went on from those readings.
+  it('says nothing of a hearth before the server was asked what stands there', async () => {
+    const stored = storedFiring(15, [{ stagePosition: 1, atMin: 12 }])
+    const server = fakeServer(stored)
+    const room = createRoom({ view: server.view, own: ownership(true), gateways: [gateway], say: () => {} })
+    const nowMs = START_MS + 15 * 60_000 + 30_000
+    for (let tick = 0; tick < 20; tick += 1) expect(room.tick(nowMs + tick * 200).size).toBe(0)
+    await room.look(nowMs + 4_000)
+    const readings = room.tick(nowMs + 4_200).get(1) ?? []
+    const leads = readings.filter((reading) => reading.probe === 'lead')
+    // The half minute in which nobody asked comes late, a reading a second, as from a gateway's spool.
+    expect(leads.length).toBeGreaterThanOrEqual(32)
+    expect(leads[0]?.timeS).toBeLessThan(START_MS / 1_000 + 15 * 60 + 5)
+    for (const lead of leads) {
+      const tempC = compensatedTempC('K', lead.emf.microvolts / 1_000, lead.emf.coldJunctionC)
+      expect(Math.abs(tempC - stored.lastTempC)).toBeLessThan(12)
+    }
+  })
 })
