@@ -72,10 +72,10 @@ function factsOf(facts: FiresideFacts, unit: TemperatureUnit): Fact[] {
     const pull = pullOf(facts)
     list.push({
       term: 'Pull',
-      value: pull === null ? `at least ${bend.minimumMinutes} min` : `${formatNumber(pull.minutes, 1)} min`,
+      value: pull === null ? `${bend.minimumMinutes} min` : `${formatNumber(pull.minutes, 1)} min`,
       more:
         pull === null
-          ? `wood below ${formatTempBare(bend.woodLimitC, unit)}`
+          ? `at least, wood below ${formatTempBare(bend.woodLimitC, unit)}`
           : pullWords(pull.isShort, bend.minimumMinutes),
       isOff: pull?.isShort ?? false,
     })

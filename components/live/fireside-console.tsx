@@ -47,9 +47,12 @@ export function FiresideConsole(props: FiresideConsoleProps) {
   const refresh = useCallback(() => void mutate(), [mutate])
   const [clock] = useState(() => createServerClock(props.serverNowMs))
   const live = useFiresideLive(firing.id, clock, refresh)
-  const { sender, queue } = useMarkSender(firing.id, refresh)
+  const { sender, queue, taken } = useMarkSender(firing.id, refresh)
   const nowMs = useServerTime(clock, props.serverNowMs)
-  const facts = useMemo(() => firesideFacts(firing, queue, props.rules), [firing, queue, props.rules])
+  const facts = useMemo(
+    () => firesideFacts(firing, queue, props.rules, taken),
+    [firing, queue, taken, props.rules],
+  )
   if (facts === null || facts.state === 'finished' || facts.state === 'abandoned') {
     return <FiresideEnded firing={firing} zone={props.zone} />
   }
@@ -63,6 +66,7 @@ export function FiresideConsole(props: FiresideConsoleProps) {
       readNowMs={clock.nowMs}
       sender={sender}
       queue={queue}
+      taken={taken}
       onChanged={refresh}
     />
   )

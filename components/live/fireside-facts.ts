@@ -18,9 +18,18 @@ export type ShownMark = {
 export type FiresideFacts = FiringFacts & { shownMarks: ShownMark[] }
 
 /** Null for a firing that has not started: it has no recipe copy. */
-export function firesideFacts(firing: FiringDto, queue: MarkQueue, rules: SiteRules): FiresideFacts | null {
+export function firesideFacts(
+  firing: FiringDto,
+  queue: MarkQueue,
+  rules: SiteRules,
+  /** Taken by the server after this firing was fetched. */
+  taken: readonly MarkDraft[] = [],
+): FiresideFacts | null {
   if (firing.recipeCopy === null || firing.preheatAt === null) return null
-  const waiting = queue.filter((queued) => queued.refusal === null).map((queued) => queued.mark)
+  const waiting = [
+    ...taken.filter((mark) => !queue.some((queued) => queued.mark.id === mark.id)),
+    ...queue.filter((queued) => queued.refusal === null).map((queued) => queued.mark),
+  ]
   const shownMarks = layMarks(firing, waiting)
   const phase = latestPhase(firing, waiting)
   const { content, recipeName } = firing.recipeCopy

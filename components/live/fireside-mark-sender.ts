@@ -16,6 +16,8 @@ export type MarkStorage = Pick<Storage, 'getItem' | 'setItem' | 'removeItem'>
 
 export type MarkSender = {
   read: () => MarkQueue
+  /** The last that the server took, as one list with the queue: shown until the firing is fetched with them. */
+  readTaken: () => readonly MarkDraft[]
   subscribe: (onChange: () => void) => () => void
   add: (mark: MarkDraft) => void
   undo: (id: string, undoing: { id: string; at: string }) => void
@@ -26,6 +28,9 @@ export type MarkSender = {
   /** Another tab of this browser wrote the queue. */
   reread: () => void
 }
+
+/** More than a toaster marks between two fetches. */
+const TAKEN_KEPT = 40
 
 /**
  * Keeps the queue in the browser and sends it. The kept list is read before every step, so that two tabs on one
@@ -42,6 +47,7 @@ export function createMarkSender(options: {
   let queue: MarkQueue = readKept(storage, key) ?? []
   let underWay: Promise<void> | null = null
   let isKept = true
+  let taken: readonly MarkDraft[] = []
 
   const change = (step: (from: MarkQueue) => MarkQueue) => {
     const from = isKept ? (readKept(storage, key) ?? queue) : queue
@@ -55,6 +61,8 @@ export function createMarkSender(options: {
       const { mark } = next
       change((from) => noteTry(from, mark.id))
       const result = await send(mark)
+      // Before the queue lets go of it, so that it is always in one of the two.
+      if (result.kind === 'taken') taken = [...taken.slice(1 - TAKEN_KEPT), mark]
       change((from) => noteResult(from, mark.id, result))
       if (result.kind === 'unanswered') return
       if (result.kind === 'taken') options.onTaken?.(mark)
@@ -70,6 +78,7 @@ export function createMarkSender(options: {
 
   return {
     read: () => queue,
+    readTaken: () => taken,
     subscribe: (onChange) => {
       listeners.add(onChange)
       return () => listeners.delete(onChange)

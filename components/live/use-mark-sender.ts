@@ -14,7 +14,7 @@ const empty: MarkQueue = []
 export function useMarkSender(
   firingId: string,
   onTaken: () => void,
-): { sender: MarkSender; queue: MarkQueue } {
+): { sender: MarkSender; queue: MarkQueue; taken: readonly MarkDraft[] } {
   const [sender] = useState(() =>
     createMarkSender({
       key: markKey(firingId),
@@ -39,7 +39,7 @@ export function useMarkSender(
       window.removeEventListener('storage', reread)
     }
   }, [sender, firingId])
-  return { sender, queue }
+  return { sender, queue, taken: sender.readTaken() }
 }
 
 function markKey(firingId: string): string {

@@ -93,6 +93,7 @@ describe('marks on their way', () => {
     await later.flush()
     expect(sent).toEqual(['mark-1', 'mark-2'])
     expect(later.read()).toEqual([])
+    expect(later.readTaken().map((mark) => mark.id)).toEqual(['mark-1', 'mark-2'])
   })
 
   test('where the browser keeps nothing, memory does until the page goes', async () => {

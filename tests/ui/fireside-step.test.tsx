@@ -151,6 +151,17 @@ describe('what waits in this browser', () => {
     expect(stepClock(facts, PREHEAT + 13 * MINUTE)).toEqual({ words: 'Bend, at least', seconds: 540 })
   })
 
+  test('what the server took stays on the screen until the firing is fetched with it', () => {
+    const bend: MarkDraft = { id: 'q', kind: 'phase', phase: 'bending', at: iso(PREHEAT + 12 * MINUTE) }
+    const between = firesideFacts(firing(), [], defaultSiteRules, [bend])
+    expect(between?.state).toBe('bending')
+    const feed: MarkDraft = { id: 'a', kind: 'feed', at: iso(PREHEAT) }
+    const after = firesideFacts(firing({ marks: [mark({ id: 'a' })] }), [queued(feed)], defaultSiteRules, [
+      feed,
+    ])
+    expect(after?.shownMarks.map((one) => one.id)).toEqual(['a'])
+  })
+
   test('a mark shows at once, an undone one goes at once, a moved one moves', () => {
     const marks = [mark({ id: 'a', kind: 'lid on', at: iso(TOAST) })]
     const undone = factsOf({ ...toasting, marks }, [
