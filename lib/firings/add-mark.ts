@@ -1,7 +1,6 @@
 import type { EntityManager } from '@mikro-orm/postgresql'
 import type * as z from 'zod'
 import type { Firing } from '@/entities/firing'
-import { FiringEntity } from '@/entities/firing'
 import type { Mark } from '@/entities/mark'
 import { MarkEntity } from '@/entities/mark'
 import { writeAuditEntry } from '@/lib/audit/write-entry'
