@@ -1,0 +1,36 @@
+import { closeOrm } from '@/lib/db/orm'
+import { closeIngestPool } from '@/lib/ingest/ingest-pool'
+import type { Figure } from '@/tests/bench/figure'
+import { printFigures } from '@/tests/bench/figure'
+import { benchFanOut } from '@/tests/bench/fan-out'
+import { benchIngest } from '@/tests/bench/ingest'
+import { benchLiveStep } from '@/tests/bench/live-step'
+import { createTestDatabase } from '@/tests/support/database'
+import type { TestPeople } from '@/tests/support/people'
+import { createPeople } from '@/tests/support/people'
+
+type Bench = (people: TestPeople) => Promise<Figure[]>
+
+/** In the order in which they run; `npm run bench -- NAME` runs those whose name contains NAME. */
+const benches: Record<string, Bench> = {
+  ingest: () => benchIngest(),
+  'live step': benchLiveStep,
+  'fan-out': benchFanOut,
+}
+
+const [wanted = ''] = process.argv.slice(2)
+const chosen = Object.entries(benches).filter(([name]) => name.includes(wanted))
+const database = await createTestDatabase()
+const figures: Figure[] = []
+try {
+  const people = await createPeople(database)
+  for (const [name, bench] of chosen) {
+    process.stdout.write(`${name} …\n`)
+    figures.push(...(await bench(people)))
+  }
+} finally {
+  await closeIngestPool()
+  await closeOrm()
+  await database.drop()
+}
+process.stdout.write(`\n${printFigures(figures)}\n`)
