@@ -34,7 +34,7 @@ export function DoseFigure(props: DoseFigureProps) {
         <p className={classNames(firesideType.label.className, 'whitespace-nowrap text-soft')}>
           {dose === null ? '' : `plan ${roundPercent(dose.planMinutesNow / dose.targetMinutes)}`}
         </p>
-        <Gauge dose={dose} toleranceLog10={toleranceLog10} width={GAUGE_PX} />
+        <Gauge dose={dose} toleranceLog10={toleranceLog10} />
       </div>
       <p className={classNames(firesideType.text.className, 'mt-2 line-clamp-2')}>
         {forecast === null ? noForecastWords : forecast.sentence}

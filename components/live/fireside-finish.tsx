@@ -49,7 +49,7 @@ export function FiresideFinish({
     onFinish({ colour: orNull(colour), smell: orNull(smell), outsideTempC, remarks: remarks.trim() })
   }
   return (
-    <FiresideSheet title="Finish this firing" onClose={onClose}>
+    <FiresideSheet title="Finish this firing" isWide onClose={onClose}>
       <form onSubmit={finish} noValidate>
         <FormError
           problem={problem}
@@ -67,8 +67,10 @@ export function FiresideFinish({
           </p>
         )}
         <p className="mb-4 text-soft">{cautions.rest}</p>
-        <Suggested name="colour" label="Colour" words={colourWords} value={colour} onValue={setColour} />
-        <Suggested name="smell" label="Smell" words={smellWords} value={smell} onValue={setSmell} />
+        <div className="grid grid-cols-2 gap-6">
+          <Suggested name="colour" label="Colour" words={colourWords} value={colour} onValue={setColour} />
+          <Suggested name="smell" label="Smell" words={smellWords} value={smell} onValue={setSmell} />
+        </div>
         <div className="mt-4 grid grid-cols-[300px_1fr] gap-6">
           <TemperatureField
             name="outsideTempC"
@@ -119,7 +121,7 @@ function Suggested({
   onValue: (value: string) => void
 }) {
   return (
-    <div className="mt-3">
+    <div>
       <TextField
         name={name}
         label={label}

@@ -2,14 +2,18 @@
 
 import { useEffect, useId, useRef } from 'react'
 import type { ReactNode } from 'react'
+import { classNames } from '@/components/ui/class-names'
 
 /** A large dialog for gloves: most of the screen, its own scrolling, closed by Escape or its last button. */
 export function FiresideSheet({
   title,
   onClose,
+  isWide = false,
   children,
 }: {
   title: string
+  /** Two columns of fields: nearly the whole width, so that nothing scrolls. */
+  isWide?: boolean
   onClose: () => void
   children: ReactNode
 }) {
@@ -29,7 +33,10 @@ export function FiresideSheet({
     <dialog
       ref={dialog}
       aria-labelledby={titleId}
-      className="m-auto max-h-[96dvh] w-[min(880px,calc(100vw-32px))] overflow-y-auto rounded-control border border-line bg-raised p-6 text-text shadow-float"
+      className={classNames(
+        'm-auto max-h-[98dvh] overflow-y-auto rounded-control border border-line bg-raised p-6 text-text shadow-float',
+        isWide ? 'w-[min(1220px,calc(100vw-32px))]' : 'w-[min(880px,calc(100vw-32px))]',
+      )}
       onCancel={(event) => {
         event.preventDefault()
         onClose()
