@@ -196,13 +196,18 @@ function doseGaps(facts: FiringFacts, curve: RoleCurve, doseMin: number, atMs: n
   const series = { timeS, tempC: read.tempC, spacingS: recordSpacingS(read.atMs) }
   const filled = fillGaps(series, { fromS: 0, toS }, rules.gaps)
   if (filled === null) return { ...none, isIncomplete: toS > rules.gaps.widenUpToS }
+  // While the toast goes on, the share of missing time is taken of the whole plan: seconds into it every gap is a lot.
+  const wholeS = restMs === null ? Math.max(toS, plan.totalS) : toS
+  const isIncomplete =
+    filled.gaps.some((gap) => gap.treatment === 'incomplete') ||
+    filled.missingShare * toS > rules.gaps.incompleteAboveShare * wholeS
   if (filled.gaps.every((gap) => gap.treatment === 'interpolated') || doseMin <= 0) {
-    return { ...none, isIncomplete: filled.isIncomplete }
+    return { ...none, isIncomplete }
   }
   const lastC = plan.points.at(-1)?.tempC ?? 0
   const extremes = gapExtremes(filled, rules.dose, (at) => planTempCAt(plan.points, at) ?? lastC)
   const lowMin = Math.max(doseMin - extremes.joinedMin + extremes.lowMin, doseMin * 1e-3)
   const highMin = doseMin - extremes.joinedMin + extremes.highMin
   const gapHalf = Math.max(Math.log10(doseMin / lowMin), Math.log10(highMin / doseMin), 0)
-  return { atMs, log10Half: Math.hypot(assumed, gapHalf), isIncomplete: filled.isIncomplete }
+  return { atMs, log10Half: Math.hypot(assumed, gapHalf), isIncomplete }
 }

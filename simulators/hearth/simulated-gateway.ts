@@ -14,7 +14,7 @@ import type { HearthReading } from './hearth'
 
 export type SimulatedGateway = {
   demo: DemoGateway
-  /** Takes the readings of one instant, by hearth; stamps them with the gateway's own clock. */
+  /** Takes readings by hearth, each at its own instant (`timeS`, s since 1970), told by the gateway's own clock. */
   record: (readingsByHearth: ReadonlyMap<number, readonly HearthReading[]>) => void
   /** As after a loss of power: a new boot id, what was not acknowledged is sent under the old one. */
   restart: () => Promise<void>
@@ -70,10 +70,11 @@ export function createSimulatedGateway({ demo, serverUrl, spoolDir, board, say }
   return {
     demo,
     record: (readingsByHearth) => {
-      const at = new Date(clock.nowMs()).toISOString()
+      const skewMs = clock.nowMs() - Date.now()
       const drafts: ReadingDraft[] = []
       for (const [hearth, readings] of readingsByHearth) {
-        for (const { probe, emf, flag } of readings) {
+        for (const { probe, emf, flag, timeS } of readings) {
+          const at = new Date(Math.round(timeS * 1_000 + skewMs)).toISOString()
           const probeId = probeIds.get(`${hearth}/${probe}`)
           if (probeId !== undefined)
             drafts.push({ probeId, at, emf, ...(flag === undefined ? {} : { flag }) })

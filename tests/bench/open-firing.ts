@@ -40,7 +40,7 @@ export async function benchOpenFiring(people: TestPeople): Promise<Figure[]> {
 
 async function makeFiring(people: TestPeople): Promise<string> {
   const gateway = await createTestGateway({ mayReplay: true })
-  const probes = []
+  const probes: TestProbe[] = []
   for (let channel = 1; channel <= probeCount; channel += 1) {
     probes.push(await createTestProbe(gateway.gatewayId, channel))
   }
