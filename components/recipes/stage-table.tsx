@@ -169,7 +169,11 @@ function StageRow(props: RowProps) {
             {...text('cues')}
             aria-label={`${stage.name}, what to do and when`}
             title={stage.cuesText}
-            className={classNames(cellClass, 'w-full min-w-[6rem]')}
+            className={classNames(
+              cellClass,
+              'w-full min-w-[6rem]',
+              stage.cuesText.length > 28 && 'text-[12.5px]',
+            )}
             value={stage.cuesText}
             onChange={(event) => change({ cuesText: event.target.value })}
           />

@@ -8,6 +8,7 @@ import { emfMv } from '@/lib/science/thermocouple'
 import type { Figure } from '@/tests/bench/figure'
 import { median, quantile } from '@/tests/bench/figure'
 import type { TestPeople } from '@/tests/support/people'
+import type { TestProbe } from '@/tests/support/room'
 import { createTestFiring, createTestGateway, createTestProbe, endTestFiring } from '@/tests/support/room'
 
 const preheatS = 22 * 60

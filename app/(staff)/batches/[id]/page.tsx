@@ -20,7 +20,7 @@ export default async function BatchPage({ params }: { params: Promise<{ id: stri
       <PageHead
         title={`Batch ${batch.number}, ${batch.recipeName}`}
         sub={`${batch.pieceCount} of ${batch.sizeAndShape} for ${batch.customer.name}, lot ${batch.woodLot}, version ${batch.versionNumber}${batch.dueWeek === null ? '' : `, due ${batch.dueWeek}`}.`}
-        verdict={`${batch.finishedCount} fired, ${batch.waitingCount} waiting`}
+        verdict={`${batch.finishedCount} fired, ${batch.liveCount} over the fire, ${batch.waitingCount} waiting`}
         actions={<LinkButton href={`/firings?batchId=${batch.id}`}>Its firings</LinkButton>}
       />
       {batch.notes === '' ? null : <p className="mb-4 max-w-[70ch]">{batch.notes}</p>}
