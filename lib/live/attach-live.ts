@@ -9,7 +9,8 @@ import type { Problem } from '@/lib/http/problem'
 import { toProblem } from '@/lib/http/problem'
 import { parseInput } from '@/lib/http/route'
 import { events, joinFiringSchema, leaveFiringSchema } from '@/lib/live/events'
-import type { Hub, HubOutput } from '@/lib/live/hub'
+import type { Hub } from '@/lib/live/hub'
+import type { HubOutput } from '@/lib/live/hub-state'
 import { log } from '@/lib/log'
 
 /** How often each session is looked at again: sign-out and a change of role end a socket within 5 s. */

@@ -84,7 +84,7 @@ function toastDues(facts: FiringFacts, toastMs: number, atMs: number): Due[] {
   }
   const after = facts.content.stages[now.position]
   if (after === undefined) dues.push({ words: 'rest', atMs: endMs })
-  else dues.push({ words: after.lid === stage.lid ? after.name : `lid ${after.lid}`, atMs: endMs })
+  else dues.push({ words: after.lid === lid ? after.name : `lid ${after.lid}`, atMs: endMs })
   return dues
 }
 

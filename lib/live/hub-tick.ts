@@ -1,0 +1,60 @@
+import type { FiringState, RoomFiring, RoomState } from '@/lib/live/events'
+import { events } from '@/lib/live/events'
+import type { FiringFacts } from '@/lib/live/firing-facts'
+import type { Held, HubState } from '@/lib/live/hub-state'
+import type { LiveFiring } from '@/lib/live/live-firing'
+import { nowMs } from '@/lib/runtime'
+
+export const tickMs = 200
+/** A state goes out once a second; a tick that comes a little early counts. */
+const stateMs = 1_000 - tickMs / 4
+
+/** Sends what has come since the last tick, at most once each; states once a second or when something changed. */
+export function tickHub(hub: HubState): void {
+  const atMs = nowMs()
+  for (const [firingId, one] of hub.held) {
+    const isDone = one.endedAtMs !== null && one.stateAtMs >= one.endedAtMs
+    if (!isDone) tickFiring(hub, firingId, one, atMs)
+  }
+  if (atMs - hub.roomAtMs < stateMs && atMs >= hub.roomAtMs) return
+  hub.roomAtMs = atMs
+  hub.output.toRoom(events.roomState, roomStateOf(hub))
+}
+
+function tickFiring(hub: HubState, firingId: string, one: Held, atMs: number): void {
+  const { live } = one
+  const points = live.stream.between(one.emittedIndex, live.stream.lastIndex)
+  one.emittedIndex = live.stream.lastIndex
+  if (points.length > 0) {
+    hub.output.toFiring(firingId, events.firingReadings, { firingId, epoch: live.epoch, points })
+  }
+  const told = tellingOf(live, atMs)
+  if (atMs - one.stateAtMs < stateMs && told === one.told) return
+  one.told = told
+  one.stateAtMs = atMs
+  one.state = live.state(atMs)
+  hub.output.toFiring(firingId, events.firingState, one.state)
+}
+
+function tellingOf(live: LiveFiring, atMs: number): string {
+  const { signals, alarm, words, position } = live.glance(atMs)
+  const { revision, state } = live.facts()
+  const conditions = signals.map((signal) => `${signal.role} ${signal.condition} ${signal.cause}`)
+  return [revision, state, ...conditions, alarm?.words, words, position].join('|')
+}
+
+/** Every live firing in its short form, by hearth. */
+export function roomStateOf(hub: HubState): RoomState {
+  const atMs = nowMs()
+  const firings = [...hub.held.values()]
+    .filter((one) => one.endedAtMs === null)
+    .map((one) => toRoomFiring(one.live.facts(), one.state ?? one.live.state(atMs)))
+    .sort((a, b) => (a.hearthNumber ?? 99) - (b.hearthNumber ?? 99))
+  return { atMs: Math.round(atMs), firings }
+}
+
+function toRoomFiring(facts: FiringFacts, state: FiringState): RoomFiring {
+  const { forecast: _forecast, stave: _stave, ...rest } = state
+  const { hearthNumber, serial, recipeName } = facts
+  return { ...rest, hearthNumber, serial, recipeName }
+}
