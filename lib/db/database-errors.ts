@@ -33,7 +33,7 @@ export function isDatabaseUnavailable(error: unknown): boolean {
   const code = databaseErrorCode(error)
   if (code !== null && unavailableCodes.has(code)) return true
   if (!(error instanceof Error)) return false
-  return /Connection terminated|Timeout acquiring a connection|timeout expired|ECONNREFUSED/i.test(
+  return /Connection terminated|Timeout acquiring a connection|timeout expired|timeout exceeded when trying to connect|ECONNREFUSED/i.test(
     error.message,
   )
 }
