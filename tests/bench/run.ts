@@ -5,6 +5,9 @@ import { printFigures } from '@/tests/bench/figure'
 import { benchFanOut } from '@/tests/bench/fan-out'
 import { benchIngest } from '@/tests/bench/ingest'
 import { benchLiveStep } from '@/tests/bench/live-step'
+import { benchOpenFiring } from '@/tests/bench/open-firing'
+import { benchPageWeight } from '@/tests/bench/page-weight'
+import { benchScore } from '@/tests/bench/score'
 import { createTestDatabase } from '@/tests/support/database'
 import type { TestPeople } from '@/tests/support/people'
 import { createPeople } from '@/tests/support/people'
@@ -16,6 +19,8 @@ const benches: Record<string, Bench> = {
   ingest: () => benchIngest(),
   'live step': benchLiveStep,
   'fan-out': benchFanOut,
+  'open firing': benchOpenFiring,
+  score: benchScore,
 }
 
 const [wanted = ''] = process.argv.slice(2)
@@ -32,5 +37,10 @@ try {
   await closeIngestPool()
   await closeOrm()
   await database.drop()
+}
+// Last, and with a database of its own: it points this process at the one of the started app.
+if ('page weight'.includes(wanted)) {
+  process.stdout.write('page weight …\n')
+  figures.push(...(await benchPageWeight()))
 }
 process.stdout.write(`\n${printFigures(figures)}\n`)
