@@ -121,7 +121,7 @@ describe('gateway over real sockets', () => {
   const readings = (count: number): HearthReading[] =>
     Array.from({ length: count }, (_, i) => ({
       probe: 'lead' as const,
-      timeS: i,
+      timeS: Date.now() / 1_000 + i / 1_000,
       emf: { microvolts: 4_000 + i, coldJunctionC: 23 },
     }))
   const startGateway = (token = TOKEN, said: string[] = []) => {
