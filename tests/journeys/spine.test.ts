@@ -33,7 +33,7 @@ const person = (one: { email: string }) => ({ email: one.email, password: demoPa
 let app: StartedApp
 let browser: Browser
 let room: SeedRoom
-const faults: string[] = []
+const faultsOfEach: string[][] = []
 
 beforeAll(async () => {
   app = await startApp(async () => {
@@ -72,7 +72,7 @@ afterAll(async () => {
 
 async function as(one: { email: string }, size: { width: number; height: number }): Promise<Page> {
   const signedIn = await signIn(browser, app.origin, person(one), size)
-  faults.push(...signedIn.faults)
+  faultsOfEach.push(signedIn.faults)
   return signedIn.page
 }
 
@@ -195,7 +195,8 @@ describe('the spine, from an empty book to a scored firing', () => {
   })
 
   it('no page threw, warned or broke its content security policy', () => {
-    expect(faults).toEqual([])
+    expect(faultsOfEach.length).toBeGreaterThan(5)
+    expect(faultsOfEach.flat()).toEqual([])
   })
 })
 
