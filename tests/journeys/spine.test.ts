@@ -1,6 +1,6 @@
 import { randomUUID } from 'node:crypto'
 import { setTimeout as sleep } from 'node:timers/promises'
-import type { Browser, Page } from 'playwright-core'
+import type { Browser, Locator, Page } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import * as z from 'zod'
 import { systemActor } from '@/lib/auth/actor'
@@ -76,6 +76,18 @@ async function as(one: { email: string }, size: { width: number; height: number 
   return signedIn.page
 }
 
+/** Presses a button until its dialog is there: a press before the page has woken up does nothing. */
+async function openDialog(page: Page, name: string): Promise<Locator> {
+  const button = page.getByRole('button', { name, exact: true })
+  const dialog = page.getByRole('dialog')
+  await button.waitFor()
+  for (let tries = 0; tries < 10 && !(await dialog.isVisible()); tries += 1) {
+    await button.click()
+    await dialog.waitFor({ timeout: 2_000 }).catch(() => {})
+  }
+  return dialog
+}
+
 /** A one-second press of the large control. */
 async function press(page: Page, name: string): Promise<void> {
   const button = page.getByRole('button', { name: new RegExp(name) })
@@ -99,28 +111,33 @@ describe('the spine, from an empty book to a scored firing', () => {
   it('a chemist writes a recipe at the bench and sends it for review', async () => {
     const page = await as(demoPeople.chemist, desk)
     await page.goto('/recipes/new')
+    await page.waitForLoadState('networkidle')
     await page.getByLabel('Name').fill('Journey medium')
     await page.getByRole('button', { name: 'Make it and open the bench' }).click()
     await page.waitForURL(/\/recipe-versions\//)
     versionId = new URL(page.url()).pathname.split('/').at(-1) ?? ''
     await page.getByText('draft', { exact: false }).first().waitFor()
-    await page.getByRole('button', { name: 'Send for review' }).click()
-    await page.getByText('in review').first().waitFor()
+    const isInReview = page.getByText('in review').first()
+    for (let tries = 0; tries < 10 && !(await isInReview.isVisible()); tries += 1) {
+      await page
+        .getByRole('button', { name: 'Send for review' })
+        .click({ timeout: 5_000 })
+        .catch(() => {})
+      await isInReview.waitFor({ timeout: 3_000 }).catch(() => {})
+    }
+    await isInReview.waitFor()
   })
 
   it('a master cooper approves it by signature and makes a batch', async () => {
     const page = await as(demoPeople.masterCooper, desk)
     await page.goto(`/recipe-versions/${versionId}`)
-    await page.getByRole('button', { name: 'Approve', exact: true }).click()
-    await page
-      .getByRole('dialog')
-      .getByLabel(/password/i)
-      .fill(demoPassword)
+    const signature = await openDialog(page, 'Approve')
+    await signature.getByLabel(/password/i).fill(demoPassword)
     await page.getByRole('button', { name: 'Sign and approve' }).click()
-    await page.getByText('approved').first().waitFor()
+    await signature.waitFor({ state: 'hidden' })
+    await page.getByRole('button', { name: 'Withdraw' }).waitFor()
     await page.goto('/batches')
-    await page.getByRole('button', { name: 'New batch' }).click()
-    const dialog = page.getByRole('dialog')
+    const dialog = await openDialog(page, 'New batch')
     await dialog.getByLabel('Customer').selectOption({ label: 'Harrow Bay Cellars (demo)' })
     await dialog.getByLabel('Recipe version').selectOption({ index: 1 })
     await dialog.getByLabel('How many').fill('2')
@@ -147,6 +164,7 @@ describe('the spine, from an empty book to a scored firing', () => {
       .waitFor()
     const live = keepReading(page)
     await page.getByText('live', { exact: false }).first().waitFor()
+    await page.waitForLoadState('networkidle').catch(() => {})
     await page.getByRole('button', { name: /^Feed/ }).click()
     await press(page, 'Start rest')
     await page.getByText('Rest', { exact: false }).first().waitFor()

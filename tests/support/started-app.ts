@@ -112,7 +112,7 @@ export async function signIn(
     if (message.type() === 'error' && !/Failed to load resource/.test(message.text()))
       faults.push(message.text())
   })
-  await page.goto('/sign-in')
+  await page.goto('/sign-in', { waitUntil: 'networkidle' })
   await page.getByLabel('E-mail').fill(person.email)
   await page.getByLabel('Password').fill(person.password)
   await page.getByRole('button', { name: 'Sign in' }).click()
