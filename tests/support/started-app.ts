@@ -9,7 +9,12 @@ import { chromium } from 'playwright-core'
 import { createTestDatabase } from '@/tests/support/database'
 
 /** The built app as `npm start` runs it, on a database of its own. */
-export type StartedApp = { origin: string; stop: () => Promise<void> }
+export type StartedApp = {
+  origin: string
+  /** Ends the server by the signal and starts it again on the same database; answers how long it took to be ready, ms. */
+  restart: (signal: 'SIGTERM' | 'SIGKILL') => Promise<number>
+  stop: () => Promise<void>
+}
 
 async function freePort(): Promise<number> {
   return new Promise((resolve, reject) => {
@@ -54,6 +59,33 @@ export async function startApp(seed: (dataDir: string) => Promise<void>): Promis
   }
   Object.assign(process.env, environment)
   await seed(dataDir)
+  let server = startServer(environment)
+  const stop = async () => {
+    await server.end('SIGTERM')
+    await database.drop()
+    await rm(dataDir, { recursive: true, force: true })
+  }
+  try {
+    await untilReady(origin, server.endedWith)
+  } catch (error) {
+    await stop()
+    throw error
+  }
+  return {
+    origin,
+    stop,
+    restart: async (signal) => {
+      await server.end(signal)
+      const startedAt = performance.now()
+      server = startServer(environment)
+      await untilReady(origin, server.endedWith)
+      return performance.now() - startedAt
+    },
+  }
+}
+
+/** The server as a child process; `endedWith` gives its output once it has ended, null before. */
+function startServer(environment: Readonly<Record<string, string>>) {
   const child = spawn(process.execPath, ['--import', 'tsx', 'server.ts'], {
     env: { ...process.env, ...environment, NODE_ENV: 'production' },
     stdio: ['ignore', 'pipe', 'pipe'],
@@ -63,20 +95,14 @@ export async function startApp(seed: (dataDir: string) => Promise<void>): Promis
   for (const stream of [child.stdout, child.stderr])
     stream.on('data', (chunk: Buffer) => (output += chunk.toString()))
   child.on('exit', () => (isEnded = true))
-  const stop = async () => {
-    child.kill('SIGTERM')
-    for (const until = Date.now() + 8_000; !isEnded && Date.now() < until;) await sleep(50)
-    if (!isEnded) child.kill('SIGKILL')
-    await database.drop()
-    await rm(dataDir, { recursive: true, force: true })
+  return {
+    endedWith: () => (isEnded ? output : null),
+    end: async (signal: 'SIGTERM' | 'SIGKILL') => {
+      child.kill(signal)
+      for (const until = Date.now() + 8_000; !isEnded && Date.now() < until;) await sleep(50)
+      if (!isEnded) child.kill('SIGKILL')
+    },
   }
-  try {
-    await untilReady(origin, () => (isEnded ? output : null))
-  } catch (error) {
-    await stop()
-    throw error
-  }
-  return { origin, stop }
 }
 
 export async function startBrowser(): Promise<Browser> {
