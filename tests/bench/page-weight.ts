@@ -6,6 +6,7 @@ import { closeIngestPool } from '@/lib/ingest/ingest-pool'
 import { seedDemo } from '@/simulators/scenarios/demo'
 import { demoPassword, demoPeople } from '@/simulators/scenarios/seed-people'
 import type { Figure } from '@/tests/bench/figure'
+import { printFigures } from '@/tests/bench/figure'
 import { signIn, startApp, startBrowser } from '@/tests/support/started-app'
 
 const kilobyte = 1024
@@ -34,7 +35,7 @@ async function firstId(page: Page, path: string): Promise<string> {
 }
 
 /** JavaScript of each page beyond a bare page of this Next (the not-found page), gzip KB, in a real Chromium. */
-export async function benchPageWeight(): Promise<Figure[]> {
+async function benchPageWeight(): Promise<Figure[]> {
   const shape = { hearthCount: 2, liveToastMinutes: [3], historyDays: 10 }
   const app = await startApp(async () => {
     await seedDemo(shape, () => {})
@@ -69,3 +70,5 @@ export async function benchPageWeight(): Promise<Figure[]> {
     await app.stop()
   }
 }
+
+process.stdout.write(`\n${printFigures(await benchPageWeight())}\n`)

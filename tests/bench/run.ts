@@ -1,3 +1,4 @@
+import { execFileSync } from 'node:child_process'
 import { closeOrm } from '@/lib/db/orm'
 import { closeIngestPool } from '@/lib/ingest/ingest-pool'
 import type { Figure } from '@/tests/bench/figure'
@@ -6,7 +7,6 @@ import { benchFanOut } from '@/tests/bench/fan-out'
 import { benchIngest } from '@/tests/bench/ingest'
 import { benchLiveStep } from '@/tests/bench/live-step'
 import { benchOpenFiring } from '@/tests/bench/open-firing'
-import { benchPageWeight } from '@/tests/bench/page-weight'
 import { benchScore } from '@/tests/bench/score'
 import { createTestDatabase } from '@/tests/support/database'
 import type { TestPeople } from '@/tests/support/people'
@@ -38,9 +38,8 @@ try {
   await closeOrm()
   await database.drop()
 }
-// Last, and with a database of its own: it points this process at the one of the started app.
-if ('page weight'.includes(wanted)) {
-  process.stdout.write('page weight …\n')
-  figures.push(...(await benchPageWeight()))
-}
 process.stdout.write(`\n${printFigures(figures)}\n`)
+// Last, and in a process of its own: it points its process at the database of the app that it starts.
+if ('page weight'.includes(wanted)) {
+  execFileSync(process.execPath, ['--import', 'tsx', 'tests/bench/page-weight.ts'], { stdio: 'inherit' })
+}
