@@ -2,7 +2,16 @@ import tseslint from 'typescript-eslint'
 import reactHooks from 'eslint-plugin-react-hooks'
 
 export default tseslint.config(
-  { ignores: ['node_modules/**', '.next/**', '.data/**', 'next-env.d.ts', 'public/**', 'tests/science/reference/**'] },
+  {
+    ignores: [
+      'node_modules/**',
+      '.next/**',
+      '.data/**',
+      'next-env.d.ts',
+      'public/**',
+      'tests/science/reference/**',
+    ],
+  },
   ...tseslint.configs.recommended,
   {
     files: ['**/*.{ts,tsx}'],

@@ -1,4 +1,5 @@
 import type { FiringDto } from '@/lib/firings/schema'
+import { siteStaveOptions } from '@/lib/recipes/stave-of'
 import type { ScoreInput } from '@/lib/science/score-types'
 import type { SiteRules } from '@/lib/science/site-rules'
 import type { StaveHistory, StaveHistoryOptions } from '@/lib/science/stave'
@@ -14,13 +15,7 @@ export function staveOptionsOf(
     thicknessMm: content?.thicknessMm ?? rules.stave.thicknessMm,
     probeDepthMm: content?.leadPlace.depthMm ?? 2,
     moisturePercent: firing.moisturePercent ?? rules.stave.moisturePercent,
-    specificGravity: rules.stave.specificGravity,
-    roomTempC: rules.stave.roomTempC,
-    coldFaceHWPerM2K: rules.stave.coldFaceHWPerM2K,
-    dose: rules.dose,
-    toastDepthDoseMin: rules.stave.toastDepthDoseMin,
-    probeDepthErrorMm: rules.stave.probeDepthErrorMm,
-    diffusivityErrorShare: rules.stave.diffusivityErrorShare,
+    ...siteStaveOptions(rules),
   }
 }
 

@@ -9,6 +9,19 @@ export type StavedContent = Pick<RecipeContent, 'thicknessMm'> & {
   preheat: Pick<RecipeContent['preheat'], 'moistureMinPercent' | 'moistureMaxPercent'>
 }
 
+/** What the site's rules say of every stave: wood, room, dose and the errors that make the ranges. */
+export function siteStaveOptions(rules: SiteRules) {
+  return {
+    specificGravity: rules.stave.specificGravity,
+    roomTempC: rules.stave.roomTempC,
+    coldFaceHWPerM2K: rules.stave.coldFaceHWPerM2K,
+    dose: rules.dose,
+    toastDepthDoseMin: rules.stave.toastDepthDoseMin,
+    probeDepthErrorMm: rules.stave.probeDepthErrorMm,
+    diffusivityErrorShare: rules.stave.diffusivityErrorShare,
+  }
+}
+
 /**
  * The stave model's input for a plan: the plan's curve at the lead probe's depth, the middle of the recipe's moisture
  * band, and the site's wood and room. A plan has no probe error, so the range of its toast depth is that of the
@@ -26,12 +39,6 @@ export function staveOptionsOf(
     thicknessMm: content.thicknessMm,
     probeDepthMm: content.leadPlace.depthMm,
     moisturePercent: (content.preheat.moistureMinPercent + content.preheat.moistureMaxPercent) / 2,
-    specificGravity: rules.stave.specificGravity,
-    roomTempC: rules.stave.roomTempC,
-    coldFaceHWPerM2K: rules.stave.coldFaceHWPerM2K,
-    dose: rules.dose,
-    toastDepthDoseMin: rules.stave.toastDepthDoseMin,
-    probeDepthErrorMm: rules.stave.probeDepthErrorMm,
-    diffusivityErrorShare: rules.stave.diffusivityErrorShare,
+    ...siteStaveOptions(rules),
   }
 }
