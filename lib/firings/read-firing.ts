@@ -24,7 +24,7 @@ export async function readMarks(em: EntityManager, firingId: string): Promise<Ma
 }
 
 /** The probes of a firing, each for its period. */
-export async function readFiringProbes(em: EntityManager, firingId: string): Promise<FiringProbeRow[]> {
+async function readProbeRows(em: EntityManager, firingId: string): Promise<FiringProbeRow[]> {
   return queryRows<FiringProbeRow>(
     em,
     `select fp.probe_id, q.no, q.name, fp.role, q.thermocouple_type, q.iec_class, fp.height, fp.side, fp.depth_mm,
@@ -39,5 +39,5 @@ export async function readFiringProbes(em: EntityManager, firingId: string): Pro
 export async function readFiring(em: EntityManager, id: string): Promise<FiringDto> {
   const [row] = await queryRows<FiringDetailRow>(em, `${detailSelect} where f.id = ?`, [id])
   if (row === undefined) throw new AppError('not found', 'There is no such firing.')
-  return toFiring(row, await readFiringProbes(em, id), await readMarks(em, id))
+  return toFiring(row, await readProbeRows(em, id), await readMarks(em, id))
 }

@@ -11,6 +11,7 @@ import {
   stepStave,
   toastDepthMm,
 } from '@/lib/science/stave'
+import { siteStaveOptions } from '@/lib/recipes/stave-of'
 
 export type StaveColumn = NonNullable<FiringState['stave']>
 
@@ -90,13 +91,7 @@ function makeStave(facts: FiringFacts, startTempC: number): StaveState {
     probeDepthMm: Math.min(content.leadPlace.depthMm, content.thicknessMm * 0.9),
     moisturePercent: facts.moisturePercent ?? rules.stave.moisturePercent,
     startTempC,
-    specificGravity: rules.stave.specificGravity,
-    roomTempC: rules.stave.roomTempC,
-    coldFaceHWPerM2K: rules.stave.coldFaceHWPerM2K,
-    dose: rules.dose,
-    toastDepthDoseMin: rules.stave.toastDepthDoseMin,
-    probeDepthErrorMm: rules.stave.probeDepthErrorMm,
-    diffusivityErrorShare: rules.stave.diffusivityErrorShare,
+    ...siteStaveOptions(rules),
   })
 }
 

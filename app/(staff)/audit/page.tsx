@@ -6,7 +6,7 @@ import { VerifyButton } from '@/components/audit/verify-button'
 import { Notice } from '@/components/ui/notice'
 import { PageHead } from '@/components/ui/page-head'
 import { Pager } from '@/components/ui/pager'
-import { changeQuery } from '@/components/ui/url-query'
+import { nextPageHref } from '@/components/ui/url-query'
 import { listEntries } from '@/lib/audit/list-entries'
 import { auditQuery } from '@/lib/audit/schema'
 import { requirePageActor } from '@/lib/auth/page-actor'
@@ -32,7 +32,7 @@ export default async function AuditPage({ searchParams }: { searchParams: Search
       <AuditFilters values={raw} />
       {faults.length === 0 ? null : <Notice tone="attention">{faults.join(' ')}</Notice>}
       <AuditTable entries={page.items} timeZone={timeZone} />
-      <Pager nextHref={next === null ? undefined : changeQuery('/audit', raw, { cursor: next })} />
+      <Pager nextHref={nextPageHref('/audit', raw, next)} />
     </>
   )
 }
