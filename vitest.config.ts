@@ -29,6 +29,7 @@ export default defineConfig({
     projects: [
       project('house', ['tests/architecture.test.ts', 'tests/lockfile.test.ts', 'tests/types.test.ts']),
       project('science', ['tests/science/**/*.test.ts']),
+      project('gateway', ['tests/gateway/**/*.test.ts', 'tests/simulators/**/*.test.ts']),
       project('ui', ['tests/ui/**/*.test.{ts,tsx}'], { environment: 'happy-dom' }),
       project('areas', ['tests/areas/**/*.test.ts'], database),
       project('api', ['tests/api/**/*.test.ts'], database),

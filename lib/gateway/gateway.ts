@@ -19,6 +19,8 @@ type GatewayOptions = SenderEvents & {
   bootId?: string
   clock?: GatewayClock
   maxSpoolBytes?: number
+  /** Shown on the gateway's page beside the depth of its spool; left out, no status is sent. */
+  programVersion?: string
 }
 
 /** A loss of power may cost what was read in this time; a killed process costs nothing. */
@@ -35,7 +37,16 @@ export function createGateway(options: GatewayOptions): Gateway {
     bootId,
     ...(options.maxSpoolBytes === undefined ? {} : { maxBytes: options.maxSpoolBytes }),
   })
-  const sender = createSender({ ...options, spool, clock })
+  const startedMs = performance.now()
+  const uptimeS = () => (performance.now() - startedMs) / 1_000
+  const sender = createSender({
+    ...options,
+    spool,
+    clock,
+    ...(options.programVersion === undefined
+      ? {}
+      : { program: { version: options.programVersion, uptimeS } }),
+  })
   let cancelFlush = () => {}
   const flushLater = () => {
     cancelFlush = clock.wait(FLUSH_EVERY_MS, () => {

@@ -16,6 +16,8 @@ export const INGEST_PATH = '/api/ingest/readings'
 export const MAX_READINGS_PER_MESSAGE = 5_000
 /** Most declared losses in one message. */
 export const MAX_LOSSES_PER_MESSAGE = 1_000
+/** A gateway says how it stands no more often than this. */
+export const STATUS_EVERY_MS = 10_000
 
 /** Sequence numbers count from 1 for each (gateway, boot), over all its probes; 0 acknowledges nothing. */
 const seqSchema = z.int().min(0)
@@ -62,6 +64,18 @@ export const lossSchema = z
   .refine((loss) => loss.to >= loss.from, { error: 'The end is before the start', path: ['to'] })
 
 /**
+ * How the gateway program stands, for its page. Counts are of what no server has acknowledged; `oldestUnsentAt` is the
+ * instant of the oldest such reading, by the gateway's own clock, and null when none waits.
+ */
+export const gatewayStatusSchema = z.strictObject({
+  spooledReadings: z.int().min(0),
+  spooledBytes: z.int().min(0),
+  oldestUnsentAt: instantSchema.nullable(),
+  programVersion: z.string().trim().min(1).max(60),
+  uptimeS: z.int().min(0),
+})
+
+/**
  * One message from a gateway. `sentAt` is the gateway's clock at sending: the server takes its offset from it.
  * A message without readings and losses is allowed; it asks how far this boot is acknowledged.
  */
@@ -70,6 +84,8 @@ export const ingestMessageSchema = z.strictObject({
   sentAt: instantSchema,
   readings: z.array(readingSchema).max(MAX_READINGS_PER_MESSAGE),
   lost: z.array(lossSchema).max(MAX_LOSSES_PER_MESSAGE).optional(),
+  /** Sent at most every `STATUS_EVERY_MS`. */
+  status: gatewayStatusSchema.optional(),
 })
 
 /**
@@ -81,6 +97,8 @@ export const ingestEnvelopeSchema = z.strictObject({
   sentAt: instantSchema,
   readings: z.array(z.looseObject({ seq: seqSchema })).max(MAX_READINGS_PER_MESSAGE),
   lost: z.array(lossSchema).max(MAX_LOSSES_PER_MESSAGE).optional(),
+  /** Sent at most every `STATUS_EVERY_MS`. */
+  status: gatewayStatusSchema.optional(),
 })
 
 /** A reading that the server will not keep as a measurement; it counts as acknowledged. */
@@ -107,6 +125,7 @@ export type ReadingFlag = z.infer<typeof readingFlagSchema>
 export type Emf = z.infer<typeof emfSchema>
 export type Reading = z.infer<typeof readingSchema>
 export type Loss = z.infer<typeof lossSchema>
+export type GatewayStatus = z.infer<typeof gatewayStatusSchema>
 export type IngestMessage = z.infer<typeof ingestMessageSchema>
 export type IngestEnvelope = z.infer<typeof ingestEnvelopeSchema>
 export type Refusal = z.infer<typeof refusalSchema>

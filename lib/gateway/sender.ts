@@ -1,7 +1,7 @@
 import { backoffMs } from './backoff'
-import type { IngestAnswer, IngestMessage, IngestProblem, Refusal } from './protocol'
-import { MAX_LOSSES_PER_MESSAGE } from './protocol'
-import type { Spool } from './spool'
+import type { GatewayStatus, IngestAnswer, IngestMessage, IngestProblem, Refusal } from './protocol'
+import { MAX_LOSSES_PER_MESSAGE, STATUS_EVERY_MS } from './protocol'
+import type { Spool, SpoolBatch } from './spool'
 import { isTokenRefused, type SendOutcome, type Transport } from './transport'
 
 /** The gateway's clock, ms since 1970, and its alarm; tests turn it by hand. `wait` gives its own undoing. */
@@ -34,6 +34,8 @@ export type SenderOptions = SenderEvents & {
   maxReadings?: number
   /** Between tries with a token that the server refuses, or a message that it will not take. */
   slowRetryMs?: number
+  /** Which program this is and for how long it has run: then its status goes along with the readings. */
+  program?: { version: string; uptimeS: () => number }
 }
 
 export type SenderState = 'idle' | 'sending' | 'backing off' | 'token refused' | 'message refused' | 'stopped'
@@ -67,6 +69,7 @@ export function createSender(options: SenderOptions): Sender {
   let trouble: string | null = null
   let underWay: Promise<void> = Promise.resolve()
   let cancelWait = () => {}
+  const statusNow = createStatusTeller(options.program, spool, clock)
 
   const isStopped = () => state === 'stopped'
 
@@ -113,6 +116,10 @@ export function createSender(options: SenderOptions): Sender {
           'An administrator can make a new token for it under Gateways; put it in place and restart the gateway.',
       )
       pause('token refused', slowRetryMs * (1 + 0.2 * random()))
+    } else if (problem.status === 422 && message.status !== undefined) {
+      // A server from before statuses takes no message with one: once more without.
+      statusNow.pause()
+      proceed()
     } else if (problem.status === 413 && message.readings.length > 1) {
       limit = Math.max(1, message.readings.length >> 1)
       proceed()
@@ -128,6 +135,8 @@ export function createSender(options: SenderOptions): Sender {
         `The server will not take a message with readings ${message.readings[0]?.seq ?? '-'} to ` +
           `${message.readings.at(-1)?.seq ?? '-'} (${problem.status}: ${reason}). They are kept here.`,
       )
+      // It was not the status then.
+      statusNow.goOn()
       pause('message refused', slowRetryMs * (1 + 0.2 * random()))
     }
   }
@@ -143,11 +152,13 @@ export function createSender(options: SenderOptions): Sender {
       return
     }
     const lost = batch.lost.slice(0, MAX_LOSSES_PER_MESSAGE)
+    const status = statusNow.of(batch)
     const message: IngestMessage = {
       bootId: batch.bootId,
       sentAt: new Date(clock.nowMs()).toISOString(),
       readings: batch.readings,
       ...(lost.length > 0 && { lost }),
+      ...(status !== null && { status }),
     }
     const outcome = await sendByFirstWay(transports, message)
     // An answer that comes while stopping still counts: what it acknowledges need not be sent again.
@@ -172,6 +183,44 @@ export function createSender(options: SenderOptions): Sender {
       cancelWait()
       await Promise.race([underWay, new Promise<void>((resolve) => clock.wait(STOP_WITHIN_MS, resolve))])
       await Promise.all(transports.map((transport) => transport.close()))
+    },
+  }
+}
+
+type StatusTeller = {
+  /** The status to go along with this batch; null when the last one is not old enough. */
+  of: (batch: SpoolBatch) => GatewayStatus | null
+  pause: () => void
+  goOn: () => void
+}
+
+function createStatusTeller(
+  program: SenderOptions['program'],
+  spool: Spool,
+  clock: GatewayClock,
+): StatusTeller {
+  let toldAtMs = -Infinity
+  let isOn = true
+  return {
+    of: (batch) => {
+      const nowMs = clock.nowMs()
+      // A clock that was set back must not keep it silent.
+      if (program === undefined || !isOn || Math.abs(nowMs - toldAtMs) < STATUS_EVERY_MS) return null
+      toldAtMs = nowMs
+      const { bytes, readings } = spool.status()
+      return {
+        spooledReadings: readings,
+        spooledBytes: bytes,
+        oldestUnsentAt: batch.readings[0]?.at ?? null,
+        programVersion: program.version,
+        uptimeS: Math.floor(program.uptimeS()),
+      }
+    },
+    pause: () => {
+      isOn = false
+    },
+    goOn: () => {
+      isOn = true
     },
   }
 }

@@ -7,7 +7,8 @@ export type ReadingDraft = Omit<Reading, 'seq'>
 /** What is to be sent next: of one boot, in order of `seq`, with the losses that were not yet acknowledged. */
 export type SpoolBatch = { bootId: string; readings: Reading[]; lost: Loss[] }
 
-export type SpoolStatus = { bytes: number; waiting: number; boots: number; lost: Loss[] }
+/** `waiting`: numbers that are not acknowledged; `readings`: those of them that are still here to be sent. */
+export type SpoolStatus = { bytes: number; waiting: number; readings: number; boots: number; lost: Loss[] }
 
 export type Spool = {
   bootId: string
@@ -170,6 +171,7 @@ export function createSpool(options: SpoolOptions): Spool {
     status: () => ({
       bytes: totalBytes(),
       waiting: boots.reduce((sum, boot) => sum + boot.highestSeq - boot.ackedSeq, 0),
+      readings: boots.reduce((sum, boot) => sum + boot.highestSeq - boot.ackedSeq - lostCount(boot), 0),
       boots: boots.length,
       lost: boots.flatMap((boot) => boot.losses),
     }),
@@ -194,6 +196,11 @@ function newSegment(boot: Boot): Segment {
 
 function bytesOf(boot: Boot): number {
   return boot.segments.reduce((sum, segment) => sum + segment.bytes, 0)
+}
+
+/** Lost numbers that are not acknowledged yet. */
+function lostCount(boot: Boot): number {
+  return boot.losses.reduce((sum, loss) => sum + loss.to + 1 - Math.max(loss.from, boot.ackedSeq + 1), 0)
 }
 
 function notesOf(boot: Boot): SpoolRecord[] {

@@ -2,6 +2,7 @@ import { mkdirSync } from 'node:fs'
 import { join } from 'node:path'
 import { createGateway, type Gateway } from '@/lib/gateway/gateway'
 import { createHttpTransport } from '@/lib/gateway/http-transport'
+import { programVersion } from '@/lib/gateway/program-version'
 import { systemClock, type GatewayClock } from '@/lib/gateway/sender'
 import { createSocketTransport } from '@/lib/gateway/socket-transport'
 import type { ReadingDraft } from '@/lib/gateway/spool'
@@ -50,6 +51,7 @@ export function createSimulatedGateway({ demo, serverUrl, spoolDir, board, say }
       files,
       transports: transports.map((transport) => createFaultyTransport(transport, isActive)),
       clock,
+      programVersion: `${programVersion} (hearth simulator)`,
       onTrouble: (sentence) => say(`${demo.name}: ${sentence}`),
       onRecovered: (sentence) => say(`${demo.name}: ${sentence}`),
       onRefused: (_bootId, refused) =>

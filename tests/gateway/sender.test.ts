@@ -323,6 +323,63 @@ describe('sender', () => {
     await sender.stop()
   })
 
+  it('says how it stands at most every 10 s, whatever the clock does', async () => {
+    const server = fakeServer()
+    const { clock, run } = handClock()
+    let skewMs = 0
+    const spool = createSpool({ files: memoryFiles(), bootId: BOOT })
+    const messages: IngestMessage[] = []
+    const sender = createSender({
+      spool,
+      transports: [transportOf((message) => (messages.push(message), server.take(message)))],
+      clock: { ...clock, nowMs: () => clock.nowMs() + skewMs },
+      program: { version: '1.2.3', uptimeS: () => 61.9 },
+      maxReadings: 2,
+    })
+    const statusesAfter = async (stepMs: number) => {
+      skewMs += stepMs
+      const before = messages.length
+      spool.append(drafts(4))
+      sender.wake()
+      await run(() => spool.peek(1) === null)
+      return messages.slice(before).map((message) => message.status !== undefined)
+    }
+    expect(await statusesAfter(0)).toEqual([true, false])
+    expect(await statusesAfter(9_999)).toEqual([false, false])
+    expect(await statusesAfter(1)).toEqual([true, false])
+    expect(await statusesAfter(-3_600_000)).toEqual([true, false])
+    expect(messages[0]?.status).toEqual({
+      spooledReadings: 4,
+      spooledBytes: 4 * 48 + 16,
+      oldestUnsentAt: '2026-09-21T14:13:20.000Z',
+      programVersion: '1.2.3',
+      uptimeS: 61,
+    })
+    await sender.stop()
+  })
+
+  it('a server from before statuses still gets every reading', async () => {
+    const server = fakeServer()
+    const { clock, run } = handClock()
+    const spool = createSpool({ files: memoryFiles(), bootId: BOOT })
+    spool.append(drafts(3))
+    const transport = transportOf((message) =>
+      message.status === undefined
+        ? server.take(message)
+        : { kind: 'problem', problem: { status: 422, title: 'Does not fit', detail: 'status is unknown' } },
+    )
+    const sender = createSender({
+      spool,
+      transports: [transport],
+      clock,
+      program: { version: '1.2.3', uptimeS: () => 1 },
+    })
+    sender.wake()
+    expect(await run(() => spool.peek(1) === null)).toEqual([])
+    expect(server.kept.size).toBe(3)
+    await sender.stop()
+  })
+
   it('takes the next way at once when the first is not ready or gives no word', async () => {
     const server = fakeServer()
     const { clock, run } = handClock()
