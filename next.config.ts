@@ -14,7 +14,12 @@ const config: NextConfig = {
     'pg',
   ],
   // A build's cache on disk takes longer to write than it saves: builds are rare and hashed by lib/setup/build.mjs.
-  experimental: { authInterrupts: true, turbopackFileSystemCacheForBuild: false },
+  // The development cache on disk can outlive the chunks it names; then every page reloads without end.
+  experimental: {
+    authInterrupts: true,
+    turbopackFileSystemCacheForBuild: false,
+    turbopackFileSystemCacheForDev: false,
+  },
   // Types are held once, by `npm run check` and by tests/types.test.ts, instead of again in every build.
   typescript: { ignoreBuildErrors: true },
 }
