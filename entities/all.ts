@@ -8,6 +8,7 @@ import { FiringPlacementEntity } from './firing-placement'
 import { FiringProbeEntity } from './firing-probe'
 import { FiringEntity } from './firing'
 import { GatewayBootEntity } from './gateway-boot'
+import { GatewayEnrolmentEntity } from './gateway-enrolment'
 import { GatewayLossEntity } from './gateway-loss'
 import { GatewayTokenEntity } from './gateway-token'
 import { GatewayEntity } from './gateway'
@@ -15,11 +16,14 @@ import { HearthEntity } from './hearth'
 import { MarkEntity } from './mark'
 import { PieceEntity } from './piece'
 import { ProbeCheckEntity } from './probe-check'
+import { ProbePlaceEntity } from './probe-place'
 import { ProbeEntity } from './probe'
 import { ReadingEntity } from './reading'
 import { RecipeVersionEntity } from './recipe-version'
 import { RecipeEntity } from './recipe'
 import { RefusedReadingEntity } from './refused-reading'
+import { RepeatabilityPlacementEntity } from './repeatability-placement'
+import { RepeatabilityStudyEntity } from './repeatability-study'
 import { ScoreEntity } from './score'
 import { SealEntity } from './seal'
 import { SessionEntity } from './session'
@@ -41,6 +45,7 @@ export const entities = [
   FiringProbeEntity,
   FiringEntity,
   GatewayBootEntity,
+  GatewayEnrolmentEntity,
   GatewayLossEntity,
   GatewayTokenEntity,
   GatewayEntity,
@@ -48,11 +53,14 @@ export const entities = [
   MarkEntity,
   PieceEntity,
   ProbeCheckEntity,
+  ProbePlaceEntity,
   ProbeEntity,
   ReadingEntity,
   RecipeVersionEntity,
   RecipeEntity,
   RefusedReadingEntity,
+  RepeatabilityPlacementEntity,
+  RepeatabilityStudyEntity,
   ScoreEntity,
   SealEntity,
   SessionEntity,

@@ -16,6 +16,9 @@ export const GatewayTokenEntity = defineEntity({
     createdBy: p.uuid().nullable(),
     lastUsedAt: p.datetime().nullable(),
     revokedAt: p.datetime().nullable(),
+    /** Set when it is being replaced: it ends then, or when `replacedBy` is first used. */
+    expiresAt: p.datetime().nullable(),
+    replacedBy: p.uuid().nullable(),
   },
 })
 

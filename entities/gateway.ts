@@ -15,6 +15,14 @@ export const GatewayEntity = defineEntity({
     clockOffsetMs: p.integer().nullable(),
     lastSeenAt: p.datetime().nullable(),
     createdAt: p.datetime(),
+    retiredAt: p.datetime().nullable(),
+    /** What the gateway's program last said of itself, at `statusAt`. */
+    spooledReadings: p.bigint('number').nullable(),
+    spooledBytes: p.bigint('number').nullable(),
+    oldestUnsentAt: p.datetime().nullable(),
+    programVersion: p.text().nullable(),
+    uptimeS: p.bigint('number').nullable(),
+    statusAt: p.datetime().nullable(),
   },
 })
 

@@ -31,6 +31,9 @@ export const MarkEntity = defineEntity({
     call: p.enum(['early', 'right', 'late']).nullable(),
     words: p.text().default(''),
     replacesId: p.uuid().nullable(),
+    swapRole: p.enum(['lead', 'opposite', 'coals']).nullable(),
+    fromProbeId: p.uuid().nullable(),
+    toProbeId: p.uuid().nullable(),
   },
 })
 

@@ -19,6 +19,13 @@ export const ProbeCheckEntity = defineEntity({
     checkedAt: p.datetime(),
     dueAt: p.datetime(),
     accountId: p.uuid(),
+    way: p.enum(['by hand', 'live']).default('by hand'),
+    /** k = 2. */
+    referenceUncertaintyC: p.double().nullable(),
+    settledSdC: p.double().nullable(),
+    settledSlopeCPerMin: p.double().nullable(),
+    resolutionC: p.double().nullable(),
+    altitudeM: p.double().nullable(),
   },
 })
 

@@ -25,6 +25,9 @@ export const ProbeEntity = defineEntity({
     mounting: p.enum(['wedge', 'drilled', 'clamped', 'hung']),
     retiredAt: p.datetime().nullable(),
     createdAt: p.datetime(),
+    /** When and by whom place, hearth or channel were last changed; the database keeps the history from it. */
+    changedAt: p.datetime().nullable(),
+    changedBy: p.uuid().nullable(),
   },
 })
 

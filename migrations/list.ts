@@ -5,6 +5,7 @@ import { M0004BatchesPieces } from './m0004-batches-pieces'
 import { M0005FiringsMarks } from './m0005-firings-marks'
 import { M0006ReadingsSeals } from './m0006-readings-seals'
 import { M0007Scores } from './m0007-scores'
+import { M0009GatewayEnrolmentProbeHistory } from './m0009-gateway-enrolment-probe-history'
 
 /** In the order in which they run; a landed migration is never edited. */
 export const migrationsList = [
@@ -15,4 +16,5 @@ export const migrationsList = [
   { name: 'm0005-firings-marks', class: M0005FiringsMarks },
   { name: 'm0006-readings-seals', class: M0006ReadingsSeals },
   { name: 'm0007-scores', class: M0007Scores },
+  { name: 'm0009-gateway-enrolment-probe-history', class: M0009GatewayEnrolmentProbeHistory },
 ]
