@@ -88,6 +88,35 @@ export const forecastRulesSchema = z.strictObject({
   horizonMin: positive.max(1440),
 })
 
+export const checkRulesSchema = z.strictObject({
+  /** When a probe check and a water check are due again, months after, unless another date is given. */
+  probeMonths: positive.max(60),
+  waterMonths: positive.max(60),
+  /** A check that runs out within this is said to be due soon, days. */
+  dueSoonDays: notNegative.max(90),
+  /** Water above either is not used: TCA, ng/L (SCIENCE §8, from memory), free chlorine, mg/L (common practice). */
+  waterTcaMaxNgPerL: positive.max(1000),
+  waterFreeChlorineMaxMgPerL: positive.max(20),
+  /** A probe at a reference has settled when, over this long, s, … */
+  settleWindowS: positive.min(20, 'The window must be 20 s or more').max(600),
+  /** … its readings scatter by no more than this, °C (standard deviation), and … */
+  settleSdC: positive.max(5),
+  /** … drift by no more than this, °C/min. */
+  settleSlopeCPerMin: positive.max(5),
+})
+
+/** Defaults; a version of the settings from before these rules were written is read with them. */
+const defaultCheckRules: z.infer<typeof checkRulesSchema> = {
+  probeMonths: 6,
+  waterMonths: 3,
+  dueSoonDays: 14,
+  waterTcaMaxNgPerL: 1.5,
+  waterFreeChlorineMaxMgPerL: 0.1,
+  settleWindowS: 60,
+  settleSdC: 0.15,
+  settleSlopeCPerMin: 0.1,
+}
+
 export const siteRulesSchema = z.strictObject({
   dose: doseRulesSchema,
   indices: indexRulesSchema,
@@ -96,6 +125,7 @@ export const siteRulesSchema = z.strictObject({
   gaps: gapRulesSchema,
   limits: limitRulesSchema,
   forecast: forecastRulesSchema,
+  checks: checkRulesSchema.default(defaultCheckRules),
   /** A marked turn-over silences NO READING for this long, s; the gap still counts. */
   noReadingSilenceS: notNegative.max(600),
   /** Recipe tolerance when the recipe sets none, log10 of dose. */
@@ -124,6 +154,7 @@ export const defaultSiteRules: SiteRules = {
   gaps: { gapFromSpacings: 3, interpolateUpToS: 30, widenUpToS: 180, incompleteAboveShare: 0.05 },
   limits: { woodMaxHeldS: 10, climbWindowS: 60 },
   forecast: { rejoinMin: 2, horizonMin: 240 },
+  checks: defaultCheckRules,
   noReadingSilenceS: 90,
   doseToleranceLog10: 0.12,
   bendMin: 10,
