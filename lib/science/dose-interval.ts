@@ -1,4 +1,5 @@
 import { requireEqualLength, requireNotNegative } from './domain'
+import { doseFactorFromOffset, ratioFromLog10 } from './dose-ratio'
 import type { GapExtremes } from './gaps'
 import type { DoseModel } from './heat-dose'
 import { createDoseAccumulator } from './heat-dose'
@@ -83,7 +84,7 @@ export function shiftedDosesMin(
   doseMin: number,
 ): number[] {
   requireEqualLength('timeS', timeS, 'tempC', tempC)
-  const scales = offsetsC.map((offsetC) => Math.exp((Math.LN10 * offsetC) / model.zC))
+  const scales = offsetsC.map((offsetC) => doseFactorFromOffset(model, offsetC))
   const { baseTempC } = model
   if (baseTempC === undefined) return scales.map((scale) => scale * doseMin)
   const shifted = offsetsC.map((offsetC) =>
@@ -128,8 +129,8 @@ function boundsOf(doseMin: number, halves: readonly Half[]): DoseBounds {
   const { low, high } = combine(halves)
   const log10Low = Number.isFinite(low) ? low : null
   return {
-    lowMin: log10Low === null ? 0 : doseMin * 10 ** -log10Low,
-    highMin: doseMin * 10 ** high,
+    lowMin: log10Low === null ? 0 : doseMin * ratioFromLog10(-log10Low),
+    highMin: doseMin * ratioFromLog10(high),
     log10Low,
     log10High: high,
     log10Half: log10Low === null ? null : Math.max(log10Low, high),

@@ -1,3 +1,4 @@
+import { GAS_CONSTANT_J_PER_MOL_K, ZERO_CELSIUS_K } from './constants'
 import { requireFinite, requirePositive } from './domain'
 
 /**
@@ -20,10 +21,6 @@ export type DoseAccumulator = {
   readonly minutes: number
 }
 
-/** Molar gas constant, J/(mol·K); exact since the SI of 2019 (CODATA 2018). */
-const GAS_CONSTANT_J_PER_MOL_K = 8.314462618
-const ZERO_CELSIUS_K = 273.15
-
 /** Constants of the severity factor: Overend and Chornet, Phil. Trans. R. Soc. A 321 (1987) 523. */
 const SEVERITY_REF_TEMP_C = 100
 const SEVERITY_OMEGA_C = 14.75
@@ -41,7 +38,8 @@ function requireFiniteRate(rate: number, tempC: number): number {
 }
 
 /**
- * Rate of the heat dose, minutes at `refTempC` per minute: r = 10^((T − Tref)/z); 0 below a given base.
+ * Rate of the heat dose, minutes at `refTempC` per minute: r = 10^((T − Tref)/z), computed as exp(ln 10·(T − Tref)/z);
+ * 0 below a given base, 1/10 to the last digit but one a z below the reference.
  *
  * 1 at `refTempC`. The same form as the lethal rate of thermal processing (Stumbo 1973) and, with z = 14.75·ln 10
  * and Tref 100 °C, as the severity of Overend and Chornet (1987).
@@ -51,12 +49,7 @@ function requireFiniteRate(rate: number, tempC: number): number {
 export function doseRate(model: DoseModel, tempC: number): number {
   requireModel(model)
   requireFinite('tempC', tempC)
-  return rateAboveBase(model, tempC)
-}
-
-function rateAboveBase(model: DoseModel, tempC: number): number {
-  if (model.baseTempC !== undefined && tempC < model.baseTempC) return 0
-  return requireFiniteRate(10 ** ((tempC - model.refTempC) / model.zC), tempC)
+  return createSegmentDose(model).rateAt(tempC)
 }
 
 /**
@@ -65,10 +58,50 @@ function rateAboveBase(model: DoseModel, tempC: number): number {
  * |x| < 0.1). Both forms are symmetric, so a curve played backwards has the same dose.
  */
 function meanRate(rate1: number, rate2: number, logRatio: number): number {
-  if (logRatio === 0) return rate1
+  if (rate1 === rate2) return rate1
   if (Math.abs(logRatio) >= 0.1) return (rate2 - rate1) / logRatio
   const y2 = (logRatio * logRatio) / 4
   return Math.sqrt(rate1) * Math.sqrt(rate2) * (1 + (y2 / 6) * (1 + (y2 / 20) * (1 + y2 / 42)))
+}
+
+/** The dose of one straight segment at a time, for whoever walks a curve himself: see `createSegmentDose`. */
+export type SegmentDose = {
+  /** The rate at a temperature; as `doseRate`, without asking again whether the numbers are numbers. */
+  rateAt(tempC: number): number
+  /** Dose of a straight segment, minutes at the reference temperature, from its ends and their rates by `rateAt`. */
+  minutes(durationS: number, fromC: number, fromRate: number, toC: number, toRate: number): number
+}
+
+/**
+ * The one place where a segment's dose is computed: the accumulator, the stave model and the score all walk with it.
+ * Δt·(r2 − r1)/ln(r2/r1) for the part of the segment at or above the base. Temperatures must be finite.
+ *
+ * `rateAt` throws RangeError for a rate beyond any number.
+ *
+ * @throws RangeError when a constant of `model` is not finite or z is not above 0
+ */
+export function createSegmentDose(model: DoseModel): SegmentDose {
+  requireModel(model)
+  const { refTempC } = model
+  const logRatePerC = Math.LN10 / model.zC
+  const baseTempC = model.baseTempC ?? -Infinity
+  const rateAt = (tempC: number) =>
+    tempC < baseTempC ? 0 : requireFiniteRate(Math.exp(logRatePerC * (tempC - refTempC)), tempC)
+  const baseRate = model.baseTempC === undefined ? 0 : rateAt(model.baseTempC)
+  return {
+    rateAt,
+    minutes(durationS, fromC, fromRate, toC, toRate) {
+      const isFromBelow = fromC < baseTempC
+      const isToBelow = toC < baseTempC
+      if (isFromBelow && isToBelow) return 0
+      const riseC = toC - fromC
+      if (!isFromBelow && !isToBelow) return (durationS / 60) * meanRate(fromRate, toRate, logRatePerC * riseC)
+      // The segment crosses the base: only the part on the warm side counts.
+      const aboveC = Math.max(fromC, toC) - baseTempC
+      const countedS = durationS * (aboveC / Math.abs(riseC))
+      return (countedS / 60) * meanRate(baseRate, Math.max(fromRate, toRate), logRatePerC * aboveC)
+    },
+  }
 }
 
 /**
@@ -81,46 +114,29 @@ function meanRate(rate1: number, rate2: number, logRatio: number): number {
  * @throws RangeError when a constant of `model` is not finite or z is not above 0
  */
 export function createDoseAccumulator(model: DoseModel): DoseAccumulator {
-  requireModel(model)
-  const logRatePerC = Math.LN10 / model.zC
-  const baseTempC = model.baseTempC ?? -Infinity
-  const baseRate = model.baseTempC === undefined ? 0 : rateAboveBase(model, model.baseTempC)
-  let minutes = 0
-  let lastTimeS = -Infinity
-  let lastTempC = 0
-  let lastRate = 0
-  let isOpen = false
-
-  function segmentMinutes(durationS: number, tempC: number, rate: number): number {
-    const isLastBelow = lastTempC < baseTempC
-    const isBelow = tempC < baseTempC
-    if (isLastBelow && isBelow) return 0
-    const riseC = tempC - lastTempC
-    if (!isLastBelow && !isBelow) return (durationS / 60) * meanRate(lastRate, rate, logRatePerC * riseC)
-    // The segment crosses the base: only the part on the warm side counts.
-    const aboveC = Math.max(lastTempC, tempC) - baseTempC
-    const countedS = durationS * (aboveC / Math.abs(riseC))
-    return (countedS / 60) * meanRate(baseRate, Math.max(lastRate, rate), logRatePerC * aboveC)
-  }
-
+  const segment = createSegmentDose(model)
+  // Fields of an object, since a number that a closure changes is a new object each time.
+  const run = { minutes: 0, timeS: -Infinity, tempC: 0, rate: 0, isOpen: false }
   return {
     add(timeS, tempC) {
       requireFinite('timeS', timeS)
       requireFinite('tempC', tempC)
-      if (timeS < lastTimeS) throw new RangeError(`timeS must not fall: ${timeS} after ${lastTimeS}`)
-      const rate = rateAboveBase(model, tempC)
-      if (isOpen && timeS > lastTimeS) minutes += segmentMinutes(timeS - lastTimeS, tempC, rate)
-      lastTimeS = timeS
-      lastTempC = tempC
-      lastRate = rate
-      isOpen = true
-      return minutes
+      if (timeS < run.timeS) throw new RangeError(`timeS must not fall: ${timeS} after ${run.timeS}`)
+      const rate = segment.rateAt(tempC)
+      if (run.isOpen && timeS > run.timeS) {
+        run.minutes += segment.minutes(timeS - run.timeS, run.tempC, run.rate, tempC, rate)
+      }
+      run.timeS = timeS
+      run.tempC = tempC
+      run.rate = rate
+      run.isOpen = true
+      return run.minutes
     },
     break() {
-      isOpen = false
+      run.isOpen = false
     },
     get minutes() {
-      return minutes
+      return run.minutes
     },
   }
 }
@@ -135,9 +151,19 @@ export function createDoseAccumulator(model: DoseModel): DoseAccumulator {
  */
 export function equivalentMinutes(model: DoseModel, points: readonly CurvePoint[]): number {
   requirePoints(points)
-  const dose = createDoseAccumulator(model)
-  for (const point of points) dose.add(point.timeS, point.tempC)
-  return dose.minutes
+  const segment = createSegmentDose(model)
+  let minutes = 0
+  let fromS = Infinity
+  let fromC = 0
+  let fromRate = 0
+  for (const { timeS, tempC } of points) {
+    const rate = segment.rateAt(tempC)
+    if (timeS > fromS) minutes += segment.minutes(timeS - fromS, fromC, fromRate, tempC, rate)
+    fromS = timeS
+    fromC = tempC
+    fromRate = rate
+  }
+  return minutes
 }
 
 /** Names are made only on failure: a firing has ten thousand points and must cost little. */
@@ -212,7 +238,7 @@ function integrateRateOverTemp(eaOverRK: number, refTempK: number, lowK: number,
   )
 }
 
-/** Mean Arrhenius rate over a straight segment between two temperatures in kelvin. */
+/** Mean Arrhenius rate over a straight segment between two temperatures in kelvin, by quadrature. */
 function meanArrheniusRate(eaOverRK: number, refTempK: number, firstK: number, secondK: number): number {
   if (firstK === secondK) return rateAtKelvin(eaOverRK, refTempK, firstK)
   const lowK = Math.min(firstK, secondK)
@@ -221,10 +247,57 @@ function meanArrheniusRate(eaOverRK: number, refTempK: number, firstK: number, s
   return integrateRateOverTemp(eaOverRK, refTempK, Math.max(lowK, floorK), highK) / (highK - lowK)
 }
 
+/** Up to these the series below holds to 1e-10: some 0.7 °C between two readings of a toast. */
+const SERIES_UP_TO_SLOPE = 0.1
+const SERIES_UP_TO_BEND = 1e-4
+
+/** An Arrhenius integral one straight segment at a time: see `createArrheniusSegment`. */
+export type ArrheniusSegment = {
+  /** The rate at a temperature; as `arrheniusRate`, without asking again whether the numbers are numbers. */
+  rateAt(tempC: number): number
+  /** Minutes at the reference temperature of a straight segment, from its ends and their rates by `rateAt`. */
+  minutes(durationS: number, fromC: number, fromRate: number, toC: number, toRate: number): number
+}
+
 /**
- * ∫ exp((Ea/R)(1/Tref − 1/T)) dt over a curve, minutes at `refTempC`. Each straight segment is integrated to double
- * precision by Gauss–Legendre pieces. The product's slow index is Ea 76.0, its fast index 151.7 kJ/mol: Prins,
- * Ptasinski and Janssen, J. Anal. Appl. Pyrolysis 77 (2006) 28, fitted at 230–300 °C, so extrapolated here.
+ * The one place where an Arrhenius integral over a segment is computed. Temperatures must be finite.
+ *
+ * Over close readings ln(rate) is a parabola in T: with x = Ea·ΔT/(R·Tm²) and c = Ea·ΔT²/(R·Tm³) its mean rate is
+ * √(r1·r2)·(1 + x²/24 + x⁴/1920 + c/6 + x²c/240 + 7c²/240), to 1e-10; a wider segment goes through the quadrature.
+ *
+ * `rateAt` throws RangeError at or below absolute zero, and for a rate beyond any number.
+ *
+ * @throws RangeError when Ea is not above 0 J/mol or the reference is not above absolute zero
+ */
+export function createArrheniusSegment(eaJPerMol: number, refTempC: number): ArrheniusSegment {
+  const eaOverRK = requirePositive('eaJPerMol', eaJPerMol) / GAS_CONSTANT_J_PER_MOL_K
+  const refTempK = requireKelvin('refTempC', refTempC)
+  return {
+    rateAt(tempC) {
+      const tempK = tempC + ZERO_CELSIUS_K
+      if (!(tempK > 0)) requireKelvin('tempC', tempC)
+      return requireFiniteRate(rateAtKelvin(eaOverRK, refTempK, tempK), tempC)
+    },
+    minutes(durationS, fromC, fromRate, toC, toRate) {
+      const riseC = toC - fromC
+      const middleK = (fromC + toC) / 2 + ZERO_CELSIUS_K
+      const x = (eaOverRK * riseC) / (middleK * middleK)
+      const bend = x * (riseC / middleK)
+      if (Math.abs(x) > SERIES_UP_TO_SLOPE || bend > SERIES_UP_TO_BEND) {
+        const mean = meanArrheniusRate(eaOverRK, refTempK, fromC + ZERO_CELSIUS_K, toC + ZERO_CELSIUS_K)
+        return (durationS / 60) * mean
+      }
+      const x2 = x * x
+      const series = 1 + x2 / 24 + (x2 * x2) / 1920 + bend / 6 + (x2 * bend) / 240 + (7 * bend * bend) / 240
+      return (durationS / 60) * Math.sqrt(fromRate) * Math.sqrt(toRate) * series
+    },
+  }
+}
+
+/**
+ * ∫ exp((Ea/R)(1/Tref − 1/T)) dt over a curve, minutes at `refTempC`, each straight segment to 1e-10 or better
+ * (`createArrheniusSegment`). The product's slow index is Ea 76.0, its fast index 151.7 kJ/mol: Prins, Ptasinski and
+ * Janssen, J. Anal. Appl. Pyrolysis 77 (2006) 28, fitted at 230–300 °C, so extrapolated here.
  *
  * @throws RangeError for no points, a value that is not finite, a time that falls, Ea not above 0, or a temperature
  *   not above absolute zero
@@ -234,21 +307,19 @@ export function arrheniusEquivalentMinutes(
   refTempC: number,
   points: readonly CurvePoint[],
 ): number {
-  requirePositive('eaJPerMol', eaJPerMol)
-  const refTempK = requireKelvin('refTempC', refTempC)
+  const segment = createArrheniusSegment(eaJPerMol, refTempC)
   requirePoints(points)
-  const eaOverRK = eaJPerMol / GAS_CONSTANT_J_PER_MOL_K
   let minutes = 0
-  let lastTimeS = Infinity
-  let lastTempK = 0
+  let fromS = Infinity
+  let fromC = 0
+  let fromRate = 0
   points.forEach(({ timeS, tempC }, i) => {
-    const tempK = tempC + ZERO_CELSIUS_K
-    if (!(tempK > 0)) requireKelvin(`points[${i}].tempC`, tempC)
-    if (timeS > lastTimeS) {
-      minutes += ((timeS - lastTimeS) / 60) * meanArrheniusRate(eaOverRK, refTempK, lastTempK, tempK)
-    }
-    lastTimeS = timeS
-    lastTempK = tempK
+    if (!(tempC + ZERO_CELSIUS_K > 0)) requireKelvin(`points[${i}].tempC`, tempC)
+    const rate = segment.rateAt(tempC)
+    if (timeS > fromS) minutes += segment.minutes(timeS - fromS, fromC, fromRate, tempC, rate)
+    fromS = timeS
+    fromC = tempC
+    fromRate = rate
   })
   if (minutes === Infinity) throw new RangeError('points are too far above refTempC: the dose has no number')
   return minutes

@@ -1,6 +1,7 @@
 import { requireFinite, requireNotNegative, requirePositive } from './domain'
 import type { CurvePoint, DoseModel } from './heat-dose'
 import { equivalentMinutes } from './heat-dose'
+import { findRoot } from './root'
 
 /**
  * One leg of the fire. A `ramp` is a straight line from the temperature before it to `targetTempC` over `durationS`;
@@ -228,66 +229,4 @@ function solveTemperature(request: SolveStageRequest): SolveStageResult {
     }
   }
   return { feasible: true, value, stages: withTempC(value) }
-}
-
-/**
- * Brent's root finder (R. P. Brent 1973, chapter 4): bisection that takes a secant or inverse quadratic step whenever
- * that is safe. `low` and `high` bracket a sign change; the root is found to the last few digits of a double.
- */
-function findRoot(valueAt: (x: number) => number, low: number, high: number): number {
-  let a = low
-  let fa = valueAt(a)
-  let b = high
-  let fb = valueAt(b)
-  let c = a
-  let fc = fa
-  let step = b - a
-  let lastStep = step
-  for (let i = 0; i < 200; i += 1) {
-    if (fb > 0 === fc > 0) {
-      c = a
-      fc = fa
-      step = b - a
-      lastStep = step
-    }
-    if (Math.abs(fc) < Math.abs(fb)) {
-      ;[a, b, c] = [b, c, b]
-      ;[fa, fb, fc] = [fb, fc, fb]
-    }
-    const tolerance = 2 * Number.EPSILON * Math.abs(b) + 1e-13
-    const half = (c - b) / 2
-    if (Math.abs(half) <= tolerance || fb === 0) return b
-    const trial =
-      Math.abs(lastStep) >= tolerance && Math.abs(fa) > Math.abs(fb) ? interpolate(a, fa, b, fb, c, fc) : null
-    if (
-      trial !== null &&
-      2 * Math.abs(trial) < Math.min(3 * Math.abs(half) - tolerance, Math.abs(lastStep)) &&
-      trial * half > 0
-    ) {
-      lastStep = step
-      step = trial
-    } else {
-      step = half
-      lastStep = half
-    }
-    a = b
-    fa = fb
-    b += Math.abs(step) > tolerance ? step : Math.sign(half) * tolerance
-    fb = valueAt(b)
-  }
-  return b
-}
-
-/** Step from b: secant when only two points are known, inverse quadratic through three. Null when it has no number. */
-function interpolate(a: number, fa: number, b: number, fb: number, c: number, fc: number): number | null {
-  const s = fb / fa
-  if (a === c) {
-    const secant = ((c - b) * s) / (1 - s)
-    return Number.isFinite(secant) ? secant : null
-  }
-  const q = fa / fc
-  const r = fb / fc
-  const p = s * ((c - b) * q * (q - r) - (b - a) * (r - 1))
-  const step = -p / ((q - 1) * (r - 1) * (s - 1))
-  return Number.isFinite(step) ? step : null
 }

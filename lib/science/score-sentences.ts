@@ -1,4 +1,6 @@
+import { percentAboveFromLog10, percentBelowFromLog10 } from './dose-ratio'
 import type { BrokenLimit, Score, ScoreTerm, Verdict } from './score-types'
+import { fahrenheitDifferenceFromC, fahrenheitFromC } from './temperature'
 
 /** The unit in which a sentence says temperatures. Differences are converted as differences. */
 export type ShownUnit = 'C' | 'F'
@@ -7,11 +9,11 @@ export type ShownUnit = 'C' | 'F'
 export type SentenceContext = { doseMin: number | null; targetDoseMin: number; refTempC: number }
 
 function showTemp(tempC: number, unit: ShownUnit): string {
-  return unit === 'C' ? `${tempC.toFixed(0)} °C` : `${(tempC * 1.8 + 32).toFixed(0)} °F`
+  return unit === 'C' ? `${tempC.toFixed(0)} °C` : `${fahrenheitFromC(tempC).toFixed(0)} °F`
 }
 
 function showDifference(differenceC: number, unit: ShownUnit): string {
-  return unit === 'C' ? `${differenceC.toFixed(1)} °C` : `${(differenceC * 1.8).toFixed(1)} °F`
+  return unit === 'C' ? `${differenceC.toFixed(1)} °C` : `${fahrenheitDifferenceFromC(differenceC).toFixed(1)} °F`
 }
 
 /** A dose to three figures, without an exponent. */
@@ -29,8 +31,8 @@ export function showMinutes(minutes: number): string {
 
 /** log10 of a ratio as a percentage of the target, "12 % above". */
 function showRatio(log10Ratio: number): string {
-  const percent = (10 ** Math.abs(log10Ratio) - 1) * 100
-  const downPercent = (1 - 10 ** -Math.abs(log10Ratio)) * 100
+  const percent = percentAboveFromLog10(Math.abs(log10Ratio))
+  const downPercent = percentBelowFromLog10(Math.abs(log10Ratio))
   if (percent < 0.5) return 'on'
   return log10Ratio > 0 ? `${percent.toFixed(0)} % above` : `${downPercent.toFixed(0)} % below`
 }
@@ -78,8 +80,8 @@ function doseFact(measured: number, allowed: number, context: SentenceContext, u
   const at = `min at ${showTemp(context.refTempC, unit)}`
   const target = `the target of ${showDose(context.targetDoseMin)}`
   const figure = context.doseMin === null ? 'No dose' : `Dose ${showDose(context.doseMin)} ${at}`
-  const upPercent = ((10 ** allowed - 1) * 100).toFixed(0)
-  const downPercent = ((1 - 10 ** -allowed) * 100).toFixed(0)
+  const upPercent = percentAboveFromLog10(allowed).toFixed(0)
+  const downPercent = percentBelowFromLog10(allowed).toFixed(0)
   return `${figure} is ${showRatio(measured)} ${target}; from ${downPercent} % below to ${upPercent} % above is allowed.`
 }
 

@@ -1,10 +1,11 @@
 import { requireFinite, requirePositive } from './domain'
 import type { DoseResult } from './dose-interval'
 import { doseInterval, probeErrorC, readDoseMin } from './dose-interval'
+import { toleranceBoundsMin } from './dose-ratio'
 import type { FilledSeries } from './gaps'
 import { fillGaps, gapExtremes } from './gaps'
 import type { CurvePoint } from './heat-dose'
-import { arrheniusEquivalentMinutes, arrheniusRate, equivalentMinutes } from './heat-dose'
+import { arrheniusEquivalentMinutes, createArrheniusSegment, equivalentMinutes } from './heat-dose'
 import { planCurve } from './plan'
 import { findClimbAbove, findHeldAbove } from './score-limits'
 import { ruleset1 } from './score-ruleset'
@@ -171,8 +172,7 @@ function verdictOf(
   targetDoseMin: number,
   toleranceLog10: number,
 ): Verdict {
-  const lowestMin = targetDoseMin * 10 ** -toleranceLog10
-  const highestMin = targetDoseMin * 10 ** toleranceLog10
+  const { lowMin: lowestMin, highMin: highestMin } = toleranceBoundsMin(targetDoseMin, toleranceLog10)
   const bounds = dose?.sameMount ?? { lowMin: 0, highMin: 0 }
   const holds: Record<Verdict, boolean> = {
     incomplete: isIncomplete || dose === null,
@@ -323,36 +323,17 @@ function indicesOf(
   }
 }
 
-/**
- * Change over a segment up to which ln(rate) is taken as a parabola in temperature, °C: with it the mean rate is
- * √(r1·r2)·(1 + x²/24)·(1 + c/6), x = ln(r2/r1), c = Ea·ΔT²/(R·T³); what is left out is below 1e-6.
- */
-const PARABOLIC_UP_TO_C = 3
-const GAS_CONSTANT_J_PER_MOL_K = 8.314462618
-
-/** The Arrhenius integral over close readings; segments that move far go through the exact one. */
+/** The Arrhenius integral over joined readings. */
 function indexMin(eaJPerMol: number, refTempC: number, filled: FilledSeries): number {
-  const eaOverRK = eaJPerMol / GAS_CONSTANT_J_PER_MOL_K
+  const segment = createArrheniusSegment(eaJPerMol, refTempC)
   let minutes = 0
   let lastC = filled.tempC[0] ?? NaN
-  let lastRate = arrheniusRate(eaJPerMol, refTempC, lastC)
+  let lastRate = segment.rateAt(lastC)
   for (let i = 1; i < filled.timeS.length; i += 1) {
     const tempC = filled.tempC[i] ?? NaN
-    const rate = arrheniusRate(eaJPerMol, refTempC, tempC)
+    const rate = segment.rateAt(tempC)
     const durationS = (filled.timeS[i] ?? NaN) - (filled.timeS[i - 1] ?? NaN)
-    const riseC = tempC - lastC
-    if (Math.abs(riseC) <= PARABOLIC_UP_TO_C) {
-      const middle = Math.sqrt(lastRate * rate)
-      const middleK = (tempC + lastC) / 2 + 273.15
-      const x = (eaOverRK * riseC) / (middleK * middleK)
-      const bend = (eaOverRK * riseC * riseC) / (middleK * middleK * middleK)
-      minutes += (durationS / 60) * middle * (1 + (x * x) / 24) * (1 + bend / 6)
-    } else if (durationS > 0) {
-      minutes += arrheniusEquivalentMinutes(eaJPerMol, refTempC, [
-        { timeS: 0, tempC: lastC },
-        { timeS: durationS, tempC },
-      ])
-    }
+    minutes += segment.minutes(durationS, lastC, lastRate, tempC, rate)
     lastC = tempC
     lastRate = rate
   }

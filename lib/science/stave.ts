@@ -1,5 +1,8 @@
+import { LATENT_HEAT_J_PER_KG, STEFAN_BOLTZMANN_W_PER_M2K4, ZERO_CELSIUS_K } from './constants'
 import { requireFinite, requireNotNegative, requirePositive, requireWithin } from './domain'
-import type { CurvePoint, DoseModel } from './heat-dose'
+import { doseFactorFromOffset } from './dose-ratio'
+import type { CurvePoint, DoseModel, SegmentDose } from './heat-dose'
+import { createSegmentDose } from './heat-dose'
 import {
   CONDUCTIVITY_MOISTURE_LIMIT_PERCENT,
   conductivityWPerMK,
@@ -104,17 +107,15 @@ type StaveWork = {
   readonly right: Float64Array
   readonly factor: Float64Array
   readonly drying: Uint8Array
+  readonly segment: SegmentDose
 }
 
-const ZERO_CELSIUS_K = 273.15
-/** Latent heat of water near 100 °C, J/kg, and the span over which it is charged, °C (SCIENCE §3). */
-const LATENT_HEAT_J_PER_KG = 2.26e6
+/** The span over which the heat of drying is charged, °C (SCIENCE §3). */
 const DRYING_FROM_C = 95
 const DRYING_TO_C = 135
 /** k rises 2–3 % per 10 °C above 24 °C (Wood Handbook, FPL-GTR-282, chapter 4). */
 const CONDUCTIVITY_RISE_PER_C = 0.0025
 const CONDUCTIVITY_TABLE_TEMP_C = 24
-const STEFAN_BOLTZMANN_W_PER_M2K4 = 5.670374419e-8
 const DEFAULT_LONGEST_STEP_S = 2
 const FACE_SMOOTHING_S = 15
 /** A step is solved when its last iteration moved no node by more than this. */
@@ -176,7 +177,6 @@ function requireOptions(options: StaveOptions): void {
   requireNotNegative('probeErrorC', options.probeErrorC ?? 0)
   requireWithin('cellMm', options.cellMm ?? DEFAULT_CELL_MM, 0.02, 5)
   requirePositive('longestStepS', options.longestStepS ?? DEFAULT_LONGEST_STEP_S)
-  requirePositive('zC', options.dose.zC)
 }
 
 /**
@@ -193,6 +193,7 @@ export function createStave(options: StaveOptions): StaveState {
   )
   const count = depths.length
   const array = (value = 0) => new Float64Array(count).fill(value)
+  const segment = createSegmentDose(options.dose)
   const depthMm = Float64Array.from(depths)
   const distanceM = Float64Array.from(
     { length: count - 1 },
@@ -213,7 +214,7 @@ export function createStave(options: StaveOptions): StaveState {
     moisturePercent: array(options.startTempC >= DRYING_TO_C ? 0 : options.moisturePercent),
     highestTempC: array(options.startTempC),
     doseMin: array(),
-    doseRate: array(doseRateAt(options.dose, options.startTempC)),
+    doseRate: array(segment.rateAt(options.startTempC)),
     capacityA: array(),
     capacityB: array(),
     conductivity24: array(),
@@ -232,6 +233,7 @@ export function createStave(options: StaveOptions): StaveState {
       right: array(),
       factor: array(),
       drying: new Uint8Array(count),
+      segment,
     },
   }
   for (let i = 0; i < count; i += 1) updateProperties(state, i)
@@ -259,11 +261,6 @@ function updateProperties(state: StaveState, node: number): void {
     specificGravity,
     Math.min(moisturePercent, CONDUCTIVITY_MOISTURE_LIMIT_PERCENT),
   )
-}
-
-function doseRateAt(dose: DoseModel, tempC: number): number {
-  if (dose.baseTempC !== undefined && tempC < dose.baseTempC) return 0
-  return Math.exp((Math.LN10 / dose.zC) * (tempC - dose.refTempC))
 }
 
 /**
@@ -545,31 +542,15 @@ function dryNode(state: StaveState, node: number): void {
 
 /** Exact dose of the straight segment from the old to the new temperature (SCIENCE §2), cut at the base. */
 function addDose(state: StaveState, node: number, dtS: number): void {
-  const { dose } = state.options
+  const { segment, oldTempC } = state.work
   const newC = at(state.tempC, node)
-  const oldC = at(state.work.oldTempC, node)
-  const oldRate = at(state.doseRate, node)
-  const baseC = dose.baseTempC ?? -Infinity
+  const oldC = at(oldTempC, node)
+  const baseC = state.options.dose.baseTempC ?? -Infinity
   if (newC < baseC && oldC < baseC) return
-  const newRate = doseRateAt(dose, newC)
+  const newRate = segment.rateAt(newC)
+  const minutes = segment.minutes(dtS, oldC, at(state.doseRate, node), newC, newRate)
+  state.doseMin[node] = at(state.doseMin, node) + minutes
   state.doseRate[node] = newRate
-  const perC = Math.LN10 / dose.zC
-  if (newC >= baseC && oldC >= baseC) {
-    state.doseMin[node] =
-      at(state.doseMin, node) + (dtS / 60) * meanRate(oldRate, newRate, perC * (newC - oldC))
-    return
-  }
-  const aboveC = Math.max(newC, oldC) - baseC
-  const countedMin = ((dtS / 60) * aboveC) / Math.abs(newC - oldC)
-  const mean = meanRate(doseRateAt(dose, baseC), Math.max(oldRate, newRate), perC * aboveC)
-  state.doseMin[node] = at(state.doseMin, node) + countedMin * mean
-}
-
-/** Mean of an exponential over a straight segment; by its series where the difference would cancel. */
-function meanRate(rate1: number, rate2: number, logRatio: number): number {
-  if (Math.abs(logRatio) >= 0.1) return (rate2 - rate1) / logRatio
-  const square = (logRatio * logRatio) / 4
-  return Math.sqrt(rate1 * rate2) * (1 + (square / 6) * (1 + (square / 20) * (1 + square / 42)))
 }
 
 /** Index of the last node at or before a depth, so that the next one lies behind it. */
@@ -636,7 +617,7 @@ function deepestAboveMm(state: StaveState, doseMin: number): number | null {
 export function toastDepthMm(state: StaveState): DepthRangeMm {
   const { toastDepthDoseMin, probeErrorC, probeDepthErrorMm, diffusivityErrorShare, dose, thicknessMm } =
     state.options
-  const factor = Math.exp((Math.LN10 * (probeErrorC ?? 0)) / dose.zC)
+  const factor = doseFactorFromOffset(dose, probeErrorC ?? 0)
   const value = deepestAboveMm(state, toastDepthDoseMin)
   const widest = deepestAboveMm(state, toastDepthDoseMin / factor)
   if (value === null) return { low: 0, value: 0, high: widest ?? 0 }

@@ -1,3 +1,4 @@
+import { ZERO_CELSIUS_K } from './constants'
 import { requireWithin } from './domain'
 
 /**
@@ -19,10 +20,9 @@ const N9 = -0.23855557567849
 const N10 = 0.65017534844798e3
 
 /** The saturation line runs from the melting point at atmospheric pressure to the critical point. */
-const LOWEST_TEMP_K = 273.15
+const LOWEST_TEMP_K = ZERO_CELSIUS_K
 const CRITICAL_TEMP_K = 647.096
 const CRITICAL_PRESSURE_MPA = 22.064
-const ZERO_CELSIUS_K = 273.15
 
 /** IAPWS R7-97(2012), Eq. 30, for a temperature already in its domain. */
 function pressureAt(tempK: number): number {
