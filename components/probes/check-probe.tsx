@@ -38,7 +38,7 @@ export function CheckProbe({ probe, unit }: { probe: ProbeDto; unit: Temperature
           name: 'uncertaintyC',
           label: 'Uncertainty of the check (k = 2)',
           kind: 'difference',
-          hint: 'Half-width: reference, reading and repeatability together.',
+          hint: 'Half-width of reading and repeatability; for a block its own uncertainty too. Ice and boiling water have theirs added.',
         },
         {
           name: 'stationPressureHpa',

@@ -1,4 +1,4 @@
-import type { ProbeCorrection } from '@/lib/ingest/probe-correction'
+import type { ProbeCorrection } from '@/lib/science/probe-correction'
 import type { ThermocoupleType } from '@/lib/science/thermocouple'
 import { compensatedTempC } from '@/lib/science/thermocouple'
 

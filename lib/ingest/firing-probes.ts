@@ -1,8 +1,8 @@
 import type { EntityManager } from '@mikro-orm/postgresql'
 import { queryRows } from '@/lib/db/orm'
 import type { Conversion } from '@/lib/ingest/convert-reading'
-import type { CheckRow } from '@/lib/ingest/probe-correction'
-import { probeCorrectionAt } from '@/lib/ingest/probe-correction'
+import type { CheckRow } from '@/lib/science/probe-correction'
+import { probeCorrectionAt } from '@/lib/science/probe-correction'
 import type { ProbePlace } from '@/lib/science/score-types'
 import type { ThermocoupleType } from '@/lib/science/thermocouple'
 

@@ -8,18 +8,18 @@ import { inTransaction } from '@/lib/db/orm'
 import { AppError, invalidField } from '@/lib/errors'
 import type { recordProbeCheckSchema } from '@/lib/probes/schema'
 import { now } from '@/lib/runtime'
-import { boilingPointC } from '@/lib/science/steam'
+import { referencePointC } from '@/lib/science/probe-correction'
 
 type Input = z.infer<typeof recordProbeCheckSchema> & { probeId: string }
 
 /** What the reference stood at: 0 °C for ice, the IF97 boiling point for the day's station pressure, or as given. */
 function referenceTempC(input: Input): number {
-  if (input.kind === 'ice') return 0
+  if (input.kind === 'ice') return referencePointC({ kind: 'ice' })
   if (input.kind === 'boiling') {
     if (input.stationPressureHpa === undefined) {
       throw invalidField('stationPressureHpa', 'Give the station pressure of the day, not the sea-level one.')
     }
-    return boilingPointC(input.stationPressureHpa)
+    return referencePointC({ kind: 'boiling', stationPressureHpa: input.stationPressureHpa })
   }
   if (input.referenceTempC === undefined)
     throw invalidField('referenceTempC', 'Give what the reference stood at.')

@@ -54,16 +54,18 @@ export type DoseIntervalInput = {
 }
 
 /**
- * Error of a probe's reading at a temperature, °C, k = 2: the check's uncertainty where a check that has not expired
- * spans from `fromTempC` to `toTempC`, otherwise the limit of its IEC class at `toTempC`; null where the class makes
- * no claim.
+ * Error of a probe's corrected reading, °C, k = 2. Where a check that has not expired spans from `fromTempC` to
+ * `toTempC`: the check's uncertainty. Elsewhere no tighter claim than the limit of its IEC class at `toTempC` is made,
+ * nor a tighter one than the check itself made: the larger of the two. Null where the class makes no claim.
  */
 export function probeErrorC(probe: ProbeErrorFacts, fromTempC: number, toTempC: number): number | null {
   const { check } = probe
+  const checkedC = check === null ? 0 : requireNotNegative('uncertaintyC', check.uncertaintyC)
   if (check !== null && !check.isExpired && check.lowTempC <= fromTempC && check.highTempC >= toTempC) {
-    return requireNotNegative('uncertaintyC', check.uncertaintyC)
+    return checkedC
   }
-  return toleranceC(probe.type, probe.iecClass, toTempC)
+  const classC = toleranceC(probe.type, probe.iecClass, toTempC)
+  return classC === null ? null : Math.max(classC, checkedC)
 }
 
 /**

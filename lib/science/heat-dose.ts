@@ -95,7 +95,8 @@ export function createSegmentDose(model: DoseModel): SegmentDose {
       const isToBelow = toC < baseTempC
       if (isFromBelow && isToBelow) return 0
       const riseC = toC - fromC
-      if (!isFromBelow && !isToBelow) return (durationS / 60) * meanRate(fromRate, toRate, logRatePerC * riseC)
+      if (!isFromBelow && !isToBelow)
+        return (durationS / 60) * meanRate(fromRate, toRate, logRatePerC * riseC)
       // The segment crosses the base: only the part on the warm side counts.
       const aboveC = Math.max(fromC, toC) - baseTempC
       const countedS = durationS * (aboveC / Math.abs(riseC))

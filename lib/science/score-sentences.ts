@@ -13,7 +13,9 @@ function showTemp(tempC: number, unit: ShownUnit): string {
 }
 
 function showDifference(differenceC: number, unit: ShownUnit): string {
-  return unit === 'C' ? `${differenceC.toFixed(1)} °C` : `${fahrenheitDifferenceFromC(differenceC).toFixed(1)} °F`
+  return unit === 'C'
+    ? `${differenceC.toFixed(1)} °C`
+    : `${fahrenheitDifferenceFromC(differenceC).toFixed(1)} °F`
 }
 
 /** A dose to three figures, without an exponent. */

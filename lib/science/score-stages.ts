@@ -1,29 +1,14 @@
 import { requireFinite, requireNotNegative, requirePositive } from './domain'
+import { bandHalfWidthC } from './plan-band'
 import type { MatchedStage, ScoreStage } from './score-types'
 
 /** One stage as a leg of the plan: from the temperature before it to its own, with the half-width of its band. */
 export type PlanLeg = { fromTempC: number; toTempC: number; minutes: number; halfWidthC: number }
 
 /**
- * Half-width of a stage's band, °C. On a ramp the wider of ± the stage's band and ±2 min along time (the climb times
- * two minutes), but no wider than the ramp's own rise; on a hold the stage's band.
- *
- * @param rampBandMin minutes along time, from the ruleset
- */
-export function bandHalfWidthC(
-  stage: { kind: 'ramp' | 'hold'; targetTempC: number; minutes: number; bandC: number },
-  fromTempC: number,
-  rampBandMin: number,
-): number {
-  if (stage.kind === 'hold') return stage.bandC
-  const riseC = Math.abs(stage.targetTempC - fromTempC)
-  const alongTimeC = stage.minutes > rampBandMin ? (riseC / stage.minutes) * rampBandMin : riseC
-  return Math.max(stage.bandC, alongTimeC)
-}
-
-/**
  * The plan as legs.
  *
+ * @param rampBandMin minutes along time, from the ruleset
  * @throws RangeError for no stages, or a value that is not finite, a negative length or a band not above 0
  */
 export function planLegs(
@@ -42,7 +27,16 @@ export function planLegs(
       fromTempC,
       toTempC: stage.targetTempC,
       minutes: stage.minutes,
-      halfWidthC: bandHalfWidthC(stage, fromTempC, rampBandMin),
+      halfWidthC: bandHalfWidthC(
+        {
+          kind: stage.kind,
+          startTempC: fromTempC,
+          endTempC: stage.targetTempC,
+          durationS: stage.minutes * 60,
+          bandC: stage.bandC,
+        },
+        rampBandMin,
+      ),
     }
     fromTempC = stage.targetTempC
     return leg

@@ -45,6 +45,8 @@ describe('the two intervals of a dose', () => {
     expect(probeErrorC({ ...probe, check }, 120, 206)).toBe(1.5)
     expect(probeErrorC({ ...probe, check: { ...check, isExpired: true } }, 120, 200)).toBe(1.5)
     expect(probeErrorC({ ...probe, iecClass: 2 }, 120, 200)).toBe(2.5)
+    // A check that itself is worse than the class claims no better for what lies beyond it.
+    expect(probeErrorC({ ...probe, check: { ...check, uncertaintyC: 2 } }, 120, 206)).toBe(2)
   })
 
   test('a class that makes no claim there gives no absolute interval, and the same-mount one stays', () => {

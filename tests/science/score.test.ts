@@ -7,7 +7,8 @@ import { planCurve, planTempCAt } from '../../lib/science/plan'
 import { ruleset1, scoreFiring } from '../../lib/science/score'
 import { climbsCPerMin, findHeldAbove } from '../../lib/science/score-limits'
 import { describeScore, describeTerm } from '../../lib/science/score-sentences'
-import { bandHalfWidthC, matchStages } from '../../lib/science/score-stages'
+import { bandHalfWidthC } from '../../lib/science/plan-band'
+import { matchStages } from '../../lib/science/score-stages'
 import type { Score, ScoreInput, ScoreRecipe, ScoreTermKey } from '../../lib/science/score-types'
 import { defaultSiteRules, siteRulesSchema } from '../../lib/science/site-rules'
 
@@ -190,10 +191,14 @@ describe('the dose term and the verdict', () => {
 
 describe('band and shape', () => {
   test('on a ramp the band is the wider of ±°C and ±2 min along time', () => {
-    expect(bandHalfWidthC({ kind: 'ramp', targetTempC: 188, minutes: 8, bandC: 7 }, 140, 2)).toBe(12)
-    expect(bandHalfWidthC({ kind: 'ramp', targetTempC: 198, minutes: 7, bandC: 7 }, 188, 2)).toBe(7)
-    expect(bandHalfWidthC({ kind: 'hold', targetTempC: 188, minutes: 18, bandC: 7 }, 188, 2)).toBe(7)
-    expect(bandHalfWidthC({ kind: 'ramp', targetTempC: 188, minutes: 0, bandC: 7 }, 140, 2)).toBe(48)
+    const band = (kind: 'ramp' | 'hold', startTempC: number, endTempC: number, minutes: number) =>
+      bandHalfWidthC({ kind, startTempC, endTempC, durationS: minutes * 60, bandC: 7 })
+    expect(band('ramp', 140, 188, 8)).toBe(12)
+    expect(band('ramp', 188, 198, 7)).toBe(7)
+    expect(band('hold', 188, 188, 18)).toBe(7)
+    // Moved along time the line never leaves the ramp's ends.
+    expect(band('ramp', 140, 188, 1)).toBe(48)
+    expect(band('ramp', 140, 188, 0)).toBe(48)
   })
 
   test('a share of 60 % in band loses 9 of 15', () => {
