@@ -6,6 +6,7 @@ import {
   requireProbability,
   requireWhole,
 } from './domain'
+import type { Estimate } from './estimate'
 import { chiSquareQuantile, mean } from './statistics'
 
 /** d2 for the moving range of two: mean range of two normal values in units of their standard deviation (ASTM E2587). */
@@ -213,9 +214,6 @@ export function processCapability(input: CapabilityInput): {
 
 /** Below this many firings a capability says too little, and the product refuses to show one. */
 export const CAPABILITY_LEAST_COUNT = 30
-
-/** A figure with the ends of its confidence interval. */
-export type Estimate = { value: number; low: number; high: number }
 
 /**
  * Cp and Cpk with confidence intervals for normal data. Cp: Cp·√(χ²(α/2; n − 1)/(n − 1)) to the same with 1 − α/2

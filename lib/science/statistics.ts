@@ -159,6 +159,40 @@ export function linearRegression(x: readonly number[], y: readonly number[]): Li
   }
 }
 
+/** A line through the origin fitted by least squares; slopeSd is a standard error, residualSd has divisor n − 1. */
+export type LineThroughOrigin = {
+  slope: number
+  slopeSd: number
+  residualSd: number
+  /** 1 − Σ(residual)²/Σy²: of y itself, not of its spread; not to be compared with that of another kind of line. */
+  rSquaredUncentred: number
+}
+
+/**
+ * Least squares line y = slope·x, where x of 0 can only give y of 0: to the certified digits of NIST StRD NoInt2.
+ *
+ * @throws RangeError for fewer than two points, unequal lengths, a value that is not finite, or all x or all y 0
+ */
+export function linearRegressionThroughOrigin(x: readonly number[], y: readonly number[]): LineThroughOrigin {
+  requireNumbers('x', x, 2)
+  requireNumbers('y', y, 2)
+  requireEqualLength('x', x, 'y', y)
+  const yAt = (i: number) => y[i] ?? 0
+  const xSquares = x.reduce((sum, value) => sum + value * value, 0)
+  const ySquares = y.reduce((sum, value) => sum + value * value, 0)
+  if (xSquares === 0) throw new RangeError('x must not all be 0: that says nothing about a slope')
+  if (ySquares === 0) throw new RangeError('y must not all be 0: there is nothing to explain')
+  const slope = x.reduce((sum, value, i) => sum + value * yAt(i), 0) / xSquares
+  const residualSquares = x.reduce((sum, value, i) => sum + (yAt(i) - slope * value) ** 2, 0)
+  const residualSd = Math.sqrt(residualSquares / (x.length - 1))
+  return {
+    slope,
+    slopeSd: residualSd / Math.sqrt(xSquares),
+    residualSd,
+    rSquaredUncentred: 1 - residualSquares / ySquares,
+  }
+}
+
 /** One-way analysis of variance: sums of squares, degrees of freedom, mean squares, F and its upper-tail p. */
 export type OneWayAnova = {
   ssBetween: number
@@ -202,29 +236,6 @@ export function oneWayAnova(groups: readonly (readonly number[])[]): OneWayAnova
   // The upper tail of F is the lower tail of 1/F with the degrees of freedom changed round: no digits cancel.
   const p = f === 0 ? 1 : fCdf(1 / f, dfWithin, dfBetween)
   return { ssBetween, ssWithin, dfBetween, dfWithin, msBetween, msWithin, f, p }
-}
-
-/** Variances between and within groups, in the square of the values' unit, and the share that lies between. */
-export type VarianceComponents = {
-  between: number
-  within: number
-  betweenShare: number
-  effectiveGroupSize: number
-}
-
-/**
- * Variance components of a one-way random model: within = MSW, between = max(0, (MSB − MSW)/n₀), where n₀ =
- * (N − Σn²/N)/(k − 1) is the group size, or its like for unequal groups. Montgomery, Design and Analysis of Experiments.
- *
- * @throws RangeError as `oneWayAnova`
- */
-export function varianceComponents(groups: readonly (readonly number[])[]): VarianceComponents {
-  const { msBetween, msWithin, dfBetween } = oneWayAnova(groups)
-  const total = groups.reduce((sum, group) => sum + group.length, 0)
-  const squares = groups.reduce((sum, group) => sum + group.length * group.length, 0)
-  const effectiveGroupSize = (total - squares / total) / dfBetween
-  const between = Math.max(0, (msBetween - msWithin) / effectiveGroupSize)
-  return { between, within: msWithin, betweenShare: between / (between + msWithin), effectiveGroupSize }
 }
 
 /** The value farthest from the mean, how far it is in standard deviations, and what that may be at `alpha`. */

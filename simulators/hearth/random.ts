@@ -1,3 +1,5 @@
+import { seededRandom } from '@/lib/science/seeded-random'
+
 /** Random numbers that are the same for the same seed, on every machine. */
 export type Random = {
   /** Even over [0, 1). */
@@ -10,15 +12,9 @@ export type Random = {
   fork: (purpose: string) => Random
 }
 
-/** Mulberry32 (T. Ettinger, public domain): 32 bits of state, ample for a hearth. `seed` is taken modulo 2^32. */
+/** Random numbers from a seed, which is taken modulo 2^32. */
 export function createRandom(seed: number): Random {
-  let state = seed >>> 0
-  const next = () => {
-    state = (state + 0x6d2b79f5) >>> 0
-    let mixed = Math.imul(state ^ (state >>> 15), state | 1)
-    mixed ^= mixed + Math.imul(mixed ^ (mixed >>> 7), mixed | 61)
-    return ((mixed ^ (mixed >>> 14)) >>> 0) / 4_294_967_296
-  }
+  const next = seededRandom(seed)
   // Box–Muller, one of the pair: the other would make the order of calls matter more than it should.
   const gaussian = () => Math.sqrt(-2 * Math.log(1 - next())) * Math.cos(2 * Math.PI * next())
   return {

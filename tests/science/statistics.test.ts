@@ -7,12 +7,12 @@ import {
   grubbsTest,
   lag1Autocorrelation,
   linearRegression,
+  linearRegressionThroughOrigin,
   mean,
   nonlinearLeastSquares,
   oneWayAnova,
   sampleSd,
   tQuantile,
-  varianceComponents,
 } from '../../lib/science/statistics'
 import {
   expectClose,
@@ -173,6 +173,50 @@ describe('straight line', () => {
     for (const value of notNumbers) {
       expectRangeError('x[0]', () => linearRegression([value, 2, 3], [1, 2, 3]))
       expectRangeError('y[2]', () => linearRegression([1, 2, 3], [1, 2, value]))
+    }
+  })
+})
+
+describe('straight line through the origin', () => {
+  testPublished('stats.linear_regression_no_intercept', (check) => {
+    const expected = z
+      .object({ b1: z.number(), sd_b1: z.number(), residual_sd: z.number(), r2_uncentred: z.number() })
+      .parse(check.expected)
+    const fit = linearRegressionThroughOrigin(
+      numbersShape.parse(check.inputs.x),
+      numbersShape.parse(check.inputs.y),
+    )
+    expectClose(check, fit.slope, expected.b1)
+    expectClose(check, fit.slopeSd, expected.sd_b1)
+    expectClose(check, fit.residualSd, expected.residual_sd)
+    expectClose(check, fit.rSquaredUncentred, expected.r2_uncentred)
+  })
+  it('law: residuals are at right angles to x, and a change of unit takes the slope along', () => {
+    fc.assert(
+      fc.property(values, (noise) => {
+        const x = noise.map((_, i) => i - 1)
+        if (noise.every((value) => Math.abs(value) < 1e-3)) return
+        const { slope } = linearRegressionThroughOrigin(x, noise)
+        const along = x.reduce((sum, v, i) => sum + v * ((noise[i] ?? 0) - slope * v), 0)
+        const size = Math.max(...noise.map(Math.abs), 1)
+        expectWithin(along, 0, 1e-9 * size * x.length ** 2)
+        const scaled = linearRegressionThroughOrigin(
+          x.map((v) => 2 * v),
+          noise.map((v) => 6 * v),
+        )
+        expectWithin(scaled.slope, 3 * slope, 1e-9 * size)
+      }),
+      propertyRun,
+    )
+  })
+  it('names lengths that differ, nothing but 0, too few points and what is no number', () => {
+    expectRangeError('y', () => linearRegressionThroughOrigin([1, 2], [1, 2, 3]))
+    expectRangeError('x', () => linearRegressionThroughOrigin([0, 0], [1, 2]))
+    expectRangeError('y', () => linearRegressionThroughOrigin([1, 2], [0, 0]))
+    expectRangeError('x', () => linearRegressionThroughOrigin([1], [1]))
+    for (const value of notNumbers) {
+      expectRangeError('x[0]', () => linearRegressionThroughOrigin([value, 2], [1, 2]))
+      expectRangeError('y[1]', () => linearRegressionThroughOrigin([1, 2], [1, value]))
     }
   })
 })
@@ -416,29 +460,6 @@ describe('analysis of variance', () => {
     expectWithin(anova.f, expected.F, relative * expected.F)
     // p belongs to F: the quantile at 1 − p is F again.
     expectWithin(fQuantile(1 - anova.p, anova.dfBetween, anova.dfWithin), anova.f, 1e-6 * anova.f)
-  })
-  testPublished('anova.oneway_random', (check) => {
-    const groups = tableShape.parse(check.inputs.groups)
-    const expected = z
-      .object({
-        SS_between: z.number(),
-        SS_within: z.number(),
-        MS_between: z.number(),
-        MS_within: z.number(),
-        F: z.number(),
-        var_between: z.number(),
-        var_within: z.number(),
-      })
-      .parse(check.expected)
-    const anova = oneWayAnova(groups)
-    const parts = varianceComponents(groups)
-    expectClose(check, anova.ssBetween, expected.SS_between)
-    expectClose(check, anova.ssWithin, expected.SS_within)
-    expectClose(check, anova.msBetween, expected.MS_between)
-    expectClose(check, anova.msWithin, expected.MS_within)
-    expectClose(check, anova.f, expected.F)
-    expectClose(check, parts.between, expected.var_between)
-    expectClose(check, parts.within, expected.var_within)
   })
   it('two groups give the square of the pooled t, and a shift changes nothing', () => {
     const group = fc.array(fc.double({ min: -100, max: 100, noNaN: true }), { minLength: 3, maxLength: 20 })
