@@ -8,6 +8,8 @@ export type Gateway = {
   bootId: string
   /** Keeps readings on disk and sends them as soon as the line allows. */
   record: (drafts: readonly ReadingDraft[]) => void
+  /** The box's clock was set since the start, by so much in all: what is not sent yet is dated anew. */
+  setClockShift: (shiftMs: number) => void
   status: () => SpoolStatus & { sender: SenderState }
   /** What is not acknowledged stays on disk for the next start. */
   stop: () => Promise<void>
@@ -47,10 +49,20 @@ export function createGateway(options: GatewayOptions): Gateway {
       ? {}
       : { program: { version: options.programVersion, uptimeS } }),
   })
+  const disk = createDiskTeller(options)
+  const flushing = createDiskTeller(options)
   let cancelFlush = () => {}
+  const flush = () => {
+    try {
+      spool.flush()
+      flushing.works()
+    } catch (error) {
+      flushing.fails(`The disk does not keep readings for sure (${messageOf(error)}).`)
+    }
+  }
   const flushLater = () => {
     cancelFlush = clock.wait(FLUSH_EVERY_MS, () => {
-      spool.flush()
+      flush()
       flushLater()
     })
   }
@@ -60,14 +72,45 @@ export function createGateway(options: GatewayOptions): Gateway {
     bootId,
     record: (drafts) => {
       const { kept, from, to } = spool.append(drafts)
-      if (!kept) options.onTrouble?.(`The disk takes no more readings: ${from} to ${to} are lost.`)
+      if (kept) disk.works()
+      else disk.loses(from, to)
       sender.wake()
     },
+    setClockShift: spool.setClockShift,
     status: () => ({ ...spool.status(), sender: sender.state() }),
     stop: async () => {
       cancelFlush()
       await sender.stop()
-      spool.flush()
+      flush()
     },
   }
+}
+
+/** Says once that the disk is in trouble, and once how many readings that cost. */
+function createDiskTeller({ onTrouble, onRecovered }: SenderEvents) {
+  let isFailing = false
+  let lostReadings = 0
+  const fails = (sentence: string) => {
+    if (!isFailing) onTrouble?.(sentence)
+    isFailing = true
+  }
+  return {
+    fails,
+    loses: (from: number, to: number) => {
+      lostReadings += to - from + 1
+      fails(
+        `The disk takes no more readings: from number ${from} on they are lost, and told so to the server.`,
+      )
+    },
+    works: () => {
+      if (!isFailing) return
+      onRecovered?.(`The disk takes readings again; ${lostReadings} were lost.`)
+      isFailing = false
+      lostReadings = 0
+    },
+  }
+}
+
+function messageOf(error: unknown): string {
+  return error instanceof Error ? error.message : String(error)
 }

@@ -4,7 +4,8 @@ import { readOutcome, type SendOutcome } from './transport'
 
 type HttpTransportOptions = {
   serverUrl: string
-  token: string
+  /** A function is asked at each try, so that a new token needs no restart. */
+  token: string | (() => string)
   timeoutMs?: number
   /** Replaced in tests. */
   request?: typeof fetch
@@ -21,7 +22,10 @@ export function createHttpTransport(options: HttpTransportOptions): Transport {
       try {
         const response = await request(address, {
           method: 'POST',
-          headers: { authorization: `Bearer ${token}`, 'content-type': 'application/json' },
+          headers: {
+            authorization: `Bearer ${typeof token === 'string' ? token : token()}`,
+            'content-type': 'application/json',
+          },
           body: JSON.stringify(message),
           signal: AbortSignal.timeout(timeoutMs),
         })

@@ -113,7 +113,7 @@ export function createSender(options: SenderOptions): Sender {
     if (isTokenRefused(problem)) {
       report(
         `The server refuses this gateway's token (${problem.status}: ${reason}). Readings are kept here. ` +
-          'An administrator can make a new token for it under Gateways; put it in place and restart the gateway.',
+          'An administrator can make a new token for it, or a code to enrol it again, under Gateways.',
       )
       pause('token refused', slowRetryMs * (1 + 0.2 * random()))
     } else if (problem.status === 422 && message.status !== undefined) {

@@ -2,7 +2,12 @@ import { io, type Socket } from 'socket.io-client'
 import { GATEWAY_NAMESPACE, ingestProblemSchema, SEND_READINGS_EVENT, type IngestProblem } from './protocol'
 import { readOutcome, type SendOutcome, type Transport } from './transport'
 
-type SocketTransportOptions = { serverUrl: string; token: string; timeoutMs?: number }
+type SocketTransportOptions = {
+  serverUrl: string
+  /** A function is asked at each try, so that a new token needs no restart. */
+  token: string | (() => string)
+  timeoutMs?: number
+}
 
 const CONNECT_AGAIN_MS = 15_000
 
@@ -14,7 +19,7 @@ const CONNECT_AGAIN_MS = 15_000
 export function createSocketTransport(options: SocketTransportOptions): Transport {
   const { serverUrl, token, timeoutMs = 10_000 } = options
   const socket = io(new URL(GATEWAY_NAMESPACE, serverUrl).href, {
-    auth: { token },
+    auth: (give) => give({ token: typeof token === 'string' ? token : token() }),
     transports: ['websocket'],
     reconnectionDelay: 500,
     reconnectionDelayMax: 15_000,

@@ -10,12 +10,15 @@ export type SpoolRecord =
   | { kind: 'reading'; reading: Reading }
   | { kind: 'loss'; loss: Loss }
   | { kind: 'acknowledged'; ackedSeq: number }
+  /** What the wall clock was set by since the boot began, ms: its readings count from the clock as it was then. */
+  | { kind: 'clock'; shiftMs: number }
 
 const SYNC = 0xe5
 const HEAD_BYTES = 7
 const KIND_READING = 1
 const KIND_LOSS = 2
 const KIND_ACKNOWLEDGED = 3
+const KIND_CLOCK = 4
 const READING_BYTES = 41
 
 const FLAG_CODES = { open: 1, short: 2, fault: 3 } as const
@@ -66,6 +69,12 @@ function encodeBody(record: SpoolRecord): Buffer {
     const body = Buffer.allocUnsafe(9)
     body.writeUInt8(KIND_ACKNOWLEDGED, 0)
     body.writeDoubleLE(record.ackedSeq, 1)
+    return body
+  }
+  if (record.kind === 'clock') {
+    const body = Buffer.allocUnsafe(9)
+    body.writeUInt8(KIND_CLOCK, 0)
+    body.writeDoubleLE(record.shiftMs, 1)
     return body
   }
   const reason = Buffer.from(record.loss.reason, 'utf8')
@@ -121,6 +130,9 @@ function decodeBody(body: Buffer): SpoolRecord | null {
   }
   if (kind === KIND_ACKNOWLEDGED && body.length === 9) {
     return { kind: 'acknowledged', ackedSeq: body.readDoubleLE(1) }
+  }
+  if (kind === KIND_CLOCK && body.length === 9) {
+    return { kind: 'clock', shiftMs: body.readDoubleLE(1) }
   }
   if (kind === KIND_LOSS && body.length > 17) {
     const loss = { from: body.readDoubleLE(1), to: body.readDoubleLE(9), reason: body.toString('utf8', 17) }

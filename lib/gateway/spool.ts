@@ -18,6 +18,11 @@ export type Spool = {
   peek: (limit: number) => SpoolBatch | null
   /** Drops what the server has. A number lower than before means that the server has forgotten: see below. */
   acknowledge: (bootId: string, ackedSeq: number) => void
+  /**
+   * The box's clock was set, by `shiftMs` in all since this boot began. Readings of this boot that are not sent yet,
+   * those before the step too, are given out with it added; it is kept for the next start.
+   */
+  setClockShift: (shiftMs: number) => void
   flush: () => void
   status: () => SpoolStatus
 }
@@ -31,6 +36,7 @@ type Boot = {
   ackedSeq: number
   highestSeq: number
   losses: Loss[]
+  clockShiftMs: number
 }
 type SpoolOptions = { files: SpoolFiles; bootId: string; maxBytes?: number; segmentBytes?: number }
 
@@ -148,7 +154,11 @@ export function createSpool(options: SpoolOptions): Spool {
       for (const boot of boots) {
         const readings = waitingReadings(files, boot, limit)
         if (readings.length > 0 || boot.losses.length > 0) {
-          return { bootId: boot.bootId, readings, lost: [...boot.losses] }
+          return {
+            bootId: boot.bootId,
+            readings: shifted(readings, boot.clockShiftMs),
+            lost: [...boot.losses],
+          }
         }
       }
       return null
@@ -167,6 +177,10 @@ export function createSpool(options: SpoolOptions): Spool {
       forgetWhenDone(boot)
       if (boot.ackedSeq !== before && boots.includes(boot)) tryNote(boot)
     },
+    setClockShift: (shiftMs) => {
+      current.clockShiftMs = Math.round(shiftMs)
+      tryNote(current)
+    },
     flush: () => files.flush(),
     status: () => ({
       bytes: totalBytes(),
@@ -184,7 +198,16 @@ function isFullDisk(error: unknown): boolean {
 }
 
 function newBoot(bootId: string, ordinal: number): Boot {
-  return { bootId, ordinal, segments: [], writing: null, ackedSeq: 0, highestSeq: 0, losses: [] }
+  return {
+    bootId,
+    ordinal,
+    segments: [],
+    writing: null,
+    ackedSeq: 0,
+    highestSeq: 0,
+    losses: [],
+    clockShiftMs: 0,
+  }
 }
 
 function newSegment(boot: Boot): Segment {
@@ -207,7 +230,16 @@ function notesOf(boot: Boot): SpoolRecord[] {
   return [
     { kind: 'acknowledged', ackedSeq: boot.ackedSeq },
     ...boot.losses.map((loss): SpoolRecord => ({ kind: 'loss', loss })),
+    ...(boot.clockShiftMs === 0 ? [] : [{ kind: 'clock' as const, shiftMs: boot.clockShiftMs }]),
   ]
+}
+
+function shifted(readings: Reading[], shiftMs: number): Reading[] {
+  if (shiftMs === 0) return readings
+  return readings.map((reading) => ({
+    ...reading,
+    at: new Date(Date.parse(reading.at) + shiftMs).toISOString(),
+  }))
 }
 
 /** Adds a range of lost numbers, one entry for neighbours with the same reason. */
@@ -307,6 +339,8 @@ function loadSegment(files: SpoolFiles, boot: Boot, name: string) {
     if (record.kind === 'acknowledged') {
       boot.ackedSeq = Math.max(boot.ackedSeq, record.ackedSeq)
       boot.highestSeq = Math.max(boot.highestSeq, record.ackedSeq)
+    } else if (record.kind === 'clock') {
+      boot.clockShiftMs = record.shiftMs
     } else if (record.kind === 'loss') {
       addLoss(boot, record.loss.from, record.loss.to, record.loss.reason)
       boot.highestSeq = Math.max(boot.highestSeq, record.loss.to)
