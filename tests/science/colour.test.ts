@@ -27,7 +27,7 @@ describe('CIEDE2000', () => {
     expectClose(check, deltaE2000(lab1, lab2), expected)
     expectClose(check, deltaE2000(lab2, lab1), expected)
   })
-  it('is symmetric, 0 for equal colours, and never negative', () => {
+  it('law: is symmetric, 0 for equal colours, and never negative', () => {
     fc.assert(
       fc.property(labs, labs, (lab1, lab2) => {
         expectWithin(deltaE2000(lab2, lab1), deltaE2000(lab1, lab2), 1e-9)

@@ -176,7 +176,7 @@ describe('laws of conduction', () => {
     durationS: fc.double({ min: 1, max: 3600, noNaN: true }),
     stepS: fc.double({ min: 0.5, max: 600, noNaN: true }),
   })
-  it('what the slab gains is what came in through its faces, to 1e-9', () => {
+  it('law: what the slab gains is what came in through its faces, to 1e-9', () => {
     fc.assert(
       fc.property(slabs, (input) => {
         const { tempC, heatInJPerM2 } = conductSlab(input)
@@ -192,7 +192,7 @@ describe('laws of conduction', () => {
       propertyRun,
     )
   })
-  it('with both faces insulated nothing changes, and no heat comes in', () => {
+  it('law: with both faces insulated nothing changes, and no heat comes in', () => {
     fc.assert(
       fc.property(slabs, (input) => {
         const { tempC, heatInJPerM2 } = conductSlab({ ...input, hot: 'insulated', cold: 'insulated' })
@@ -235,7 +235,7 @@ describe('laws of conduction', () => {
     expect(tempC[4]).toBe(30)
     expect(tempC[1]).toBeLessThan(20)
   })
-  it('at 0 s the slab is as it began, and turned round it is the same slab', () => {
+  it('law: at 0 s the slab is as it began, and turned round it is the same slab', () => {
     expect(slabOf({ nodes: 4, hot: { tempC: 100 }, cold: 'insulated', durationS: 0 }, 1).tempC).toEqual([
       1, 1, 1, 1,
     ])

@@ -95,7 +95,7 @@ describe('CUSUM', () => {
     const total = inputs.x.reduce((sum, x) => sum + x - inputs.target, 0)
     expectClose(check, total, expected.cusum_20)
   })
-  it('the sums are never below 0, change sides with the values, and do not depend on h', () => {
+  it('law: the sums are never below 0, change sides with the values, and do not depend on h', () => {
     const series = fc.array(fc.integer({ min: -10, max: 10 }), { minLength: 1, maxLength: 60 })
     fc.assert(
       fc.property(series, fc.integer({ min: 0, max: 3 }), (x, k) => {
@@ -132,7 +132,7 @@ describe('Nelson rules', () => {
     }
     if (Object.keys(expected).length === 0) expect(found[1].concat(found[2], found[5])).toEqual([])
   })
-  it('a mirrored chart breaks the same rules at the same points', () => {
+  it('law: a mirrored chart breaks the same rules at the same points', () => {
     const series = fc.array(
       fc.integer({ min: -7, max: 7 }).map((n) => n / 2),
       { minLength: 1, maxLength: 80 },

@@ -90,7 +90,7 @@ describe('the two intervals of a dose', () => {
 describe('laws of the interval', () => {
   const curves = fc.array(fc.double({ min: 60, max: 240, noNaN: true }), { minLength: 2, maxLength: 60 })
 
-  test('a shifted dose is the dose of the shifted curve', () => {
+  test('law: a shifted dose is the dose of the shifted curve', () => {
     fc.assert(
       fc.property(curves, fc.double({ min: -15, max: 15, noNaN: true }), (tempC, offsetC) => {
         const timeS = tempC.map((_, i) => i * 30)
@@ -104,7 +104,7 @@ describe('laws of the interval', () => {
     )
   })
 
-  test('the interval holds the dose, and a larger error never makes it narrower', () => {
+  test('law: the interval holds the dose, and a larger error never makes it narrower', () => {
     fc.assert(
       fc.property(curves, fc.double({ min: 0, max: 5, noNaN: true }), (tempC, moreC) => {
         const timeS = tempC.map((_, i) => i * 30)

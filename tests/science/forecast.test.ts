@@ -153,7 +153,7 @@ const anyForecast = fc
   })
 
 describe('laws of the forecast', () => {
-  test('earliest, expected and latest are in order, and a reached target is 0 min away on every line', () => {
+  test('law: earliest, expected and latest are in order, and a reached target is 0 min away on every line', () => {
     fc.assert(
       fc.property(anyForecast, (input) => {
         const forecast = forecastDose(input)
@@ -171,7 +171,7 @@ describe('laws of the forecast', () => {
     )
   })
 
-  test('advice never contradicts the plan’s line beside it', () => {
+  test('law: advice never contradicts the plan’s line beside it', () => {
     fc.assert(
       fc.property(anyForecast, (input) => {
         const { plan, advice, minutesToPlannedEnd } = forecastDose(input)
@@ -204,7 +204,7 @@ describe('laws of the forecast', () => {
     )
   })
 
-  test('the dose at the time that a line names is the target', () => {
+  test('law: the dose at the time that a line names is the target', () => {
     fc.assert(
       fc.property(anyForecast, (input) => {
         const { held } = forecastDose(input)

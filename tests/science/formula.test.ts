@@ -211,7 +211,7 @@ describe('a fault has its place and says what to do', () => {
     expect(pointedAt(text)).toBe(at)
   })
 
-  it('inside the text, whatever the text is', () => {
+  it('law: inside the text, whatever the text is', () => {
     fc.assert(
       fc.property(
         fc.oneof(fc.string({ maxLength: 60 }), fc.string({ unit: 'binary', maxLength: 60 })),
@@ -408,7 +408,7 @@ describe('a formula reaches nothing outside its list', () => {
     expect(formulaLimits).toEqual({ letters: 400, tokens: 160, depth: 12, nodes: 120 })
   })
 
-  it('names only what is on the list, for any words between any signs', () => {
+  it('law: names only what is on the list, for any words between any signs', () => {
     const words = fc.constantFrom(
       'dose',
       'exp',
@@ -472,7 +472,7 @@ const shapes = fc.letrec<{ shape: FormulaShape }>((tie) => ({
 }))
 
 describe('printing and reading a formula', () => {
-  it('are inverse: what is printed is read as the same formula', () => {
+  it('law: are inverse: what is printed is read as the same formula', () => {
     fc.assert(
       fc.property(shapes.shape, (shape) => {
         const text = printFormula(shape)
@@ -489,7 +489,7 @@ describe('printing and reading a formula', () => {
     )
   })
 
-  it('a formula gives what mathjs itself gives for the same text, names put as numbers', () => {
+  it('law: a formula gives what mathjs itself gives for the same text, names put as numbers', () => {
     const math = create(all)
     const scope = { log10_dose: 1.14, stage_count: 3, dose: 13.8, ln: Math.log }
     let compared = 0

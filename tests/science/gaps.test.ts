@@ -143,7 +143,7 @@ const anySeries = fc
   })
 
 describe('laws of the gaps', () => {
-  test('a filled window starts and ends on its edges, rises in time, and keeps every reading', () => {
+  test('law: a filled window starts and ends on its edges, rises in time, and keeps every reading', () => {
     fc.assert(
       fc.property(anySeries, fc.integer({ min: 1, max: 3000 }), (any, toS) => {
         const filled = fillGaps(any, { fromS: 0, toS }, rules)
@@ -169,7 +169,7 @@ describe('laws of the gaps', () => {
     )
   })
 
-  test('the joined dose of wide gaps lies between its extremes', () => {
+  test('law: the joined dose of wide gaps lies between its extremes', () => {
     fc.assert(
       fc.property(anySeries, fc.double({ min: 20, max: 260, noNaN: true }), (any, planC) => {
         const filled = fillGaps(any, { fromS: 0, toS: 2000 }, rules)

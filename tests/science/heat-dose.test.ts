@@ -185,7 +185,7 @@ describe('published doses', () => {
 })
 
 describe('laws of the heat dose', () => {
-  it('a dose is additive over any split of the record', () => {
+  it('law: a dose is additive over any split of the record', () => {
     fc.assert(
       fc.property(models, curves, fc.double({ min: 0, max: 1, noNaN: true }), (model, points, share) => {
         const first = points[0]?.timeS ?? 0
@@ -208,7 +208,7 @@ describe('laws of the heat dose', () => {
       propertyRun,
     )
   })
-  it('a hotter curve never has a smaller dose', () => {
+  it('law: a hotter curve never has a smaller dose', () => {
     fc.assert(
       fc.property(models, curves, fc.double({ min: 0, max: 30, noNaN: true }), (model, points, riseC) => {
         const hotter = points.map((point, i) =>
@@ -220,7 +220,7 @@ describe('laws of the heat dose', () => {
       propertyRun,
     )
   })
-  it('a longer record never has a smaller dose', () => {
+  it('law: a longer record never has a smaller dose', () => {
     fc.assert(
       fc.property(models, curves, (model, points) => {
         const running = createDoseAccumulator(model)
@@ -234,7 +234,7 @@ describe('laws of the heat dose', () => {
       propertyRun,
     )
   })
-  it('a curve played backwards has the same dose', () => {
+  it('law: a curve played backwards has the same dose', () => {
     fc.assert(
       fc.property(models, curves, (model, points) => {
         const end = points.at(-1)?.timeS ?? 0
@@ -250,7 +250,7 @@ describe('laws of the heat dose', () => {
       propertyRun,
     )
   })
-  it('a hold at the reference temperature has its own length as dose', () => {
+  it('law: a hold at the reference temperature has its own length as dose', () => {
     fc.assert(
       fc.property(models, fc.double({ min: 0, max: 1000, noNaN: true }), ({ refTempC, zC }, minutes) => {
         expectWithin(equivalentMinutes({ refTempC, zC }, hold(minutes, refTempC)), minutes, 1e-12 * minutes)
@@ -258,7 +258,7 @@ describe('laws of the heat dose', () => {
       propertyRun,
     )
   })
-  it('raising every temperature by z makes the dose ten times larger; the reference works the other way', () => {
+  it('law: raising every temperature by z makes the dose ten times larger; the reference works the other way', () => {
     fc.assert(
       fc.property(models, curves, ({ refTempC, zC }, points) => {
         const dose = equivalentMinutes({ refTempC, zC }, points)
@@ -269,7 +269,7 @@ describe('laws of the heat dose', () => {
       propertyRun,
     )
   })
-  it('a straight segment has its exact integral however it is sampled', () => {
+  it('law: a straight segment has its exact integral however it is sampled', () => {
     fc.assert(
       fc.property(
         models,
@@ -306,7 +306,7 @@ describe('laws of the heat dose', () => {
     expectWithin(equivalentMinutes(product, crossing), equivalentMinutes(product, above), 1e-12)
     expect(equivalentMinutes(product, hold(60, 119))).toBe(0)
   })
-  it('a running dose is bit for bit the dose of its points, and a gap counts nothing', () => {
+  it('law: a running dose is bit for bit the dose of its points, and a gap counts nothing', () => {
     fc.assert(
       fc.property(models, curves, (model, points) => {
         const running = createDoseAccumulator(model)

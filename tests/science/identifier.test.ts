@@ -21,7 +21,7 @@ describe('check characters', () => {
     expect(isValid37_36('sml0427p')).toBe(true)
     expect(isValid37_36('SML-0427-Q')).toBe(false)
   })
-  it('a payload with its check character is valid', () => {
+  it('law: a payload with its check character is valid', () => {
     fc.assert(
       fc.property(payloads, (payload) => {
         expect(isValid37_36(payload + checkCharacter37_36(payload))).toBe(true)

@@ -62,7 +62,7 @@ describe('the plan of a recipe', () => {
     expect(Math.abs(planOf(holdOf(minutes, tempC), model).doseMin - expected)).toBeLessThanOrEqual(within)
   })
 
-  it('the doses of its stages add up to its own', () => {
+  it('law: the doses of its stages add up to its own', () => {
     fc.assert(
       fc.property(anyPlan, (content) => {
         const plan = planOf(content, model)
@@ -73,7 +73,7 @@ describe('the plan of a recipe', () => {
     )
   })
 
-  it('the dose along it never falls, and ends at the whole', () => {
+  it('law: the dose along it never falls, and ends at the whole', () => {
     fc.assert(
       fc.property(anyPlan, (content) => {
         const plan = planOf(content, model)
@@ -90,7 +90,7 @@ describe('the plan of a recipe', () => {
     )
   })
 
-  it('the band holds the plan in its middle and is never narrower than the stage’s ± °C', () => {
+  it('law: the band holds the plan in its middle and is never narrower than the stage’s ± °C', () => {
     fc.assert(
       fc.property(anyPlan, (content) => {
         const plan = planOf(content, model)
@@ -171,7 +171,7 @@ describe('cues as a typed line', () => {
     words: fc.string({ maxLength: 30 }).map((words) => words.trim()),
   })
 
-  it('parse after print is identity', () => {
+  it('law: parse after print is identity', () => {
     fc.assert(
       fc.property(fc.array(anyCue, { maxLength: 12 }), (cues) => {
         // −0 is the stage's start like 0.
@@ -203,7 +203,7 @@ describe('cues as a typed line', () => {
 })
 
 describe('canonical JSON', () => {
-  it('is one text whatever order the keys came in', () => {
+  it('law: is one text whatever order the keys came in', () => {
     fc.assert(
       fc.property(fc.dictionary(fc.string(), fc.jsonValue()), (object) => {
         const turned = Object.fromEntries(Object.entries(object).reverse())

@@ -74,7 +74,7 @@ describe('plan curve', () => {
 describe('solving a stage', () => {
   const limits = { minutes: { min: 1, max: 90 }, temperature: { min: 125, max: 240 } }
 
-  it('gives the wanted dose, or the attainable range that does not hold it', () => {
+  it('law: gives the wanted dose, or the attainable range that does not hold it', () => {
     fc.assert(
       fc.property(
         fc.integer({ min: 0, max: 3 }),

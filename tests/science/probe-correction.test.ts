@@ -66,7 +66,7 @@ it('a block checked at two temperatures on one occasion gives two points', () =>
   expect(correction.correctionC(233)).toBeCloseTo(-3, 12)
 })
 
-it('the correction never jumps and stays between the smallest and the largest of its points', () => {
+it('law: the correction never jumps and stays between the smallest and the largest of its points', () => {
   fc.assert(
     fc.property(
       fc.array(
@@ -119,7 +119,7 @@ it('a point’s uncertainty is comparison and reference as squares; a span claim
   expect(uncertaintyC(0.4)).toBeNull()
 })
 
-it('inside the span nowhere is more claimed off than at its worst point, and beyond it never less than the class', () => {
+it('law: inside the span nowhere is more claimed off than at its worst point, and beyond it never less than the class', () => {
   fc.assert(
     fc.property(
       fc.double({ min: 0.05, max: 4, noNaN: true }),

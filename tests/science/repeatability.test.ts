@@ -32,7 +32,7 @@ describe('repeat placements', () => {
     expect(() => repeatabilityOf([1, 2, 3, 4, 5], 0)).toThrow('zC')
   })
 
-  test('a fixed offset between the two places does not count, the order does not, and twice the spread is twice the figure', () => {
+  test('law: a fixed offset between the two places does not count, the order does not, and twice the spread is twice the figure', () => {
     const differences = fc
       .array(fc.double({ min: -5, max: 5, noNaN: true }), { minLength: 5, maxLength: 30 })
       .filter((list) => Math.max(...list) - Math.min(...list) > 0.01)

@@ -275,7 +275,7 @@ describe('stages', () => {
     expect(matched.map((stage) => stage.startS)).toEqual([0, 600, 600, 1680])
   })
 
-  test('whatever the marks, stages are in order and fill the toast', () => {
+  test('law: whatever the marks, stages are in order and fill the toast', () => {
     fc.assert(
       fc.property(
         fc.array(
@@ -529,7 +529,7 @@ describe('laws of the score', () => {
       )
     })
 
-  test('points lie between 0 and 100, the verdict follows the order, and the score is the same again', () => {
+  test('law: points lie between 0 and 100, the verdict follows the order, and the score is the same again', () => {
     fc.assert(
       fc.property(anyFiring, (input) => {
         const score = scoreFiring(input)
@@ -556,7 +556,7 @@ describe('laws of the score', () => {
     )
   })
 
-  test('the further the dose is shifted, the more of it is lost, and never a point is won', () => {
+  test('law: the further the dose is shifted, the more of it is lost, and never a point is won', () => {
     fc.assert(
       fc.property(
         fc.double({ min: 0, max: 30, noNaN: true }),

@@ -89,7 +89,7 @@ describe('a probe at a reference', () => {
     ).toBe('too few')
   })
 
-  test('what was before the window does not matter', () => {
+  test('law: what was before the window does not matter', () => {
     fc.assert(
       fc.property(
         fc.array(fc.double({ min: -0.1, max: 0.1, noNaN: true }), { minLength: 61, maxLength: 61 }),
@@ -109,7 +109,7 @@ describe('a probe at a reference', () => {
     )
   })
 
-  test('an offset of all readings moves the mean and nothing else; a steeper drift never settles it', () => {
+  test('law: an offset of all readings moves the mean and nothing else; a steeper drift never settles it', () => {
     fc.assert(
       fc.property(
         fc.array(fc.double({ min: -0.05, max: 0.05, noNaN: true }), { minLength: 61, maxLength: 61 }),

@@ -53,7 +53,7 @@ describe('one sample', () => {
     expectWithin(sampleSd(x), 0.1, 1e-8)
     expectWithin(lag1Autocorrelation(x), -0.999, 1e-7)
   })
-  it('a shift moves the mean alone, and a scale takes both along', () => {
+  it('law: a shift moves the mean alone, and a scale takes both along', () => {
     fc.assert(
       fc.property(values, fc.integer({ min: -1000, max: 1000 }), (x, shift) => {
         const size = Math.max(...x.map(Math.abs), 1)
@@ -87,7 +87,7 @@ describe('quantiles', () => {
   tabled('stats.chi2_quantile', 'p_df', ([p = NaN, df = NaN]) => chiSquareQuantile(p, df))
   tabled('stats.f_quantile', 'p_df1_df2', ([p = NaN, df1 = NaN, df2 = NaN]) => fQuantile(p, df1, df2))
 
-  it('t is symmetric, t² is F(1, df), and F turned over is the other tail', () => {
+  it('law: t is symmetric, t² is F(1, df), and F turned over is the other tail', () => {
     const p = fc.double({ min: 0.001, max: 0.999, noNaN: true })
     const df = fc.integer({ min: 1, max: 200 })
     fc.assert(
@@ -140,7 +140,7 @@ describe('straight line', () => {
     expectClose(check, fit.residualSd, expected.residual_sd)
     expectClose(check, fit.rSquared, expected.r2)
   })
-  it('a line is found again exactly, and residuals are at right angles to x', () => {
+  it('law: a line is found again exactly, and residuals are at right angles to x', () => {
     fc.assert(
       fc.property(
         values,
@@ -461,7 +461,7 @@ describe('analysis of variance', () => {
     // p belongs to F: the quantile at 1 − p is F again.
     expectWithin(fQuantile(1 - anova.p, anova.dfBetween, anova.dfWithin), anova.f, 1e-6 * anova.f)
   })
-  it('two groups give the square of the pooled t, and a shift changes nothing', () => {
+  it('law: two groups give the square of the pooled t, and a shift changes nothing', () => {
     const group = fc.array(fc.double({ min: -100, max: 100, noNaN: true }), { minLength: 3, maxLength: 20 })
     fc.assert(
       fc.property(group, group, fc.integer({ min: -500, max: 500 }), (a, b, shift) => {

@@ -311,7 +311,7 @@ describe('the stave model with the handbook’s wood', () => {
     expect(Array.from(staveColumn(state)).every((value) => value === -Infinity)).toBe(true)
   })
 
-  test('whatever the probe reads, every number stays finite and moisture stays between 0 and its start', () => {
+  test('law: whatever the probe reads, every number stays finite and moisture stays between 0 and its start', () => {
     fc.assert(
       fc.property(
         fc.array(
@@ -340,7 +340,7 @@ describe('the stave model with the handbook’s wood', () => {
     )
   })
 
-  test('the solved wood behind the probe stays between what surrounds it', () => {
+  test('law: the solved wood behind the probe stays between what surrounds it', () => {
     fc.assert(
       fc.property(
         fc.array(fc.double({ min: 20, max: 250, noNaN: true }), { minLength: 2, maxLength: 80 }),

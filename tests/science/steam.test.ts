@@ -47,7 +47,7 @@ describe('saturation line', () => {
       .parse(check.inputs.p_hPa)
       .forEach((pressureHpa, i) => expectClose(check, boilingPointC(pressureHpa), expected[i] ?? NaN))
   })
-  it('temperature and pressure are inverse, from freezing to the critical point', () => {
+  it('law: temperature and pressure are inverse, from freezing to the critical point', () => {
     fc.assert(
       fc.property(fc.double({ min: 273.15, max: 647.096, noNaN: true }), (tempK) => {
         expectWithin(saturationTempK(saturationPressureMpa(tempK)), tempK, 1e-6)

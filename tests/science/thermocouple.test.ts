@@ -50,7 +50,7 @@ describe('emf of the reference functions', () => {
       .forEach((tempC, i) => expectClose(check, referenceMv - emfMv(type, tempC), expected[i] ?? NaN))
   })
 
-  it('emf rises strictly with temperature', () => {
+  it('law: emf rises strictly with temperature', () => {
     fc.assert(
       fc.property(typeAndTemp, fc.double({ min: 0.001, max: 50, noNaN: true }), ({ type, tempC }, riseC) => {
         const warmerC = Math.min(tempC + riseC, inverseRangeC[type][1])
@@ -84,7 +84,7 @@ describe('temperature from emf', () => {
   inverseCheck('tc.inverse_polynomial_C', approximateTempCFromEmf)
   inverseCheck('tc.exact_inverse_C', tempCFromEmf)
 
-  it('the inverse of the emf is the temperature to 1e-6 °C, over the whole range', () => {
+  it('law: the inverse of the emf is the temperature to 1e-6 °C, over the whole range', () => {
     fc.assert(
       fc.property(typeAndTemp, ({ type, tempC }) => {
         expectWithin(tempCFromEmf(type, emfMv(type, tempC)), tempC, 1e-6)
@@ -139,7 +139,7 @@ describe('cold junction', () => {
   coldJunctionCheck('tc.cold_junction')
   coldJunctionCheck('tc.cold_junction (table arithmetic)')
 
-  it('what a junction at t gives against a cold junction leads back to t', () => {
+  it('law: what a junction at t gives against a cold junction leads back to t', () => {
     fc.assert(
       fc.property(
         typeAndTemp,

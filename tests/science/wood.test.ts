@@ -32,7 +32,7 @@ describe('equilibrium moisture', () => {
       expectClose(check, equilibriumMoisturePercent(tempC, rh), expected[i] ?? NaN),
     )
   })
-  it('is 0 in dry air, rises with humidity, and falls as a room grows warmer', () => {
+  it('law: is 0 in dry air, rises with humidity, and falls as a room grows warmer', () => {
     const temp = fc.double({ min: 15, max: 100, noNaN: true })
     const humidity = fc.double({ min: 1, max: 95, noNaN: true })
     fc.assert(
