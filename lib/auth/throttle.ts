@@ -59,6 +59,15 @@ export async function countPasswordProof(accountId: string): Promise<CountedTry>
   })
 }
 
+/** Counts a try to enrol a gateway: few do, so an address is braked as hard as an account. @throws AppError 'too many' */
+export async function countEnrolmentTry(address: string): Promise<CountedTry> {
+  const counter = { key: keyOf('enrol', address), rule: pairRule }
+  return inTransaction(async (em) => {
+    await countAll(em, [counter])
+    return { resetKeys: [counter.key], undoKeys: [] }
+  })
+}
+
 /** At most 3 reset mails an hour to one e-mail and 20 from one address. @throws AppError 'too many' */
 export async function countResetRequest(email: string, address: string): Promise<void> {
   const hourly = (freeFailures: number): Rule => ({ freeFailures, firstBlockS: 3600, longestBlockS: 3600 })

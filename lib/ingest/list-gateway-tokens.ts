@@ -10,6 +10,7 @@ type TokenRow = {
   created_by: string | null
   last_used_at: Date | null
   revoked_at: Date | null
+  expires_at: Date | null
 }
 
 /** A gateway's device tokens, newest first; never the tokens themselves. */
@@ -20,7 +21,7 @@ export async function listGatewayTokens(actor: Actor, input: { gatewayId: string
   if (gateway === undefined) throw new AppError('not found', 'There is no such gateway.')
   const rows = await queryRows<TokenRow>(
     em,
-    `select t.id, t.created_at, a.name as created_by, t.last_used_at, t.revoked_at
+    `select t.id, t.created_at, a.name as created_by, t.last_used_at, t.revoked_at, t.expires_at
        from gateway_tokens t left join accounts a on a.id = t.created_by
       where t.gateway_id = ? order by t.created_at desc, t.id`,
     [input.gatewayId],
@@ -32,6 +33,7 @@ export async function listGatewayTokens(actor: Actor, input: { gatewayId: string
       createdBy: row.created_by,
       lastUsedAt: isoOrNull(row.last_used_at),
       revokedAt: isoOrNull(row.revoked_at),
+      expiresAt: isoOrNull(row.expires_at),
     })),
     nextCursor: null,
   }

@@ -2,7 +2,14 @@ import * as z from 'zod'
 import { rolesWith } from '@/lib/auth/permissions'
 import { ingestAnswerSchema, ingestMessageSchema } from '@/lib/gateway/protocol'
 import { defineOperation } from '@/lib/http/operation'
-import { healthSchema, issuedTokenSchema, tokenListSchema } from '@/lib/ingest/schema'
+import {
+  enrolGatewaySchema,
+  enrolledGatewaySchema,
+  enrolmentCodeSchema,
+  healthSchema,
+  issuedTokenSchema,
+  tokenListSchema,
+} from '@/lib/ingest/schema'
 
 const gatewayParams = z.object({ id: z.uuid() })
 const tokenParams = z.object({ id: z.uuid(), tokenId: z.uuid() })
@@ -49,6 +56,39 @@ export const operations = {
     tag: 'Readings',
     access: rolesWith('room:write'),
     params: tokenParams,
+  }),
+  rotateGatewayToken: defineOperation({
+    id: 'rotateGatewayToken',
+    method: 'POST',
+    path: '/api/gateways/{id}/tokens/{tokenId}/rotate',
+    summary: 'A new device token in place of one, which serves until the new is first used or 24 h at most',
+    tag: 'Readings',
+    access: rolesWith('room:write'),
+    params: tokenParams,
+    response: issuedTokenSchema,
+    status: 201,
+  }),
+  makeEnrolmentCode: defineOperation({
+    id: 'makeEnrolmentCode',
+    method: 'POST',
+    path: '/api/gateways/{id}/enrolment-codes',
+    summary: 'Make the one-time code by which a gateway fetches its token; it is answered this once',
+    tag: 'Readings',
+    access: rolesWith('room:write'),
+    params: gatewayParams,
+    response: enrolmentCodeSchema,
+    status: 201,
+  }),
+  enrolGateway: defineOperation({
+    id: 'enrolGateway',
+    method: 'POST',
+    path: '/api/gateways/enrol',
+    summary: 'A gateway’s program fetches its device token for a one-time code; tries are counted by address',
+    tag: 'Readings',
+    access: 'public',
+    body: enrolGatewaySchema,
+    response: enrolledGatewaySchema,
+    status: 201,
   }),
   healthLive: defineOperation({
     id: 'healthLive',

@@ -1,6 +1,7 @@
 import type { Loss } from '@/lib/gateway/protocol'
 import { ingestEnvelopeSchema, MAX_READINGS_PER_MESSAGE } from '@/lib/gateway/protocol'
 import { parseInput } from '@/lib/http/route'
+import type { GatewayStatus } from '@/lib/ingest/note-gateway-status'
 
 /** A reading as it came: only its number is sure. */
 export type RawReading = { readonly seq: number } & Readonly<Record<string, unknown>>
@@ -10,6 +11,7 @@ export type Envelope = {
   sentAtMs: number
   readings: readonly RawReading[]
   lost: readonly Loss[]
+  status: GatewayStatus | undefined
 }
 
 const headerSchema = ingestEnvelopeSchema.omit({ readings: true })
@@ -33,7 +35,7 @@ export function readEnvelope(message: unknown): Envelope {
 }
 
 function envelopeOf(
-  header: { bootId: string; sentAt: string; lost?: Loss[] | undefined },
+  header: { bootId: string; sentAt: string; lost?: Loss[] | undefined; status?: GatewayStatus | undefined },
   readings: readonly RawReading[],
 ): Envelope {
   return {
@@ -41,6 +43,7 @@ function envelopeOf(
     sentAtMs: Date.parse(header.sentAt),
     readings,
     lost: header.lost ?? [],
+    status: header.status,
   }
 }
 

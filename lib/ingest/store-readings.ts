@@ -7,6 +7,7 @@ import { ensurePartitions, forgetPartitions } from '@/lib/ingest/ensure-partitio
 import type { Boot } from '@/lib/ingest/ingest-pool'
 import { ingestPool, rememberedBoots } from '@/lib/ingest/ingest-pool'
 import { noteLateRows } from '@/lib/ingest/late-rows'
+import { noteGatewayStatus } from '@/lib/ingest/note-gateway-status'
 import type { Envelope } from '@/lib/ingest/read-envelope'
 import { readEnvelope } from '@/lib/ingest/read-envelope'
 import { ackedSeqOf, printSeqRanges, runsOf, uniteSeqRanges } from '@/lib/ingest/seq-ranges'
@@ -49,6 +50,7 @@ export async function storeReadings(gateway: GatewayIdentity, message: unknown):
     noteLateRows(stored.sorted.rows, at.getTime())
     hubDoor().current?.takeRows(stored.sorted.rows)
   }
+  noteGatewayStatus(gateway.gatewayId, envelope.status, work.offsetMs, at)
   return stored.answer
 }
 
