@@ -4,6 +4,7 @@ import type { CurvePoint } from './heat-dose'
 /**
  * Dynamic time warping distance of two series: the least Σ|aᵢ − bⱼ| over monotone paths with steps (1,0), (0,1), (1,1),
  * no weights, not normalised; in the series' own unit. With `band`, only |i − j| ≤ band; null when no path fits it.
+ * (Sakoe and Chiba, IEEE Trans. ASSP 26 (1978) 43.)
  *
  * @throws RangeError for an empty series, a value that is not finite, or a band that is not a whole number from 0
  */
@@ -12,21 +13,49 @@ export function dynamicTimeWarping(a: readonly number[], b: readonly number[], b
   requireNumbers('b', b)
   const reach = band === undefined ? Infinity : requireWhole('band', band, 0)
   if (Math.abs(a.length - b.length) > reach) return null
+  return warpingDistance(Float64Array.from(a), Float64Array.from(b), reach)
+}
+
+/**
+ * The same over arrays that are known to hold numbers, for whoever compares one curve with thousands; gives up and
+ * returns Infinity once every path costs more than `giveUpAbove`. Two rows of the table are kept; of each only the band.
+ *
+ * @param reach at least the difference of the lengths
+ */
+export function warpingDistance(
+  a: Float64Array,
+  b: Float64Array,
+  reach: number,
+  giveUpAbove = Infinity,
+): number {
   const columns = b.length
-  let above = new Float64Array(columns + 1).fill(Infinity)
-  let row = new Float64Array(columns + 1).fill(Infinity)
+  let above = new Float64Array(columns + 2).fill(Infinity)
+  let row = new Float64Array(columns + 2).fill(Infinity)
   above[0] = 0
   for (let i = 0; i < a.length; i += 1) {
-    row.fill(Infinity)
     const from = Math.max(0, i - reach)
     const to = Math.min(columns - 1, i + reach)
+    const value = a[i] ?? NaN
+    // Left of the band there is no path; right of it no row has been yet.
+    row[from] = Infinity
+    let left = Infinity
+    let least = Infinity
+    let corner = above[from] ?? Infinity
     for (let j = from; j <= to; j += 1) {
-      const least = Math.min(above[j + 1] ?? Infinity, above[j] ?? Infinity, row[j] ?? Infinity)
-      row[j + 1] = least + Math.abs((a[i] ?? 0) - (b[j] ?? 0))
+      const up = above[j + 1] ?? Infinity
+      let best = corner < up ? corner : up
+      if (left < best) best = left
+      left = best + Math.abs(value - (b[j] ?? NaN))
+      row[j + 1] = left
+      corner = up
+      if (left < least) least = left
     }
-    ;[above, row] = [row, above]
+    if (least > giveUpAbove) return Infinity
+    const spare = above
+    above = row
+    row = spare
   }
-  return above[columns] ?? null
+  return above[columns] ?? Infinity
 }
 
 /**
@@ -41,20 +70,20 @@ export function discreteFrechet(
 ): number {
   requirePlanePoints('p', p)
   requirePlanePoints('q', q)
-  let row: number[] = []
+  const row = new Float64Array(q.length)
   p.forEach(([px, py], i) => {
-    const above = row
-    row = []
+    let left = Infinity
+    let corner = Infinity
     q.forEach(([qx, qy], j) => {
       const distance = Math.hypot(px - qx, py - qy)
-      const leash =
-        i === 0 && j === 0
-          ? distance
-          : Math.min(above[j] ?? Infinity, above[j - 1] ?? Infinity, row[j - 1] ?? Infinity)
-      row.push(Math.max(leash, distance))
+      const up = i === 0 ? Infinity : (row[j] ?? Infinity)
+      const leash = i === 0 && j === 0 ? distance : Math.min(up, corner, left)
+      left = Math.max(leash, distance)
+      corner = up
+      row[j] = left
     })
   })
-  return row.at(-1) ?? 0
+  return row[q.length - 1] ?? 0
 }
 
 function requirePlanePoints(name: string, points: readonly (readonly [number, number])[]): void {

@@ -12,6 +12,7 @@ import {
   liveEdgeSlopeWeights,
   pchip,
   savitzkyGolayWeights,
+  warpingDistance,
 } from '../../lib/science/curve'
 import {
   expectClose,
@@ -46,7 +47,7 @@ describe('dynamic time warping', () => {
       expect(dynamicTimeWarping(x, y, 2)).toBe(expected.distance_band_2)
     },
   )
-  it('is symmetric, 0 for a series with itself, and never smaller for a narrower band', () => {
+  it('law: is symmetric, 0 for a series with itself, and never smaller for a narrower band', () => {
     fc.assert(
       fc.property(series, series, fc.integer({ min: 0, max: 30 }), (a, b, band) => {
         const free = dynamicTimeWarping(a, b) ?? NaN
@@ -55,6 +56,57 @@ describe('dynamic time warping', () => {
         const banded = dynamicTimeWarping(a, b, band)
         if (banded === null) expect(Math.abs(a.length - b.length)).toBeGreaterThan(band)
         else expect(banded).toBeGreaterThanOrEqual(free - 1e-9)
+      }),
+      propertyRun,
+    )
+  })
+  /** Every monotone path, by recursion: what the distance is by definition. */
+  const byDefinition = (a: readonly number[], b: readonly number[], band: number, i = 0, j = 0): number => {
+    if (Math.abs(i - j) > band || i >= a.length || j >= b.length) return Infinity
+    const here = Math.abs((a[i] ?? NaN) - (b[j] ?? NaN))
+    if (i === a.length - 1 && j === b.length - 1) return here
+    return (
+      here +
+      Math.min(
+        byDefinition(a, b, band, i + 1, j),
+        byDefinition(a, b, band, i, j + 1),
+        byDefinition(a, b, band, i + 1, j + 1),
+      )
+    )
+  }
+  const short = fc.array(fc.integer({ min: -9, max: 9 }), { minLength: 1, maxLength: 5 })
+  it('is the least over every path, inside its band or free', () => {
+    fc.assert(
+      fc.property(short, short, fc.integer({ min: 0, max: 5 }), (a, b, band) => {
+        expect(dynamicTimeWarping(a, b)).toBe(byDefinition(a, b, Infinity))
+        expect(dynamicTimeWarping(a, b, band) ?? Infinity).toBe(byDefinition(a, b, band))
+      }),
+      propertyRun,
+    )
+  })
+  it('is at least the difference of both ends, and at most the sum of differences point by point', () => {
+    fc.assert(
+      fc.property(series, series, (a, b) => {
+        const free = dynamicTimeWarping(a, b) ?? NaN
+        const first = Math.abs((a[0] ?? NaN) - (b[0] ?? NaN))
+        const last = Math.abs((a.at(-1) ?? NaN) - (b.at(-1) ?? NaN))
+        expect(free).toBeGreaterThanOrEqual(a.length + b.length > 2 ? Math.max(first, last) : first)
+        const same = a.slice(0, b.length)
+        const other = b.slice(0, a.length)
+        const straight = same.reduce((sum, value, i) => sum + Math.abs(value - (other[i] ?? NaN)), 0)
+        expect(dynamicTimeWarping(same, other)).toBeLessThanOrEqual(straight * (1 + 1e-12))
+        expectWithin(dynamicTimeWarping(same, other, 0) ?? NaN, straight, 1e-9 * (1 + straight))
+      }),
+      propertyRun,
+    )
+  })
+  it('gives up only where the distance is larger than asked', () => {
+    fc.assert(
+      fc.property(series, series, fc.double({ min: 0, max: 3000, noNaN: true }), (a, b, giveUpAbove) => {
+        const whole = dynamicTimeWarping(a, b) ?? NaN
+        const found = warpingDistance(Float64Array.from(a), Float64Array.from(b), Infinity, giveUpAbove)
+        if (found === Infinity) expect(whole).toBeGreaterThan(giveUpAbove)
+        else expect(found).toBe(whole)
       }),
       propertyRun,
     )
@@ -76,7 +128,7 @@ describe('discrete Fréchet distance', () => {
       numberShape.parse(check.expected),
     ),
   )
-  it('is symmetric, 0 for a curve with itself, and a shift is its own length', () => {
+  it('law: is symmetric, 0 for a curve with itself, and a shift is its own length', () => {
     const coordinate = fc.double({ min: -100, max: 100, noNaN: true })
     const curve = fc.array(fc.tuple(coordinate, coordinate), { minLength: 1, maxLength: 25 })
     fc.assert(
@@ -85,6 +137,29 @@ describe('discrete Fréchet distance', () => {
         expect(discreteFrechet(p, p)).toBe(0)
         const shifted = p.map(([x, y]): [number, number] => [x + shift, y])
         expect(discreteFrechet(p, shifted)).toBeLessThanOrEqual(shift + 1e-9)
+      }),
+      propertyRun,
+    )
+  })
+  const points = fc.array(
+    fc.tuple(fc.double({ min: -99, max: 99, noNaN: true }), fc.double({ min: -99, max: 99, noNaN: true })),
+    { minLength: 1, maxLength: 12 },
+  )
+  it('is at least the ends’ distance and every point’s to the other curve, and at most the worst pair in step', () => {
+    fc.assert(
+      fc.property(points, points, (p, q) => {
+        const leash = discreteFrechet(p, q)
+        const apart = (a: readonly [number, number] | undefined, b: readonly [number, number] | undefined) =>
+          Math.hypot((a?.[0] ?? NaN) - (b?.[0] ?? NaN), (a?.[1] ?? NaN) - (b?.[1] ?? NaN))
+        expect(leash).toBeGreaterThanOrEqual(Math.max(apart(p[0], q[0]), apart(p.at(-1), q.at(-1))))
+        for (const point of p) {
+          expect(leash).toBeGreaterThanOrEqual(Math.min(...q.map((other) => apart(point, other))))
+        }
+        const same = p.slice(0, q.length)
+        const other = q.slice(0, p.length)
+        expect(discreteFrechet(same, other)).toBeLessThanOrEqual(
+          Math.max(...same.map((point, i) => apart(point, other[i]))),
+        )
       }),
       propertyRun,
     )
@@ -118,7 +193,7 @@ describe('Savitzky–Golay weights', () => {
     derivative: fc.integer({ min: 0, max: 2 }),
     spacing: fc.constantFrom(0.2, 1, 5),
   })
-  it('weights sum to 1 for the value and to 0 for a derivative, and are exact on polynomials of their degree', () => {
+  it('law: weights sum to 1 for the value and to 0 for a derivative, and are exact on polynomials of their degree', () => {
     fc.assert(
       fc.property(options, ({ half, degree, derivative, spacing }) => {
         const window = 2 * half + 1
@@ -169,7 +244,7 @@ describe('climb rate', () => {
     const slope = weights.reduce((sum, weight, i) => sum + weight * (tempsC[i] ?? NaN), 0)
     expectWithin(climbRateCPerMin(timesS, tempsC) ?? NaN, slope * 60, 1e-8)
   })
-  it('is exact on a straight climb at any spacing, and older readings do not matter', () => {
+  it('law: is exact on a straight climb at any spacing, and older readings do not matter', () => {
     const gaps = fc.array(fc.double({ min: 0.05, max: 3, noNaN: true }), { minLength: 40, maxLength: 120 })
     fc.assert(
       fc.property(gaps, fc.double({ min: -20, max: 20, noNaN: true }), (steps, ratePerMin) => {
@@ -216,7 +291,7 @@ describe('PCHIP', () => {
     }),
     { minLength: 2, maxLength: 15 },
   )
-  it('goes through its points, stays between neighbours, and rises where they rise', () => {
+  it('law: goes through its points, stays between neighbours, and rises where they rise', () => {
     fc.assert(
       fc.property(knots, (parts) => {
         let sum = 0
@@ -266,7 +341,7 @@ describe('curve deviation', () => {
     expectClose(check, found.bias, expected.bias)
     expectClose(check, found.maxAbs, expected.max_abs)
   })
-  it('|bias| ≤ mean absolute ≤ RMS ≤ largest', () => {
+  it('law: |bias| ≤ mean absolute ≤ RMS ≤ largest', () => {
     fc.assert(
       fc.property(series, (value) => {
         const found = curveDeviation(
@@ -372,7 +447,7 @@ describe('stage alignment', () => {
         return [0, ...lengths.map((length) => (end += length))]
       }),
     )
-  it('takes boundaries to boundaries, never turns back, and its inverse leads back', () => {
+  it('law: takes boundaries to boundaries, never turns back, and its inverse leads back', () => {
     fc.assert(
       fc.property(boundaries, fc.double({ min: 0, max: 1, noNaN: true }), ([from = [], to = []], share) => {
         const there = alignTimeByStage(from, to)
