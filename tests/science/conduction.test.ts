@@ -202,6 +202,68 @@ describe('laws of conduction', () => {
       propertyRun,
     )
   })
+  /** Temperature of a face's surroundings; null where it is insulated. */
+  const outsideOf = (side: Face) =>
+    side === 'insulated' ? null : 'tempC' in side ? side.tempC : side.hWPerM2K === 0 ? null : side.ambientC
+  it('law: no wood is hotter or colder than the hottest and coldest it began with or was given (maximum principle)', () => {
+    fc.assert(
+      fc.property(slabs, fc.double({ min: 0.01, max: 0.5, noNaN: true }), (input, fourier) => {
+        // At most half a cell's diffusion time a step. Larger ones are stable but may overshoot once after a sudden
+        // face, as an implicit scheme of second order can: measured, 3 % of the jump at twice that step, 23 % at 200 times.
+        const cellM = input.thicknessM / (input.nodes - 1)
+        const alpha = input.conductivityWPerMK / (input.densityKgPerM3 * input.heatCapacityJPerKgK)
+        const stepS = (fourier * cellM * cellM) / alpha
+        const durationS = Math.min(input.durationS, 400 * stepS)
+        const { tempC } = conductSlab({ ...input, stepS, durationS })
+        const given = [input.initialTempC, outsideOf(input.hot), outsideOf(input.cold)].filter(
+          (t) => t !== null,
+        )
+        for (const temp of tempC) {
+          expect(temp).toBeLessThanOrEqual(Math.max(...given) + 1e-9)
+          expect(temp).toBeGreaterThanOrEqual(Math.min(...given) - 1e-9)
+        }
+      }),
+      propertyRun,
+    )
+  })
+  it('law: with constant properties two causes add: temperatures given as a sum give the sum (superposition)', () => {
+    const temps = fc.tuple(
+      fc.double({ min: -20, max: 300, noNaN: true }),
+      fc.double({ min: -20, max: 400, noNaN: true }),
+      fc.double({ min: -20, max: 400, noNaN: true }),
+    )
+    const withOutside = (side: Face, outsideC: number): Face =>
+      side === 'insulated'
+        ? side
+        : 'tempC' in side
+          ? { tempC: outsideC }
+          : { hWPerM2K: side.hWPerM2K, ambientC: outsideC }
+    fc.assert(
+      fc.property(
+        slabs,
+        temps,
+        temps,
+        fc.double({ min: -2, max: 2, noNaN: true }),
+        (input, first, second, share) => {
+          const run = ([initialTempC, hotC, coldC]: readonly [number, number, number]) =>
+            conductSlab({
+              ...input,
+              initialTempC,
+              hot: withOutside(input.hot, hotC),
+              cold: withOutside(input.cold, coldC),
+            })
+          const add = (a: number, b: number) => a + share * b
+          const a = run(first)
+          const b = run(second)
+          const sum = run([add(first[0], second[0]), add(first[1], second[1]), add(first[2], second[2])])
+          sum.tempC.forEach((temp, i) => expectWithin(temp, add(a.tempC[i] ?? NaN, b.tempC[i] ?? NaN), 1e-8))
+          const size = 1 + Math.abs(a.heatInJPerM2.hot) + Math.abs(b.heatInJPerM2.hot)
+          expectWithin(sum.heatInJPerM2.hot, add(a.heatInJPerM2.hot, b.heatInJPerM2.hot), 1e-8 * size)
+        },
+      ),
+      propertyRun,
+    )
+  })
   it('after long enough the slab has its steady state', () => {
     const base = {
       thicknessM: 0.027,

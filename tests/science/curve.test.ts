@@ -75,7 +75,7 @@ describe('dynamic time warping', () => {
     )
   }
   const short = fc.array(fc.integer({ min: -9, max: 9 }), { minLength: 1, maxLength: 5 })
-  it('is the least over every path, inside its band or free', () => {
+  it('law: is the least over every path, inside its band or free', () => {
     fc.assert(
       fc.property(short, short, fc.integer({ min: 0, max: 5 }), (a, b, band) => {
         expect(dynamicTimeWarping(a, b)).toBe(byDefinition(a, b, Infinity))
@@ -84,7 +84,7 @@ describe('dynamic time warping', () => {
       propertyRun,
     )
   })
-  it('is at least the difference of both ends, and at most the sum of differences point by point', () => {
+  it('law: is at least the difference of both ends, and at most the sum of differences point by point', () => {
     fc.assert(
       fc.property(series, series, (a, b) => {
         const free = dynamicTimeWarping(a, b) ?? NaN
@@ -100,7 +100,7 @@ describe('dynamic time warping', () => {
       propertyRun,
     )
   })
-  it('gives up only where the distance is larger than asked', () => {
+  it('law: gives up only where the distance is larger than asked', () => {
     fc.assert(
       fc.property(series, series, fc.double({ min: 0, max: 3000, noNaN: true }), (a, b, giveUpAbove) => {
         const whole = dynamicTimeWarping(a, b) ?? NaN
@@ -145,7 +145,7 @@ describe('discrete Fréchet distance', () => {
     fc.tuple(fc.double({ min: -99, max: 99, noNaN: true }), fc.double({ min: -99, max: 99, noNaN: true })),
     { minLength: 1, maxLength: 12 },
   )
-  it('is at least the ends’ distance and every point’s to the other curve, and at most the worst pair in step', () => {
+  it('law: is at least the ends’ distance and every point’s to the other curve, and at most the worst pair in step', () => {
     fc.assert(
       fc.property(points, points, (p, q) => {
         const leash = discreteFrechet(p, q)

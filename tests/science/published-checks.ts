@@ -23,6 +23,18 @@ const checks = z
   .array(checkSchema)
   .parse(JSON.parse(readFileSync(fileURLToPath(new URL('./reference/checks.json', import.meta.url)), 'utf8')))
 
+/** Every published check's id and computation, for the account of what is run. */
+export const publishedIds: readonly { id: string; computation: string }[] = checks.map(
+  ({ id, computation }) => ({ id, computation }),
+)
+
+/** One published check by its id, for a test that uses a part of it. */
+export function publishedCheck(id: string): PublishedCheck {
+  const found = checks.find((check) => check.id === id)
+  if (found === undefined) throw new Error(`There is no published check ${id}`)
+  return found
+}
+
 /** Schemas for the shapes that inputs and expectations have. */
 export const numberShape = z.number()
 export const numbersShape = z.array(z.number())
