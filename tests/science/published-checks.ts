@@ -59,9 +59,18 @@ export function expectWithin(actual: number, expected: number, allowed: number):
   if (!(off <= allowed)) expect.fail(`${actual} is ${off} from ${expected}; ${allowed} is allowed`)
 }
 
-/** Registers one test per check of a computation; fails when there are none, so that a renamed one cannot vanish. */
-export function testPublished(computation: string, run: (check: PublishedCheck) => void): void {
-  const found = checks.filter((check) => check.computation === computation)
+/**
+ * Registers one test per check of a computation, or only that of one id; fails when there are none, so that a renamed
+ * one cannot vanish.
+ */
+export function testPublished(
+  computation: string,
+  run: (check: PublishedCheck) => void,
+  onlyId?: string,
+): void {
+  const found = checks.filter(
+    (check) => check.computation === computation && (onlyId === undefined || check.id === onlyId),
+  )
   if (found.length === 0) throw new Error(`There is no published check for ${computation}`)
   for (const check of found) {
     const memory = check.status.includes('memory') ? '; from memory' : ''
