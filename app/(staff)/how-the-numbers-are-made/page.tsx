@@ -1,5 +1,5 @@
 import type { Metadata } from 'next'
-import { NumbersView } from '@/components/firings/numbers-view'
+import { NumbersView } from '@/components/numbers/numbers-view'
 import { requirePageActor } from '@/lib/auth/page-actor'
 import { currentSite } from '@/lib/site/current-site'
 
