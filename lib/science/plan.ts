@@ -1,7 +1,7 @@
 import { requireFinite, requireNotNegative, requirePositive } from './domain'
 import type { CurvePoint, DoseModel } from './heat-dose'
 import { equivalentMinutes } from './heat-dose'
-import { findRoot } from './root'
+import { solveWithin } from './solve-within'
 
 /**
  * One leg of the fire. A `ramp` is a straight line from the temperature before it to `targetTempC` over `durationS`;
@@ -12,7 +12,8 @@ export type Stage = { kind: 'ramp' | 'hold'; targetTempC: number; durationS: num
 /** Where a stage lies on the plan's time axis, s from the toast start. */
 export type StageSpan = { stageIndex: number; startS: number; endS: number }
 
-function requireStages(startTempC: number, stages: readonly Stage[]): void {
+/** Refuses what `planCurve` refuses. */
+export function requireStages(startTempC: number, stages: readonly Stage[]): void {
   requireFinite('startTempC', startTempC)
   if (stages.length === 0) throw new RangeError('stages must hold at least one stage')
   let reachedTempC = startTempC
@@ -104,21 +105,72 @@ export function planStageAt(stages: readonly Stage[], timeS: number): StageSpan 
   return found
 }
 
-/** What `solveStage` is asked: which stage, what of it may move and how far, and the dose that is wanted. */
-export type SolveStageRequest = {
-  startTempC: number
-  stages: readonly Stage[]
+/** What of a plan may move. `minutes`: a stage's length. `temperature`: its target, with the plateau that it makes. */
+export type StageMove = {
   /** 0-based. */
   stageIndex: number
-  /** `minutes`: the stage's length. `temperature`: its target, with the holds that keep it. */
   vary: 'minutes' | 'temperature'
+}
+
+/**
+ * A plan with one stage's minutes or target set, min or °C. A target is moved together with the plateau that it makes:
+ * the ramp that reaches it and every hold that keeps it. The stages given are left as they were.
+ *
+ * @throws RangeError for the temperature of a hold that no ramp reaches: it is the start's
+ */
+export function moveStage(stages: readonly Stage[], move: StageMove, value: number): Stage[] {
+  if (move.vary === 'minutes') {
+    return stages.map((stage, i) =>
+      i === move.stageIndex ? { ...stage, durationS: value * 60 } : { ...stage },
+    )
+  }
+  const { first, last } = findPlateau(stages, move.stageIndex)
+  return stages.map((stage, i) => (i >= first && i <= last ? { ...stage, targetTempC: value } : { ...stage }))
+}
+
+/**
+ * First and last stage of the plateau that `stageIndex` belongs to: a ramp and the holds after it.
+ *
+ * @throws RangeError for a hold that no ramp reaches
+ */
+export function findPlateau(stages: readonly Stage[], stageIndex: number): { first: number; last: number } {
+  let first = stageIndex
+  while (stages[first]?.kind === 'hold') first -= 1
+  if (first < 0) {
+    throw new RangeError(
+      `stageIndex ${stageIndex} is a hold at the start temperature: no ramp sets its temperature`,
+    )
+  }
+  let last = stageIndex
+  while (stages[last + 1]?.kind === 'hold') last += 1
+  return { first, last }
+}
+
+/** A move with how far it may go: minutes, or °C. */
+export type LimitedMove = StageMove & { min: number; max: number }
+
+/** Refuses a move of a stage that is not there, or limits that are not in order; `prefix` goes before the names. */
+export function requireMove(stages: readonly Stage[], move: LimitedMove, prefix = ''): void {
+  if (stages[move.stageIndex] === undefined) {
+    throw new RangeError(
+      `${prefix}stageIndex must name one of ${stages.length} stages, not ${move.stageIndex}`,
+    )
+  }
+  if (move.vary === 'minutes') requireNotNegative(`${prefix}min`, move.min)
+  else requireFinite(`${prefix}min`, move.min)
+  requireFinite(`${prefix}max`, move.max)
+  if (move.max < move.min) {
+    throw new RangeError(`${prefix}max must not be below ${prefix}min: ${move.max} under ${move.min}`)
+  }
+}
+
+/** What `solveStage` is asked: which stage, what of it may move and how far, and the dose that is wanted. */
+export type SolveStageRequest = LimitedMove & {
+  startTempC: number
+  stages: readonly Stage[]
   /** Wanted dose of the whole plan, minutes at the model's reference temperature, above 0. */
   wantedDoseMin: number
   model: DoseModel
-  /** Smallest allowed value: minutes, or °C. */
-  min: number
-  /** Largest allowed value: minutes, or °C. */
-  max: number
 }
 
 /**
@@ -150,83 +202,33 @@ const DOSE_TOLERANCE = 1e-9
  */
 export function solveStage(request: SolveStageRequest): SolveStageResult {
   requireStages(request.startTempC, request.stages)
-  if (request.stages[request.stageIndex] === undefined) {
-    throw new RangeError(
-      `stageIndex must name one of ${request.stages.length} stages, not ${request.stageIndex}`,
-    )
-  }
+  requireMove(request.stages, request)
   requirePositive('wantedDoseMin', request.wantedDoseMin)
-  if (request.vary === 'minutes') requireNotNegative('min', request.min)
-  else requireFinite('min', request.min)
-  requireFinite('max', request.max)
-  if (request.max < request.min)
-    throw new RangeError(`max must not be below min: ${request.max} under ${request.min}`)
-  return request.vary === 'minutes' ? solveMinutes(request) : solveTemperature(request)
+  const { startTempC, stages, wantedDoseMin, model, min, max } = request
+  const isStraight = request.vary === 'minutes'
+  const found = solveWithin({
+    valueAt: (value) => planDose(model, startTempC, moveStage(stages, request, value)),
+    min,
+    max,
+    excess: isStraight
+      ? (doseMin) => doseMin - wantedDoseMin
+      : (doseMin) => log10Excess(doseMin, wantedDoseMin),
+    isSame: (doseMin) => isSameDose(doseMin, wantedDoseMin),
+    isStraight,
+  })
+  if (found.isFound) {
+    return { feasible: true, value: found.x, stages: moveStage(stages, request, found.x) }
+  }
+  const range = { attainableMin: found.low, attainableMax: found.high }
+  return { feasible: false, ...range, ...(found.jump === null ? {} : { unattainableMin: found.jump }) }
 }
 
-function isSameDose(doseMin: number, wantedDoseMin: number): boolean {
+/** log10 of a dose over another; a dose of 0 has no logarithm, 1e-300 min stands for it and keeps the sign. */
+export function log10Excess(doseMin: number, wantedDoseMin: number): number {
+  return Math.log10(Math.max(doseMin, 1e-300) / wantedDoseMin)
+}
+
+/** Whether two doses are one but for the solver's own rounding. */
+export function isSameDose(doseMin: number, wantedDoseMin: number): boolean {
   return Math.abs(doseMin - wantedDoseMin) <= DOSE_TOLERANCE * wantedDoseMin
-}
-
-function solveMinutes(request: SolveStageRequest): SolveStageResult {
-  const { startTempC, stages, stageIndex, wantedDoseMin, model, min, max } = request
-  const withMinutes = (minutes: number): Stage[] =>
-    stages.map((stage, i) => (i === stageIndex ? { ...stage, durationS: minutes * 60 } : { ...stage }))
-  const doseOf = (minutes: number) => planDose(model, startTempC, withMinutes(minutes))
-
-  const attainableMin = doseOf(min)
-  const attainableMax = doseOf(max)
-  if (isSameDose(attainableMin, wantedDoseMin))
-    return { feasible: true, value: min, stages: withMinutes(min) }
-  if (isSameDose(attainableMax, wantedDoseMin))
-    return { feasible: true, value: max, stages: withMinutes(max) }
-  if (wantedDoseMin < attainableMin || wantedDoseMin > attainableMax) {
-    return { feasible: false, attainableMin, attainableMax }
-  }
-  const value = min + ((max - min) * (wantedDoseMin - attainableMin)) / (attainableMax - attainableMin)
-  return { feasible: true, value, stages: withMinutes(value) }
-}
-
-/** First and last stage of the plateau that `stageIndex` belongs to: a ramp and the holds after it. */
-function findPlateau(stages: readonly Stage[], stageIndex: number): { first: number; last: number } {
-  let first = stageIndex
-  while (stages[first]?.kind === 'hold') first -= 1
-  if (first < 0) {
-    throw new RangeError(
-      `stageIndex ${stageIndex} is a hold at the start temperature: no ramp sets its temperature`,
-    )
-  }
-  let last = stageIndex
-  while (stages[last + 1]?.kind === 'hold') last += 1
-  return { first, last }
-}
-
-function solveTemperature(request: SolveStageRequest): SolveStageResult {
-  const { startTempC, stages, stageIndex, wantedDoseMin, model, min, max } = request
-  const plateau = findPlateau(stages, stageIndex)
-  const withTempC = (targetTempC: number): Stage[] =>
-    stages.map((stage, i) =>
-      i >= plateau.first && i <= plateau.last ? { ...stage, targetTempC } : { ...stage },
-    )
-  const doseOf = (tempC: number) => planDose(model, startTempC, withTempC(tempC))
-
-  const attainableMin = doseOf(min)
-  const attainableMax = doseOf(max)
-  if (isSameDose(attainableMin, wantedDoseMin)) return { feasible: true, value: min, stages: withTempC(min) }
-  if (isSameDose(attainableMax, wantedDoseMin)) return { feasible: true, value: max, stages: withTempC(max) }
-  if (wantedDoseMin < attainableMin || wantedDoseMin > attainableMax) {
-    return { feasible: false, attainableMin, attainableMax }
-  }
-  // A dose of 0 has no logarithm; 1e-300 min stands for it and keeps the sign.
-  const excess = (tempC: number) => Math.log10(Math.max(doseOf(tempC), 1e-300) / wantedDoseMin)
-  const value = findRoot(excess, min, max)
-  if (!isSameDose(doseOf(value), wantedDoseMin)) {
-    const step = 1e-9 * Math.max(1, Math.abs(value))
-    const from = doseOf(Math.max(min, value - step))
-    const to = doseOf(Math.min(max, value + step))
-    if (!(isSameDose(from, wantedDoseMin) || isSameDose(to, wantedDoseMin))) {
-      return { feasible: false, attainableMin, attainableMax, unattainableMin: { from, to } }
-    }
-  }
-  return { feasible: true, value, stages: withTempC(value) }
 }
