@@ -61,7 +61,7 @@ export function ChangeAccountDialog({
 
   return (
     <Dialog isOpen={isOpen} onClose={onClose} title={`Change ${account.name}`} isBusy={isBusy}>
-      <form onSubmit={save} noValidate className="grid gap-4">
+      <form method="post" onSubmit={save} noValidate className="grid gap-4">
         <FormError problem={problem} labels={accountLabels} />
         {theirs === null ? null : (
           <Notice tone="attention">

@@ -22,7 +22,7 @@ export function ForgotPasswordForm() {
   }
 
   return (
-    <form onSubmit={ask} noValidate className="grid gap-4">
+    <form method="post" onSubmit={ask} noValidate className="grid gap-4">
       <FormError problem={problem} labels={{ email: 'E-mail' }} />
       {isAsked ? (
         <Notice>

@@ -45,7 +45,7 @@ export function InviteDialog({ customers }: { customers: readonly CustomerChoice
         Invite a person
       </Button>
       <Dialog isOpen={isOpen} onClose={() => setIsOpen(false)} title="Invite a person" isBusy={isBusy}>
-        <form onSubmit={invite} noValidate className="grid gap-4">
+        <form method="post" onSubmit={invite} noValidate className="grid gap-4">
           <FormError problem={problem} labels={accountLabels} />
           <TextField
             name="email"

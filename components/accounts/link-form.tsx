@@ -72,7 +72,7 @@ function OpenLinkForm({ token, link }: { token: string; link: LinkDto }) {
   }
 
   return (
-    <form onSubmit={submit} noValidate className="grid gap-4">
+    <form method="post" onSubmit={submit} noValidate className="grid gap-4">
       <div>
         <h1>{title}</h1>
         <p className="mt-2 text-soft">{intro}</p>

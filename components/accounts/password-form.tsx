@@ -30,7 +30,7 @@ export function PasswordForm({ email }: { email: string }) {
   }
 
   return (
-    <form onSubmit={change} noValidate className="grid content-start gap-4">
+    <form method="post" onSubmit={change} noValidate className="grid content-start gap-4">
       <h2>Password</h2>
       <FormError
         problem={problem}

@@ -28,7 +28,7 @@ export function PreferencesForm({ me }: { me: MeDto }) {
   }
 
   return (
-    <form onSubmit={save} noValidate className="grid content-start gap-4">
+    <form method="post" onSubmit={save} noValidate className="grid content-start gap-4">
       <h2>Name and units</h2>
       <FormError problem={problem} labels={{ name: 'Name' }} />
       <TextField

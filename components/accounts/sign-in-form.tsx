@@ -22,7 +22,7 @@ export function SignInForm({ nextPath, knownEmail = '' }: { nextPath: string; kn
   }
 
   return (
-    <form onSubmit={signIn} noValidate className="grid gap-4">
+    <form method="post" onSubmit={signIn} noValidate className="grid gap-4">
       <FormError problem={problem} labels={{ email: 'E-mail', password: 'Password' }} />
       <TextField
         name="email"

@@ -50,7 +50,7 @@ export function FiresideFinish({
   }
   return (
     <FiresideSheet title="Finish this firing" isWide onClose={onClose}>
-      <form onSubmit={finish} noValidate>
+      <form method="post" onSubmit={finish} noValidate>
         <FormError
           problem={problem}
           labels={{

@@ -103,7 +103,7 @@ export function FiresideAbandon({
   const ownError = isAsked && reason.trim().length < 3 ? 'Say why in a few words.' : undefined
   return (
     <FiresideSheet title="Abandon this firing?" onClose={onClose}>
-      <form onSubmit={abandon} noValidate>
+      <form method="post" onSubmit={abandon} noValidate>
         <FormError problem={problem} labels={{ reason: 'Why' }} />
         <p className="mb-3 text-soft">
           It is kept with its curve and your reason, and not scored. The barrel can be fired again.

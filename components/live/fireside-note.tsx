@@ -20,7 +20,7 @@ export function FiresideNote({ onSave, onClose }: { onSave: (words: string) => v
   }
   return (
     <FiresideSheet title="Note" onClose={onClose}>
-      <form onSubmit={save} noValidate>
+      <form method="post" onSubmit={save} noValidate>
         <div className="mb-4 flex flex-wrap gap-3">
           {usualNotes.map((usual) => (
             <Button

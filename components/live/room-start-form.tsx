@@ -85,7 +85,12 @@ export function RoomStartForm(props: RoomStartFormProps) {
     })
 
   return (
-    <form onSubmit={start} noValidate className="grid min-h-dvh grid-cols-[minmax(0,1fr)_600px]">
+    <form
+      method="post"
+      onSubmit={start}
+      noValidate
+      className="grid min-h-dvh grid-cols-[minmax(0,1fr)_600px]"
+    >
       <div className="flex min-w-0 flex-col border-r border-line px-6 py-4">
         <div className="flex items-center justify-between gap-4">
           <h1 className="text-title">

@@ -57,7 +57,7 @@ export function NewRecipeForm({
   }
 
   return (
-    <form onSubmit={submit} noValidate className="max-w-[34rem] space-y-4">
+    <form method="post" onSubmit={submit} noValidate className="max-w-[34rem] space-y-4">
       <FormError problem={problem} labels={labels} />
       <TextField
         name="name"

@@ -62,7 +62,7 @@ export function SettingsForm({ settings, bounds, timeZones, unit, isReadOnly }: 
   }
 
   return (
-    <form onSubmit={save} noValidate className="max-w-[64rem]">
+    <form method="post" onSubmit={save} noValidate className="max-w-[64rem]">
       <FormError problem={problem} labels={labels} />
       {theirs === null ? null : <BothSides theirs={theirs} mine={draft} />}
       <SiteFields

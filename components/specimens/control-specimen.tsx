@@ -36,6 +36,7 @@ export function ControlSpecimen() {
   return (
     <div className="grid grid-cols-[repeat(auto-fit,minmax(20rem,1fr))] gap-x-9 gap-y-6">
       <form
+        method="post"
         className="space-y-3"
         noValidate
         onSubmit={(event) => {
@@ -75,7 +76,7 @@ export function ControlSpecimen() {
           Save with two faults
         </Button>
       </form>
-      <form className="space-y-3" onSubmit={(event) => event.preventDefault()}>
+      <form method="post" className="space-y-3" onSubmit={(event) => event.preventDefault()}>
         <SelectField
           name="unit"
           label="My unit"

@@ -57,7 +57,7 @@ function OpenConfirmDialog({
 
   return (
     <Dialog isOpen onClose={onClose} title={title} isBusy={isBusy}>
-      <form onSubmit={confirm} noValidate>
+      <form method="post" onSubmit={confirm} noValidate>
         <FormError problem={problem} />
         <div>{children}</div>
         {reasonLabel === undefined ? null : (

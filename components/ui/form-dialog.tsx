@@ -167,7 +167,7 @@ export function FormDialog(props: FormDialogProps) {
           </>
         }
       >
-        <form id={formId} onSubmit={submit} noValidate className="grid gap-3">
+        <form id={formId} method="post" onSubmit={submit} noValidate className="grid gap-3">
           <FormError
             problem={problem}
             labels={Object.fromEntries(props.fields.map((f) => [f.name, f.label]))}

@@ -65,7 +65,7 @@ function OpenSignDialog({
 
   return (
     <Dialog isOpen onClose={onClose} title={title} isBusy={isBusy}>
-      <form onSubmit={sign} noValidate>
+      <form method="post" onSubmit={sign} noValidate>
         <FormError problem={problem} />
         {children}
         {reasonLabel === undefined ? null : (
