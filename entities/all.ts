@@ -1,5 +1,6 @@
 import { AccountLinkEntity } from './account-link'
 import { AccountEntity } from './account'
+import { AlarmEventEntity } from './alarm-event'
 import { AuditEntryEntity } from './audit-entry'
 import { BatchEntity } from './batch'
 import { CueEntity } from './cue'
@@ -14,6 +15,8 @@ import { GatewayTokenEntity } from './gateway-token'
 import { GatewayEntity } from './gateway'
 import { HearthEntity } from './hearth'
 import { MarkEntity } from './mark'
+import { MarkerResponseEntity } from './marker-response'
+import { MarkerEntity } from './marker'
 import { PieceEntity } from './piece'
 import { ProbeCheckEntity } from './probe-check'
 import { ProbePlaceEntity } from './probe-place'
@@ -37,6 +40,7 @@ import { WaterCheckEntity } from './water-check'
 export const entities = [
   AccountLinkEntity,
   AccountEntity,
+  AlarmEventEntity,
   AuditEntryEntity,
   BatchEntity,
   CueEntity,
@@ -51,6 +55,8 @@ export const entities = [
   GatewayEntity,
   HearthEntity,
   MarkEntity,
+  MarkerResponseEntity,
+  MarkerEntity,
   PieceEntity,
   ProbeCheckEntity,
   ProbePlaceEntity,

@@ -5,7 +5,9 @@ import { M0004BatchesPieces } from './m0004-batches-pieces'
 import { M0005FiringsMarks } from './m0005-firings-marks'
 import { M0006ReadingsSeals } from './m0006-readings-seals'
 import { M0007Scores } from './m0007-scores'
+import { M0008Markers } from './m0008-markers'
 import { M0009GatewayEnrolmentProbeHistory } from './m0009-gateway-enrolment-probe-history'
+import { M0010Alarms } from './m0010-alarms'
 
 /** In the order in which they run; a landed migration is never edited. */
 export const migrationsList = [
@@ -16,5 +18,7 @@ export const migrationsList = [
   { name: 'm0005-firings-marks', class: M0005FiringsMarks },
   { name: 'm0006-readings-seals', class: M0006ReadingsSeals },
   { name: 'm0007-scores', class: M0007Scores },
+  { name: 'm0008-markers', class: M0008Markers },
   { name: 'm0009-gateway-enrolment-probe-history', class: M0009GatewayEnrolmentProbeHistory },
+  { name: 'm0010-alarms', class: M0010Alarms },
 ]

@@ -92,10 +92,10 @@ function placeWords(place: ProbePlace | null): string {
 }
 
 async function readCompared(em: EntityManager, firing: FiringDto): Promise<ComparedFiring> {
-  const [score, readings, site] = await Promise.all([
+  const site = await siteOfVersion(em, firing.siteSettingsVersion ?? 1)
+  const [score, readings] = await Promise.all([
     readScore(em, firing.id),
-    toastReadings(em, firing.id, firing.toastAt ?? ''),
-    siteOfVersion(em, firing.siteSettingsVersion ?? 1),
+    toastReadings(em, firing.id, firing.toastAt ?? '', site.rules.signals),
   ])
   const curves = firingCurves(firing, readings, site.rules, { points: 600, dosePoints: 200, woodColumns: 0 })
   if (curves === null) {

@@ -1,8 +1,9 @@
 import type { EntityManager } from '@mikro-orm/postgresql'
 import type { Firing } from '@/entities/firing'
+import { endFiringAlarms } from '@/lib/alarms/end-firing-alarms'
 import { queryRows } from '@/lib/db/orm'
 
-/** Frees the hearth and the probes at the firing's end. */
+/** Frees the hearth and the probes at the firing's end, and puts away its alarms that are still on. */
 export async function closePeriods(em: EntityManager, firing: Firing, at: Date): Promise<void> {
   await em.flush()
   for (const table of ['firing_placements', 'firing_probes']) {
@@ -12,4 +13,5 @@ export async function closePeriods(em: EntityManager, firing: Firing, at: Date):
       [at, firing.id],
     )
   }
+  await endFiringAlarms(em, firing.id, at)
 }

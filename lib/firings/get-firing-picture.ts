@@ -3,6 +3,7 @@ import type { Actor } from '@/lib/auth/actor'
 import { requirePermission } from '@/lib/auth/permissions'
 import { forkEm, queryRows } from '@/lib/db/orm'
 import { firingCurves } from '@/lib/firings/firing-curves'
+import { readFiringAlarms } from '@/lib/alarms/read-firing-alarms'
 import { requireReadableFiring } from '@/lib/firings/may-read-firing'
 import type { FiringPicture, ProbeCheckFact } from '@/lib/firings/picture-types'
 import { readFiring } from '@/lib/firings/read-firing'
@@ -16,14 +17,15 @@ export async function getFiringPicture(actor: Actor, input: { id: string }): Pro
   const em = await forkEm()
   const firing = await readFiring(em, input.id)
   requireReadableFiring(actor, firing)
-  const [score, readings, site, checks] = await Promise.all([
-    readScore(em, firing.id),
-    firing.toastAt === null ? null : toastReadings(em, firing.id, firing.toastAt),
-    currentSite(em),
-    readChecks(em, firing.id),
-  ])
-  const version = score?.siteSettingsVersion ?? firing.siteSettingsVersion ?? site.version
+  const site = await currentSite(em)
+  const version = firing.siteSettingsVersion ?? site.version
   const { rules } = version === site.version ? site : await siteOfVersion(em, version)
+  const [score, readings, checks, alarms] = await Promise.all([
+    readScore(em, firing.id),
+    firing.toastAt === null ? null : toastReadings(em, firing.id, firing.toastAt, rules.signals),
+    readChecks(em, firing.id),
+    readFiringAlarms(em, firing.id),
+  ])
   const result = score === null ? null : scoreResultOf(score.result)
   return {
     firing,
@@ -35,6 +37,7 @@ export async function getFiringPicture(actor: Actor, input: { id: string }): Pro
         ? null
         : firingCurves(firing, readings, rules, { toastDepthMm: result?.toastDepthMm ?? null }),
     checks,
+    alarms,
     isSealed: readings !== null && readings.sealRevision !== null,
   }
 }

@@ -3,9 +3,11 @@ import type { Actor } from '@/lib/auth/actor'
 import { forkEm } from '@/lib/db/orm'
 import { getFiring } from '@/lib/firings/get-firing'
 import type { firingReadingsSchema, readingsQuery } from '@/lib/firings/schema'
+import { checkReadings } from '@/lib/ingest/checked-readings'
 import type { FiringSeries } from '@/lib/ingest/firing-readings'
 import { firingReadings } from '@/lib/ingest/firing-readings'
 import { downsampleKeepingExtremes } from '@/lib/science/curve'
+import { siteOfVersion } from '@/lib/site/current-site'
 
 export type FiringReadingsDto = z.infer<typeof firingReadingsSchema>
 
@@ -22,12 +24,14 @@ function cut(series: FiringSeries, fromMs: number, toMs: number): { atMs: number
   return { atMs, tempC }
 }
 
-/** A firing's curves in °C, on seconds from toast start (preheat start while there is no toast). */
+/** A firing's curves in °C as they are believed (what was stuck or jumped is none), on seconds from toast start (preheat start while there is no toast). */
 export async function getReadings(actor: Actor, input: Input): Promise<FiringReadingsDto> {
   const firing = await getFiring(actor, input)
   const zeroAt = firing.toastAt ?? firing.preheatAt ?? firing.queuedAt
   const zeroMs = Date.parse(zeroAt)
-  const { sealRevision, series } = await firingReadings(await forkEm(), firing.id)
+  const em = await forkEm()
+  const { rules } = await siteOfVersion(em, firing.siteSettingsVersion ?? 1)
+  const { sealRevision, series } = checkReadings(await firingReadings(em, firing.id), rules.signals)
   return {
     firingId: firing.id,
     zeroAt,

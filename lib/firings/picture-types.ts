@@ -1,3 +1,4 @@
+import type { AlarmDto } from '@/lib/alarms/schema'
 import type { FiringDto } from '@/lib/firings/schema'
 import type { ScoreDto } from '@/lib/firings/read-score'
 import type { BandPoint } from '@/lib/recipes/plan-of'
@@ -71,5 +72,7 @@ export type FiringPicture = {
   /** Null before the toast, and when the lead probe gave nothing. */
   curves: FiringCurves | null
   checks: ProbeCheckFact[]
+  /** In the order in which they came. */
+  alarms: AlarmDto[]
   isSealed: boolean
 }

@@ -1,4 +1,5 @@
 import type { FiringDto } from '@/lib/firings/schema'
+import { checkReadings } from '@/lib/ingest/checked-readings'
 import type { FiringReadings, FiringSeries } from '@/lib/ingest/firing-readings'
 import { toReadingSeries } from '@/lib/ingest/firing-readings'
 import type { RecipeContent } from '@/lib/recipes/schema'
@@ -60,12 +61,12 @@ function leadSwaps(lead: FiringSeries, toastAtMs: number): ScoreInput['firing'][
   })
 }
 
-/** Everything that a score reads, from what is stored of a firing. Null when it never toasted or had no lead probe. */
-export function scoreInputOf(
-  firing: FiringDto,
-  readings: FiringReadings,
-  rules: SiteRules,
-): ScoreInput | null {
+/**
+ * Everything that a score reads, from what is stored of a firing: what was stuck or jumped is no reading. Null when it
+ * never toasted or had no lead probe.
+ */
+export function scoreInputOf(firing: FiringDto, stored: FiringReadings, rules: SiteRules): ScoreInput | null {
+  const readings = checkReadings(stored, rules.signals)
   const lead = readings.series.find((series) => series.role === 'lead')
   const assignment = lead?.assignments[0]
   if (firing.toastAt === null || firing.recipeCopy === null || lead === undefined || assignment === undefined)

@@ -1,9 +1,11 @@
 import { operations as accounts } from '@/lib/accounts/operations'
+import { operations as alarms } from '@/lib/alarms/operations'
 import { operations as audit } from '@/lib/audit/operations'
 import { operations as batches } from '@/lib/batches/operations'
 import { operations as firings } from '@/lib/firings/operations'
 import { operations as http } from '@/lib/http/operations'
 import { operations as ingest } from '@/lib/ingest/operations'
+import { operations as markers } from '@/lib/markers/operations'
 import { operations as probes } from '@/lib/probes/operations'
 import { operations as recipes } from '@/lib/recipes/operations'
 import { operations as site } from '@/lib/site/operations'
@@ -15,11 +17,13 @@ import type { AnyOperation } from '@/lib/http/operation'
  */
 const areas: readonly Readonly<Record<string, AnyOperation>>[] = [
   accounts,
+  alarms,
   audit,
   batches,
   firings,
   http,
   ingest,
+  markers,
   probes,
   recipes,
   site,

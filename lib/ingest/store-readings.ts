@@ -29,7 +29,7 @@ const noPartition = '23514'
 const mostBoots = 500
 
 type Message = { gateway: GatewayIdentity; envelope: Envelope; offsetMs: number; at: Date }
-type Stored = { answer: IngestAnswer; sorted: SortedReadings }
+type Stored = { answer: IngestAnswer; sorted: SortedReadings; clockOffsetMs: number }
 
 /**
  * Stores one message of a gateway and answers how far its boot is acknowledged; returns only after the commit.
@@ -46,6 +46,7 @@ export async function storeReadings(gateway: GatewayIdentity, message: unknown):
   const envelope = readEnvelope(message)
   const work: Message = { gateway, envelope, offsetMs: clockOffsetOf(gateway, envelope, at.getTime()), at }
   const stored = await storeWithPartitions(work)
+  hubDoor().current?.gatewayHeard(gateway.gatewayId, at.getTime(), stored.clockOffsetMs)
   if (stored.sorted.seqs.length > 0) {
     noteLateRows(stored.sorted.rows, at.getTime())
     hubDoor().current?.takeRows(stored.sorted.rows)
@@ -128,8 +129,9 @@ async function planChange(client: Pick<PoolClient, 'query'>, work: Message, boot
   return { boot, gatewayId: gateway.gatewayId, received, ackedSeq, clockOffsetMs, sorted, at }
 }
 
-function toStored({ ackedSeq, sorted }: Plan): Stored {
-  return { answer: { ackedSeq, refused: sorted.refused.map(({ seq, reason }) => ({ seq, reason })) }, sorted }
+function toStored({ ackedSeq, sorted, clockOffsetMs }: Plan): Stored {
+  const refused = sorted.refused.map(({ seq, reason }) => ({ seq, reason }))
+  return { answer: { ackedSeq, refused }, sorted, clockOffsetMs }
 }
 
 function bootKey(work: Message): string {

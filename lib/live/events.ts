@@ -1,4 +1,6 @@
 import * as z from 'zod'
+import { alarmKinds, alarmLevels } from '@/lib/alarms/alarm-kinds'
+import { alarmStates } from '@/lib/alarms/alarm-states'
 
 /** Every socket event, `noun:verb`, with its payload. Namespaces: /live for people, /gateway for gateways. */
 
@@ -39,6 +41,25 @@ const signalSchema = z.object({
   cause: z.string().nullable(),
   lastAtMs: z.number().nullable(),
   tempC: z.number().nullable(),
+})
+
+/** An alarm that is on, has to be seen yet, or is shelved. Its words are in °C (`shownAlarmWords`). */
+const presentAlarmSchema = z.object({
+  /** Of this coming of the alarm; `acknowledge`, `shelve` and `unshelve` name it. */
+  id: z.string(),
+  kind: z.enum(alarmKinds),
+  words: z.string(),
+  level: z.enum(alarmLevels),
+  sinceMs: z.number(),
+  state: z.enum(alarmStates),
+  mayAcknowledge: z.boolean(),
+  shelvedUntilMs: z.number().nullable(),
+})
+
+/** A sign of trouble that is no alarm, in words with what to do. */
+const troubleSchema = z.object({
+  kind: z.enum(['gateway lost', 'pair disagrees', 'clock differs']),
+  words: z.string(),
 })
 
 const nextActionSchema = z.object({
@@ -91,6 +112,10 @@ export const firingStateSchema = z.object({
       toastDepthMm: z.number().nullable(),
     })
     .nullable(),
+  troubles: z.array(troubleSchema),
+  /** The gravest first, unseen before seen, shelved ones last. */
+  alarms: z.array(presentAlarmSchema),
+  /** The gravest of those that are on, for the room; a reminder is none. */
   alarm: z.object({ words: z.string(), level: z.enum(['amber', 'red']), sinceMs: z.number() }).nullable(),
 })
 export type FiringState = z.infer<typeof firingStateSchema>
@@ -116,7 +141,7 @@ export type FiringJoined = z.infer<typeof firingJoinedSchema>
 
 /** One firing of the room overview. */
 export const roomFiringSchema = firingStateSchema
-  .omit({ forecast: true, stave: true })
+  .omit({ forecast: true, stave: true, alarms: true, troubles: true })
   .extend({ hearthNumber: z.number().int().nullable(), serial: z.string(), recipeName: z.string() })
 export type RoomFiring = z.infer<typeof roomFiringSchema>
 
@@ -133,7 +158,7 @@ export const events = {
   firingReadings: 'firing:readings',
   firingState: 'firing:state',
   /** server → client: marks, phase, finish: the client fetches what it needs again */
-  /** once a second: every live firing without forecast and stave */
+  /** once a second: every live firing in its short form */
   roomState: 'room:state',
   firingChanged: 'firing:changed',
   roomChanged: 'room:changed',

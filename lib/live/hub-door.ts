@@ -13,10 +13,14 @@ export type CommittedRows = {
   flag: number[]
 }
 
-/** What the hub takes from the rest of the process. Both return at once and never throw. */
+/** What the hub takes from the rest of the process. All return at once and never throw. */
 export type HubDoor = {
   takeRows: (rows: CommittedRows) => void
+  /** A message of a gateway was stored, whatever was in it. */
+  gatewayHeard: (gatewayId: string, atMs: number, clockOffsetMs: number) => void
   firingChanged: (firingId: string, what: string) => void
+  /** A hand's move of an alarm was committed. */
+  alarmsChanged: (firingId: string) => void
 }
 
 /**

@@ -1,3 +1,5 @@
+import type { EntityManager } from '@mikro-orm/postgresql'
+import { readAlarmStandings } from '@/lib/alarms/read-alarm-standings'
 import { forkEm, queryRows } from '@/lib/db/orm'
 import { readHot } from '@/lib/ingest/read-hot'
 import { events } from '@/lib/live/events'
@@ -16,15 +18,19 @@ const keepEndedMs = 10 * 60_000
 
 /** Reads a firing's readings so far and holds it from then on. */
 async function loadFiring(hub: HubState, facts: FiringFacts, stamp: string): Promise<void> {
-  const one = newlyHeld(createLiveFiring(facts), stamp)
+  const one = newlyHeld(createLiveFiring(facts, hub.gateways), stamp)
   hub.loading.set(facts.firingId, one)
   try {
     // Rows that are committed from here on come through `takeRows`; a row that comes both ways is one point.
     const em = await forkEm()
+    await knowGateways(hub, em, facts)
     for (const assignment of facts.assignments) {
       const rows = await readHot(em, assignment.probeNo, [assignment])
       for (let i = 0; i < rows.atMs.length; i += 1) putRow(one.live, assignment, rows, i)
     }
+    // Those of a firing that is held already go over, with what was not written down yet.
+    await hub.alarmsUnderWay
+    one.live.restoreAlarms(await readAlarmStandings(em, facts.firingId))
     one.live.glance(nowMs())
     one.emittedIndex = one.live.stream.lastIndex
     hub.held.set(facts.firingId, one)
@@ -48,6 +54,26 @@ export async function refreshFiring(hub: HubState, firingId: string, stamp: stri
   now.stamp = stamp
   now.stateAtMs = -Infinity
   if (isEnded) now.endedAtMs ??= nowMs()
+}
+
+/** The gateways of a firing's probes, with when they were heard last, by this process or another. */
+async function knowGateways(hub: HubState, em: EntityManager, facts: FiringFacts): Promise<void> {
+  const ids = [...new Set(facts.assignments.map((assignment) => assignment.gatewayId))]
+  if (ids.length === 0) return
+  const rows = await queryRows<{
+    id: string
+    name: string
+    last_seen_at: Date | null
+    clock_offset_ms: number | null
+  }>(
+    em,
+    `select id, name, last_seen_at, clock_offset_ms from gateways where id in (${ids.map(() => '?').join(', ')})`,
+    ids,
+  )
+  for (const row of rows) {
+    const heardAtMs = row.last_seen_at === null ? null : new Date(row.last_seen_at).getTime()
+    hub.gateways.know(row.id, row.name, heardAtMs, row.clock_offset_ms)
+  }
 }
 
 /** Probes and their periods. */
@@ -107,6 +133,8 @@ export async function reconcileWithDatabase(hub: HubState): Promise<void> {
     await refreshFiring(hub, firingId, stamp)
     if (isNews) await announce(hub, firingId, [known === undefined ? 'started' : 'details'])
   }
+  const em = await forkEm()
+  for (const { live } of hub.held.values()) await knowGateways(hub, em, live.facts())
   const liveIds = new Set(stamps.map(({ firingId }) => firingId))
   for (const [firingId, one] of [...hub.held]) await letGo(hub, firingId, one, liveIds.has(firingId))
 }

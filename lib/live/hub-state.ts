@@ -1,5 +1,9 @@
 import type { FiringState } from '@/lib/live/events'
+import type { AlarmMove } from '@/lib/alarms/firing-alarms'
+import type { GatewayWatch } from '@/lib/live/gateway-watch'
+import { createGatewayWatch } from '@/lib/live/gateway-watch'
 import type { LiveFiring } from '@/lib/live/live-firing'
+import { nowMs } from '@/lib/runtime'
 
 /** Where the hub speaks to: the rooms of a socket server, or a test's notebook. */
 export type HubOutput = {
@@ -28,6 +32,11 @@ export type HubState = {
   readonly loading: Map<string, Held>
   /** Notices that were not worked through yet, by firing. */
   readonly notices: Map<string, string[]>
+  readonly gateways: GatewayWatch
+  /** Moves of alarms that are not written down yet, in their order. */
+  readonly alarmMoves: { firingId: string; move: AlarmMove }[]
+  /** Writing them, and reading again what hands did, goes one after the other. */
+  alarmsUnderWay: Promise<void>
   roomAtMs: number
   isStopped: boolean
   /** Reading goes one after the other: what is read later is newer. */
@@ -40,6 +49,9 @@ export function createHubState(output: HubOutput): HubState {
     held: new Map(),
     loading: new Map(),
     notices: new Map(),
+    gateways: createGatewayWatch(nowMs()),
+    alarmMoves: [],
+    alarmsUnderWay: Promise.resolve(),
     roomAtMs: -Infinity,
     isStopped: false,
     underWay: Promise.resolve(),

@@ -1,6 +1,7 @@
 import type { FiringState, RoomFiring, RoomState } from '@/lib/live/events'
 import { events } from '@/lib/live/events'
 import type { FiringFacts } from '@/lib/live/firing-facts'
+import { keepAlarmMoves } from '@/lib/live/hub-alarms'
 import type { Held, HubState } from '@/lib/live/hub-state'
 import type { LiveFiring } from '@/lib/live/live-firing'
 import { nowMs } from '@/lib/runtime'
@@ -23,12 +24,14 @@ export function tickHub(hub: HubState): void {
 
 function tickFiring(hub: HubState, firingId: string, one: Held, atMs: number): void {
   const { live } = one
+  // First, so that what was found to be stuck goes out with this tick.
+  const told = tellingOf(live, atMs)
+  keepAlarmMoves(hub, firingId, live)
   const points = live.stream.between(one.emittedIndex, live.stream.lastIndex)
   one.emittedIndex = live.stream.lastIndex
   if (points.length > 0) {
     hub.output.toFiring(firingId, events.firingReadings, { firingId, epoch: live.epoch, points })
   }
-  const told = tellingOf(live, atMs)
   if (atMs - one.stateAtMs < stateMs && told === one.told) return
   one.told = told
   one.stateAtMs = atMs
@@ -37,10 +40,13 @@ function tickFiring(hub: HubState, firingId: string, one: Held, atMs: number): v
 }
 
 function tellingOf(live: LiveFiring, atMs: number): string {
-  const { signals, alarm, words, position } = live.glance(atMs)
+  const { signals, alarms, troubles, words, position } = live.glance(atMs)
   const { revision, state } = live.facts()
   const conditions = signals.map((signal) => `${signal.role} ${signal.condition} ${signal.cause}`)
-  return [revision, state, ...conditions, alarm?.words, words, position].join('|')
+  const said = alarms.map((alarm) => `${alarm.id} ${alarm.state} ${alarm.words}`)
+  return [revision, state, ...conditions, ...said, ...troubles.map((one) => one.words), words, position].join(
+    '|',
+  )
 }
 
 /** Every live firing in its short form, by hearth. */
@@ -54,7 +60,7 @@ export function roomStateOf(hub: HubState): RoomState {
 }
 
 function toRoomFiring(facts: FiringFacts, state: FiringState): RoomFiring {
-  const { forecast: _forecast, stave: _stave, ...rest } = state
+  const { forecast: _forecast, stave: _stave, alarms: _alarms, troubles: _troubles, ...rest } = state
   const { hearthNumber, serial, recipeName } = facts
   return { ...rest, hearthNumber, serial, recipeName }
 }

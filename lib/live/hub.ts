@@ -1,5 +1,6 @@
 import { AppError } from '@/lib/errors'
 import type { FiringJoined, RoomState } from '@/lib/live/events'
+import { readAlarmsAgain } from '@/lib/live/hub-alarms'
 import { hubDoor } from '@/lib/live/hub-door'
 import { loadUntilDone, noticeChange, reconcileWithDatabase, refreshFiring } from '@/lib/live/hub-load'
 import { takeRows } from '@/lib/live/hub-rows'
@@ -42,7 +43,9 @@ export function createHub(output: HubOutput, { isSelfWound = true }: HubOptions 
     start: async () => {
       hubDoor().current = {
         takeRows: (rows) => takeRows(hub, rows),
+        gatewayHeard: hub.gateways.hear,
         firingChanged: (firingId, what) => noticeChange(hub, firingId, what),
+        alarmsChanged: (firingId) => void readAlarmsAgain(hub, firingId),
       }
       if (isSelfWound) timers.push(setInterval(() => tickHub(hub), tickMs))
       await loadUntilDone(hub)
@@ -56,7 +59,10 @@ export function createHub(output: HubOutput, { isSelfWound = true }: HubOptions 
     },
     tick: () => tickHub(hub),
     reconcile,
-    settled: () => inTurn(hub, async () => undefined),
+    settled: async () => {
+      await inTurn(hub, async () => undefined)
+      await hub.alarmsUnderWay
+    },
     join: (request, enter) => joinFiring(hub, request, enter),
     roomState: () => roomStateOf(hub),
   }

@@ -1,9 +1,16 @@
 import { randomUUID } from 'node:crypto'
+import type { AlarmMove, AlarmStanding, PresentAlarm } from '@/lib/alarms/firing-alarms'
+import { createFiringAlarms } from '@/lib/alarms/firing-alarms'
+import { isSounding } from '@/lib/alarms/alarm-states'
 import type { ProbeAssignment } from '@/lib/ingest/firing-probes'
 import { recordSpacingS } from '@/lib/ingest/record-spacing'
 import type { FiringJoined, FiringState } from '@/lib/live/events'
+import { alarmConditions } from '@/lib/live/alarm-conditions'
+import type { CheckedCurve } from '@/lib/live/checked-curve'
+import { createCheckedCurve } from '@/lib/live/checked-curve'
 import type { FiringFacts } from '@/lib/live/firing-facts'
-import { createLiveAlarms } from '@/lib/live/live-alarms'
+import type { GatewayNow, GatewayWatch } from '@/lib/live/gateway-watch'
+import { createPairWatch, troublesOf } from '@/lib/live/pair-watch'
 import { liveForecast } from '@/lib/live/live-forecast'
 import type { NewestFlag, Role, Signal } from '@/lib/live/live-signals'
 import { liveSignals } from '@/lib/live/live-signals'
@@ -11,7 +18,6 @@ import { createLiveStave } from '@/lib/live/live-stave'
 import type { PointStream } from '@/lib/live/point-stream'
 import { createPointStream } from '@/lib/live/point-stream'
 import type { RoleCurve } from '@/lib/live/role-curve'
-import { createRoleCurve } from '@/lib/live/role-curve'
 import { createRunningDose } from '@/lib/live/running-dose'
 import { nextAction, stageNow } from '@/lib/live/stage-now'
 import { planDoseAt } from '@/lib/recipes/plan-of'
@@ -23,7 +29,8 @@ import { climbsCPerMin } from '@/lib/science/score-limits'
 /** What makes viewers be told at once, and not only at the next second. */
 export type Glance = {
   signals: Signal[]
-  alarm: FiringState['alarm']
+  alarms: PresentAlarm[]
+  troubles: FiringState['troubles']
   words: string
   position: number | null
 }
@@ -41,19 +48,26 @@ export type LiveFiring = {
   /** Advances everything. */
   state: (atMs: number) => FiringState
   staveColumns: () => FiringJoined['staveColumns']
+  /** What its alarms did by themselves since the last call. */
+  takeAlarmMoves: () => AlarmMove[]
+  /** As the table has them; those that `isPending` stay as they are here. */
+  restoreAlarms: (standings: readonly AlarmStanding[], isPending?: (key: string) => boolean) => void
 }
 
 const climbWindowS = 30
 /** Gaps widen the interval slowly; looking for them walks the whole curve. */
 const gapsEveryMs = 5_000
 
-export function createLiveFiring(firstFacts: FiringFacts): LiveFiring {
+/** @param gateways left out: nothing is known of them, and none is called lost */
+export function createLiveFiring(firstFacts: FiringFacts, gateways?: GatewayWatch): LiveFiring {
   const epoch = randomUUID()
   const stream = createPointStream()
-  const curves: Record<Role, RoleCurve> = {
-    lead: createRoleCurve(),
-    opposite: createRoleCurve(),
-    coals: createRoleCurve(),
+  const checks = firstFacts.rules.signals
+  const curves: Record<Role, CheckedCurve> = {
+    lead: createCheckedCurve(checks),
+    opposite: createCheckedCurve(checks),
+    // Coals may do what wood cannot.
+    coals: createCheckedCurve({ ...checks, areChecked: false }),
   }
   const none: NewestFlag = { atMs: -Infinity, flag: 0 }
   const flags: Record<Role, NewestFlag> = { lead: { ...none }, opposite: { ...none }, coals: { ...none } }
@@ -61,11 +75,11 @@ export function createLiveFiring(firstFacts: FiringFacts): LiveFiring {
   const dose = createRunningDose(facts.rules.dose, (curve) => {
     return 1000 * facts.rules.gaps.gapFromSpacings * recordSpacingS(curve.since(0).atMs)
   })
-  const alarms = createLiveAlarms(facts)
+  const alarms = createFiringAlarms()
+  const pair = createPairWatch(checks)
   let stave = createLiveStave(facts)
   let doseMin = 0
   let gaps: DoseGaps = { atMs: -Infinity, log10Half: facts.rules.errors.sameMountLog10, isIncomplete: false }
-  let alarm: FiringState['alarm'] = null
 
   const setWindow = () => {
     const { toastMs, restMs, endedMs } = facts
@@ -73,14 +87,37 @@ export function createLiveFiring(firstFacts: FiringFacts): LiveFiring {
   }
   setWindow()
 
-  const advance = (atMs: number): Signal[] => {
+  /** What was found to be none goes out again as no reading, and no longer counts. */
+  const settle = (role: 'lead' | 'opposite') => {
+    const other = curves[role === 'lead' ? 'opposite' : 'lead'].raw
+    const changed = curves[role].settle(curves.coals.length > 0 ? curves.coals.raw : other)
+    for (const i of changed) stream.push(role, curves[role].atMs(i), curves[role].tempC(i))
+    if (role === 'lead' && changed[0] !== undefined) {
+      dose.touch(changed[0])
+      stave.touch(changed[0])
+    }
+  }
+  const gatewayOfLead = (atMs: number): GatewayNow | null => {
+    const lead = facts.assignments.findLast((one) => one.role === 'lead' && one.fromMs <= atMs)
+    return lead === undefined ? null : (gateways?.at(lead.gatewayId, atMs) ?? null)
+  }
+  const advance = (atMs: number) => {
+    settle('lead')
+    settle('opposite')
     doseMin = dose.advance(curves.lead)
     stave.advance(curves.lead, atMs)
     const signals = liveSignals(facts, curves, flags, atMs)
     const lead = signals.find((signal) => signal.role === 'lead')
+    const opposite = signals.find((signal) => signal.role === 'opposite')
+    const gateway = gatewayOfLead(atMs)
+    const doesPairDisagree = pair.see(lead, opposite, atMs)
     const windowClimbCPerMin = climbOver(curves.lead, facts.rules.limits.climbWindowS, atMs)
-    alarm = alarms.see({ facts, lead, windowClimbCPerMin, atMs })
-    return signals
+    if (facts.endedMs === null) {
+      const input = { facts, lead, opposite, doesPairDisagree, windowClimbCPerMin, gateway, doseMin, atMs }
+      alarms.see(alarmConditions(input), atMs)
+    }
+    const present = facts.endedMs === null ? alarms.present() : []
+    return { signals, lead, present, troubles: troublesOf({ facts, gateway, doesPairDisagree }) }
   }
 
   return {
@@ -99,22 +136,22 @@ export function createLiveFiring(firstFacts: FiringFacts): LiveFiring {
       const effect = curve.put(atMs, tempC)
       if (atMs >= flags[role].atMs) flags[role] = { atMs, flag }
       if (effect === 'same') return
-      stream.push(role, atMs, tempC)
+      stream.push(role, atMs, effect === 'appended' ? curve.tempC(curve.length - 1) : tempC)
       if (role === 'lead' && effect !== 'appended') {
         dose.touch(curve.indexFrom(atMs))
         if (effect === 'inserted') stave.touch(curve.indexFrom(atMs))
       }
     },
     glance: (atMs) => {
-      const signals = advance(atMs)
+      const { signals, present, troubles } = advance(atMs)
       const { words } = nextAction(facts, atMs)
-      return { signals, alarm, words, position: stageNow(facts, atMs)?.position ?? null }
+      const position = stageNow(facts, atMs)?.position ?? null
+      return { signals, alarms: present, troubles, words, position }
     },
     state: (atMs) => {
-      const signals = advance(atMs)
+      const { signals, lead, present, troubles } = advance(atMs)
       const { toastMs, plan } = facts
       const toastS = toastMs === null ? null : (atMs - toastMs) / 1000
-      const lead = signals.find((signal) => signal.role === 'lead')
       const isLive = lead?.condition === 'live'
       const climb = isLive ? climbNow(curves.lead) : null
       if (atMs - gaps.atMs >= gapsEveryMs) gaps = doseGaps(facts, curves.lead, doseMin, atMs)
@@ -148,11 +185,22 @@ export function createLiveFiring(firstFacts: FiringFacts): LiveFiring {
           atMs,
         }),
         stave: stave.newest(),
-        alarm,
+        troubles,
+        alarms: present,
+        alarm: gravestOf(present),
       }
     },
     staveColumns: () => stave.columns(),
+    takeAlarmMoves: alarms.takeMoves,
+    restoreAlarms: alarms.restore,
   }
+}
+
+/** Of those that are on; a reminder is no alarm. */
+function gravestOf(present: readonly PresentAlarm[]): FiringState['alarm'] {
+  const gravest = present.find((alarm) => isSounding(alarm.state) && alarm.level !== 'grey')
+  if (gravest === undefined || gravest.level === 'grey') return null
+  return { words: gravest.words, level: gravest.level, sinceMs: gravest.sinceMs }
 }
 
 function climbNow(curve: RoleCurve): number | null {

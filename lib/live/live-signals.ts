@@ -1,7 +1,9 @@
+import type { CheckedCurve } from '@/lib/live/checked-curve'
 import type { FiringState } from '@/lib/live/events'
 import { probeRoles } from '@/lib/live/events'
 import type { FiringFacts } from '@/lib/live/firing-facts'
-import type { RoleCurve } from '@/lib/live/role-curve'
+import { causeOf } from '@/lib/live/signal-words'
+import { troubleCodes } from '@/lib/science/signal-trouble'
 
 export type Role = (typeof probeRoles)[number]
 export type Signal = FiringState['signals'][number]
@@ -10,18 +12,13 @@ export type NewestFlag = { atMs: number; flag: number }
 
 /** Marked stale by the tick after this: within 3 s of the last reading. */
 export const staleAfterMs = 2_750
-
-const causes = [
-  'out of the thermocouple’s range',
-  'open circuit',
-  'short circuit',
-  'the gateway says it is faulty',
-]
+/** A jump that is over sooner is passed over: the reading before it still holds. */
+const passedOverMs = 1_000
 
 /** One signal a role that the firing has had a probe for, lead first. */
 export function liveSignals(
-  facts: FiringFacts,
-  curves: Record<Role, RoleCurve>,
+  facts: Pick<FiringFacts, 'assignments'>,
+  curves: Record<Role, CheckedCurve>,
   flags: Record<Role, NewestFlag>,
   atMs: number,
 ): Signal[] {
@@ -31,15 +28,22 @@ export function liveSignals(
   })
 }
 
-function signalOf(role: Role, probeName: string, curve: RoleCurve, flag: NewestFlag, atMs: number): Signal {
+function signalOf(
+  role: Role,
+  probeName: string,
+  curve: CheckedCurve,
+  flag: NewestFlag,
+  atMs: number,
+): Signal {
   if (curve.length === 0) {
     const cause = 'nothing received yet'
     return { role, probeName, condition: 'no reading', cause, lastAtMs: null, tempC: null }
   }
-  const lastAtMs = curve.atMs(curve.length - 1)
-  const last = curve.tempC(curve.length - 1)
+  const newest = lastThatHolds(curve, atMs)
+  const lastAtMs = curve.atMs(newest)
+  const last = curve.tempC(newest)
   if (Number.isNaN(last)) {
-    const cause = causes[flag.atMs === lastAtMs ? flag.flag : 0] ?? 'unknown'
+    const cause = causeOf(curve.troubleAt(newest), flag.atMs === lastAtMs ? flag.flag : 0)
     return { role, probeName, condition: 'no reading', cause, lastAtMs, tempC: null }
   }
   const tempC = Math.round(last * 100) / 100
@@ -47,4 +51,13 @@ function signalOf(role: Role, probeName: string, curve: RoleCurve, flag: NewestF
     return { role, probeName, condition: 'stale', cause: 'nothing more received', lastAtMs, tempC }
   }
   return { role, probeName, condition: 'live', cause: null, lastAtMs, tempC }
+}
+
+/** The newest reading; behind a jump of less than a second the one before it. */
+function lastThatHolds(curve: CheckedCurve, atMs: number): number {
+  const newest = curve.length - 1
+  for (let i = newest; i >= 0 && curve.atMs(i) >= atMs - passedOverMs; i -= 1) {
+    if (curve.troubleAt(i) === troubleCodes.none) return Number.isNaN(curve.tempC(i)) ? newest : i
+  }
+  return newest
 }

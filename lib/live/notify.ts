@@ -20,3 +20,8 @@ export type FiringChange =
 export function notifyFiringChanged(firingId: string, what: FiringChange): void {
   hubDoor().current?.firingChanged(firingId, what)
 }
+
+/** Tells the live hub that hands have moved an alarm of a firing. Call it after the commit; never throws. */
+export function notifyAlarmsChanged(firingId: string): void {
+  hubDoor().current?.alarmsChanged(firingId)
+}

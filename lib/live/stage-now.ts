@@ -43,6 +43,29 @@ export function stageNow(facts: FiringFacts, atMs: number): FiringState['stage']
 
 type Due = { words: string; atMs: number }
 
+/** What hands should have done by now: to be reminded of until it is done or let go. */
+export type OverdueAct = { subject: string; words: string; atMs: number }
+
+/**
+ * What was due by the recipe and is not marked, oldest first: cues of this stage until they are let go, and the end of
+ * preheat, bend and rest. A look leaves no mark and is not asked for.
+ */
+export function overdueActs(facts: FiringFacts, atMs: number): OverdueAct[] {
+  if (facts.state !== 'toasting') {
+    const due = nextDue(facts, atMs)
+    return due === null || due.atMs > atMs ? [] : [{ subject: facts.state, ...due }]
+  }
+  const now = stageNow(facts, atMs)
+  const stage = now === null ? undefined : facts.content.stages[now.position - 1]
+  if (now === null || stage === undefined) return []
+  const startMs = atMs - now.elapsedS * 1000
+  return stage.cues.flatMap((cue, i) => {
+    const cueMs = startMs + cue.minute * 60_000
+    if (cue.action === 'look' || cueMs > atMs || isOver(facts, cue.action, cueMs, atMs)) return []
+    return [{ subject: `cue ${now.position}.${i + 1}`, words: cue.words || cue.action, atMs: cueMs }]
+  })
+}
+
 /** What hands do next and when; "Nothing to do" when there is nothing. */
 export function nextAction(facts: FiringFacts, atMs: number): FiringState['next'] {
   const due = nextDue(facts, atMs)

@@ -117,6 +117,48 @@ const defaultCheckRules: z.infer<typeof checkRulesSchema> = {
   settleSlopeCPerMin: 0.1,
 }
 
+export const signalRulesSchema = z.strictObject({
+  /**
+   * Readings that are stuck or jump are no readings, live and in the score. False in the rules of before these checks
+   * were there, so that an old score is made again as it was.
+   */
+  areChecked: z.boolean(),
+  /** A probe is stuck when it stays within `stuckWithinC` for so long, s, while the coals move by `stuckWitnessC`. */
+  stuckAfterS: positive.min(5).max(600),
+  stuckWithinC: notNegative.max(0.2),
+  stuckWitnessC: positive.min(1).max(200),
+  /** Wood changes by less than this in one second, °C. */
+  stepC: positive.min(10).max(300),
+  /** After a jump a probe is believed again once its readings have agreed for so long, s. */
+  stepAgreeS: positive.max(60),
+  /** An opposite pair disagrees when it is further apart than this, °C, for so long, s. */
+  pairApartC: positive.min(2).max(150),
+  pairApartS: positive.max(600),
+  /** A gateway is lost when no message came from it for so long, s. */
+  gatewayLostAfterS: positive.min(2).max(120),
+  /** A gateway's clock differs when it is off by more than this, s. */
+  clockApartS: positive.min(0.5).max(3600),
+})
+
+export const alarmRulesSchema = z.strictObject({
+  /** An alarm comes after its limit was passed for so long, and goes after it was well inside for so long, s. */
+  onDelayS: positive.min(1).max(60),
+  offDelayS: positive.min(1).max(300),
+  /** Well inside: by this much, °C. */
+  deadbandC: positive.max(20),
+  /** The same for a climb, as a share of its limit. */
+  climbDeadbandShare: positive.max(0.9),
+  /** Spread and below band come and go by themselves: they are alarms only after so long, s. */
+  slowOnDelayS: positive.min(5).max(1800),
+  /** Below band is further below the plan than so many half-bands. */
+  belowBandTimes: positive.min(1).max(10),
+  /** A stage is overrun so long after its time, s; what was due is reminded of so long after it, s. */
+  overrunAfterS: notNegative.max(3600),
+  remindAfterS: notNegative.max(600),
+  /** An alarm is shelved for at most so long, min. */
+  shelveAtMostMin: positive.min(1).max(120),
+})
+
 export const siteRulesSchema = z.strictObject({
   dose: doseRulesSchema,
   indices: indexRulesSchema,
@@ -126,6 +168,8 @@ export const siteRulesSchema = z.strictObject({
   limits: limitRulesSchema,
   forecast: forecastRulesSchema,
   checks: checkRulesSchema.default(defaultCheckRules),
+  signals: signalRulesSchema,
+  alarms: alarmRulesSchema,
   /** A marked turn-over silences NO READING for this long, s; the gap still counts. */
   noReadingSilenceS: notNegative.max(600),
   /** Recipe tolerance when the recipe sets none, log10 of dose. */
@@ -155,7 +199,48 @@ export const defaultSiteRules: SiteRules = {
   limits: { woodMaxHeldS: 10, climbWindowS: 60 },
   forecast: { rejoinMin: 2, horizonMin: 240 },
   checks: defaultCheckRules,
+  signals: {
+    areChecked: true,
+    stuckAfterS: 30,
+    stuckWithinC: 0.05,
+    stuckWitnessC: 10,
+    stepC: 40,
+    stepAgreeS: 3,
+    pairApartC: 25,
+    pairApartS: 30,
+    gatewayLostAfterS: 5,
+    clockApartS: 2,
+  },
+  alarms: {
+    onDelayS: 5,
+    offDelayS: 15,
+    deadbandC: 4,
+    climbDeadbandShare: 0.2,
+    slowOnDelayS: 60,
+    belowBandTimes: 2,
+    overrunAfterS: 60,
+    remindAfterS: 30,
+    shelveAtMostMin: 15,
+  },
   noReadingSilenceS: 90,
   doseToleranceLog10: 0.12,
   bendMin: 10,
+}
+
+/** The parts that came later, as they hold for rules that were written before them: nothing is checked. */
+const laterRules: Pick<SiteRules, 'signals' | 'alarms'> = {
+  signals: { ...defaultSiteRules.signals, areChecked: false },
+  alarms: defaultSiteRules.alarms,
+}
+
+/**
+ * Rules as they were stored, whenever that was: a part that was not there yet is given as it then worked, so that a
+ * score is made again bit for bit from the rules that it names.
+ *
+ * @throws ZodError for what are no rules
+ */
+export function readStoredRules(stored: unknown): SiteRules {
+  return siteRulesSchema.parse(
+    typeof stored === 'object' && stored !== null ? { ...laterRules, ...stored } : stored,
+  )
 }

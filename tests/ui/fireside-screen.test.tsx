@@ -51,6 +51,8 @@ function stateOf(signal: Partial<Signal>, more: Partial<FiringState> = {}): Firi
     dose: { minutes: 3.6, targetMinutes: 10, planMinutesNow: 3.1, goodToPercent: 10.9, isIncomplete: false },
     forecast: null,
     stave: null,
+    troubles: [],
+    alarms: [],
     alarm: null,
     ...more,
   }

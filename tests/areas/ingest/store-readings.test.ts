@@ -210,6 +210,8 @@ it('new rows go to the hub once each, after the commit', async () => {
       taken.push(...rows.atMs)
       seen.push(storedSeqs(bootId))
     },
+    gatewayHeard: () => {},
+    alarmsChanged: () => {},
     firingChanged: () => {},
   }
   try {

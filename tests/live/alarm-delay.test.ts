@@ -1,6 +1,6 @@
 import * as fc from 'fast-check'
 import { expect, it } from 'vitest'
-import { createAlarm, viewAbove } from '@/lib/live/alarm'
+import { createAlarmDelay, viewAbove } from '@/lib/alarms/alarm-delay'
 
 const delays = { onDelayS: 5, offDelayS: 15 }
 const limitC = 215
@@ -11,7 +11,7 @@ type Change = { atMs: number; isOn: boolean }
 
 /** Temperatures once every `stepMs`; answers when the alarm came and went. */
 function play(temps: readonly (number | null)[], stepMs = 200): Change[] {
-  const alarm = createAlarm(delays)
+  const alarm = createAlarmDelay(delays)
   const changes: Change[] = []
   let isOn = false
   temps.forEach((tempC, i) => {

@@ -1,10 +1,10 @@
 /** What an alarm sees at a moment: beyond its limit, well inside it (by the deadband), or between the two. */
 export type AlarmView = 'beyond' | 'between' | 'inside'
 
-/** Seconds that it must be beyond before it sounds, and inside before it ends (TARGETS: alarms never chatter). */
+/** Seconds that it must be beyond before it comes, and inside before it goes (TARGETS: alarms never chatter). */
 export type AlarmDelays = { onDelayS: number; offDelayS: number }
 
-export type Alarm = {
+export type AlarmDelay = {
   /** Tells what is seen now; answers since when it is on, ms, or null. Moments never fall. */
   see: (view: AlarmView, atMs: number) => number | null
   readonly sinceMs: number | null
@@ -12,8 +12,9 @@ export type Alarm = {
   readonly isEnding: boolean
 }
 
-export function createAlarm(delays: AlarmDelays): Alarm {
-  let sinceMs: number | null = null
+/** @param onSinceMs since when it was on before a restart; left out: it is off */
+export function createAlarmDelay(delays: AlarmDelays, onSinceMs: number | null = null): AlarmDelay {
+  let sinceMs = onSinceMs
   let beyondFromMs: number | null = null
   let insideFromMs: number | null = null
   return {

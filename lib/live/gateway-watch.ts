@@ -1,0 +1,52 @@
+/** What the hub knows of one gateway, at a moment. */
+export type GatewayNow = {
+  id: string
+  name: string
+  /** Since its last message, s; counted from the hub's own start at the earliest, for a stopped server hears nobody. */
+  silentS: number
+  /** Server's clock minus gateway's, s: as it is applied to its readings. */
+  clockOffsetS: number
+}
+
+type Known = { name: string; heardAtMs: number; clockOffsetMs: number }
+
+/** When each gateway was heard last, whatever it said. */
+export type GatewayWatch = {
+  /** As the table has it: another process may have heard it. */
+  know: (id: string, name: string, heardAtMs: number | null, clockOffsetMs: number | null) => void
+  /** A message of it was stored. */
+  hear: (id: string, atMs: number, clockOffsetMs: number) => void
+  at: (id: string, atMs: number) => GatewayNow | null
+}
+
+export function createGatewayWatch(startedAtMs: number): GatewayWatch {
+  const known = new Map<string, Known>()
+  return {
+    know: (id, name, heardAtMs, clockOffsetMs) => {
+      const before = known.get(id)
+      known.set(id, {
+        name,
+        heardAtMs: Math.max(startedAtMs, heardAtMs ?? 0, before?.heardAtMs ?? 0),
+        clockOffsetMs: before?.clockOffsetMs ?? clockOffsetMs ?? 0,
+      })
+    },
+    hear: (id, atMs, clockOffsetMs) => {
+      const before = known.get(id)
+      known.set(id, {
+        name: before?.name ?? 'the gateway',
+        heardAtMs: Math.max(atMs, before?.heardAtMs ?? 0),
+        clockOffsetMs,
+      })
+    },
+    at: (id, atMs) => {
+      const one = known.get(id)
+      if (one === undefined) return null
+      return {
+        id,
+        name: one.name,
+        silentS: Math.max(0, atMs - one.heardAtMs) / 1000,
+        clockOffsetS: one.clockOffsetMs / 1000,
+      }
+    },
+  }
+}
