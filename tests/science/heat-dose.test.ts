@@ -292,6 +292,30 @@ describe('laws of the heat dose', () => {
       propertyRun,
     )
   })
+  it('law: a dose is the area under its rate (independent midpoint sum), in minutes', () => {
+    fc.assert(
+      fc.property(models, curves, (model, points) => {
+        let area = 0
+        for (const [i, to] of points.entries()) {
+          const from = points[i - 1]
+          if (from === undefined) continue
+          const parts = 400
+          for (let part = 0; part < parts; part += 1) {
+            const tempC = from.tempC + ((to.tempC - from.tempC) * (part + 0.5)) / parts
+            const isCounted = model.baseTempC === undefined || tempC >= model.baseTempC
+            const rate = isCounted ? 10 ** ((tempC - model.refTempC) / model.zC) : 0
+            area += (rate * (to.timeS - from.timeS)) / parts / 60
+          }
+        }
+        const dose = equivalentMinutes(model, points)
+        // The sum’s own error: its curvature, and half a part where the base cuts a segment.
+        const cut =
+          model.baseTempC === undefined ? 0 : (20 * doseRate(model, model.baseTempC) * points.length) / 400
+        expectWithin(dose, area, 0.005 * area + cut + 1e-12)
+      }),
+      propertyRun,
+    )
+  })
   it('nothing counts below the base, and a segment is cut where it crosses it', () => {
     expect(doseRate(product, 119.999)).toBe(0)
     expect(doseRate(product, 120)).toBeGreaterThan(0)
@@ -331,6 +355,27 @@ describe('laws of the heat dose', () => {
     expectRangeError('timeS', () => running.add(59, 200))
     running.add(120, 200)
     expect(running.minutes).toBe(2)
+  })
+  it('law: Arrhenius: a hold has minutes × rate, a hotter curve has more, and two parts add', () => {
+    const energies = fc.double({ min: 50_000, max: 250_000, noNaN: true })
+    fc.assert(
+      fc.property(energies, curves, fc.double({ min: 60, max: 260, noNaN: true }), (ea, points, tempC) => {
+        const rate = arrheniusRate(ea, 200, tempC)
+        expectWithin(arrheniusEquivalentMinutes(ea, 200, hold(7, tempC)), 7 * rate, 1e-10 * rate)
+        expect(arrheniusRate(ea, 200, tempC + 1)).toBeGreaterThan(rate)
+        const dose = arrheniusEquivalentMinutes(ea, 200, points)
+        const hotter = points.map((point) => ({ ...point, tempC: point.tempC + 5 }))
+        expect(arrheniusEquivalentMinutes(ea, 200, hotter)).toBeGreaterThanOrEqual(dose)
+        const middle = Math.floor(points.length / 2)
+        const parts = [points.slice(0, middle + 1), points.slice(middle)]
+        const sum = parts.reduce((all, part) => all + arrheniusEquivalentMinutes(ea, 200, part), 0)
+        expectWithin(sum, dose, 1e-9 * (dose + 1e-9))
+        // Over a degree the rate grows as 10^(1/z).
+        const z = zCFromActivationEnergy(ea, tempC)
+        expectWithin(Math.log10(arrheniusRate(ea, 200, tempC + 0.01) / rate), 0.01 / z, 1e-4 / z)
+      }),
+      propertyRun,
+    )
   })
   it('the Arrhenius dose of a ramp agrees with a fine midpoint sum, and is additive', () => {
     const ramp = [

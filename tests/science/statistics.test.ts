@@ -64,6 +64,28 @@ describe('one sample', () => {
       propertyRun,
     )
   })
+  it('law: the variance is half the mean square of the differences of all pairs (divisor n − 1)', () => {
+    fc.assert(
+      fc.property(values, (x) => {
+        const pairs = x.flatMap((a, i) => x.slice(i + 1).map((b) => (a - b) ** 2))
+        const half = pairs.reduce((sum, square) => sum + square, 0) / pairs.length / 2
+        expectWithin(sampleSd(x) ** 2, half, 1e-9 * (1 + half))
+      }),
+      propertyRun,
+    )
+  })
+  it('law: the autocorrelation lies within −1 and 1, and sees neither shift nor unit nor direction', () => {
+    const varied = values.filter((x) => Math.max(...x) - Math.min(...x) > 1)
+    fc.assert(
+      fc.property(varied, fc.integer({ min: -1000, max: 1000 }), (x, shift) => {
+        const found = lag1Autocorrelation(x)
+        expect(Math.abs(found)).toBeLessThanOrEqual(1 + 1e-12)
+        expectWithin(lag1Autocorrelation(x.map((v) => shift - 3 * v)), found, 1e-6)
+        expectWithin(lag1Autocorrelation([...x].reverse()), found, 1e-9)
+      }),
+      propertyRun,
+    )
+  })
   it('names values that are missing, not numbers, or do not vary', () => {
     expectRangeError('values', () => mean([]))
     expectRangeError('values', () => sampleSd([1]))
@@ -98,6 +120,23 @@ describe('quantiles', () => {
         expectWithin(fQuantile(tail, 1, df1), half * half, 1e-7 * half * half)
         const f = fQuantile(tail, df1, df2)
         expectWithin(1 / fQuantile(1 - tail, df2, df1), f, 1e-7 * f)
+      }),
+      propertyRun,
+    )
+  })
+  it('law: every quantile rises with p; chi-square of 1 is t² with no end of degrees, chi-square/df is F with none', () => {
+    const p = fc.double({ min: 0.001, max: 0.998, noNaN: true })
+    const df = fc.integer({ min: 1, max: 200 })
+    fc.assert(
+      fc.property(p, df, df, (tail, df1, df2) => {
+        const more = tail + 0.001
+        expect(tQuantile(more, df1)).toBeGreaterThan(tQuantile(tail, df1))
+        expect(chiSquareQuantile(more, df1)).toBeGreaterThan(chiSquareQuantile(tail, df1))
+        expect(fQuantile(more, df1, df2)).toBeGreaterThan(fQuantile(tail, df1, df2))
+        const normal = tQuantile((1 + tail) / 2, 1e8)
+        expectWithin(chiSquareQuantile(tail, 1), normal * normal, 1e-6 * normal * normal)
+        const ratio = chiSquareQuantile(tail, df1) / df1
+        expectWithin(fQuantile(tail, df1, 1e7), ratio, 1e-5 * ratio)
       }),
       propertyRun,
     )
@@ -477,6 +516,27 @@ describe('analysis of variance', () => {
       propertyRun,
     )
   })
+  it('law: squares between and within make all squares, and p falls as the groups move apart', () => {
+    const group = fc.array(fc.double({ min: -100, max: 100, noNaN: true }), { minLength: 2, maxLength: 9 })
+    const table = fc
+      .array(group, { minLength: 2, maxLength: 5 })
+      .filter((groups) => groups.some((g) => Math.max(...g) - Math.min(...g) > 0.1))
+    fc.assert(
+      fc.property(table, (groups) => {
+        const { ssBetween, ssWithin, dfBetween, dfWithin, p } = oneWayAnova(groups)
+        const all = groups.flat()
+        const total = sampleSd(all) ** 2 * (all.length - 1)
+        expectWithin(ssBetween + ssWithin, total, 1e-9 * (1 + total))
+        expect(dfBetween + dfWithin).toBe(all.length - 1)
+        const apart = groups.map((g, i) => g.map((v) => v - mean(g) + 30 * i))
+        const farther = groups.map((g, i) => g.map((v) => v - mean(g) + 60 * i))
+        expect(oneWayAnova(farther).p).toBeLessThan(oneWayAnova(apart).p)
+        expect(p).toBeGreaterThanOrEqual(0)
+        expect(p).toBeLessThanOrEqual(1)
+      }),
+      propertyRun,
+    )
+  })
   it('keeps digits of p far out in the tail', () => {
     const far = oneWayAnova([
       [0, 0.001, 0.002, 0.001],
@@ -516,6 +576,23 @@ describe('outliers', () => {
     expectClose(check, result.criticalTwoSided, expected.critical_two_sided)
     expect(result.index).toBe(7)
     expect(result.isOutlier).toBe(true)
+  })
+  it('law: an outlier stays one after a shift and a change of unit, and no G exceeds (n − 1)/√n', () => {
+    fc.assert(
+      fc.property(values, fc.integer({ min: -1000, max: 1000 }), (x, shift) => {
+        if (sampleSd(x) < 1) return
+        const found = grubbsTest(x, 0.05)
+        const moved = grubbsTest(
+          x.map((v) => 3 * v + shift),
+          0.05,
+        )
+        expectWithin(moved.g, found.g, 1e-6)
+        expect(found.g).toBeLessThanOrEqual((x.length - 1) / Math.sqrt(x.length) + 1e-9)
+        expect(found.criticalOneSided).toBeLessThan(found.criticalTwoSided)
+        expect(grubbsTest(x, 0.01).criticalTwoSided).toBeGreaterThan(found.criticalTwoSided)
+      }),
+      propertyRun,
+    )
   })
   it('values that do not vary have no outlier, and bad input is named', () => {
     expect(grubbsTest([5, 5, 5, 5], 0.05).isOutlier).toBe(false)

@@ -1,5 +1,5 @@
 import fc from 'fast-check'
-import { describe, it } from 'vitest'
+import { describe, expect, it } from 'vitest'
 import * as z from 'zod'
 import {
   boilingPointC,
@@ -55,6 +55,19 @@ describe('saturation line', () => {
       propertyRun,
     )
   })
+  it('law: the boiling point is the saturation temperature of the same pressure, and rises with it', () => {
+    fc.assert(
+      fc.property(fc.double({ min: 500, max: 1100, noNaN: true }), (pressureHpa) => {
+        expectWithin(boilingPointC(pressureHpa), saturationTempK(pressureHpa / 10_000) - 273.15, 1e-9)
+        expect(boilingPointC(pressureHpa + 1)).toBeGreaterThan(boilingPointC(pressureHpa))
+        // Clausius and Clapeyron: dT/dp = T·Δv/Δh, 0.027 °C/hPa near 100 °C; within a third over this span.
+        const slope = boilingPointC(pressureHpa + 0.5) - boilingPointC(pressureHpa - 0.5)
+        expect(slope * pressureHpa).toBeGreaterThan(20)
+        expect(slope * pressureHpa).toBeLessThan(35)
+      }),
+      propertyRun,
+    )
+  })
   it('near one atmosphere a hectopascal is 0.0277 °C', () => {
     expectWithin(boilingPointC(1013.75) - boilingPointC(1012.75), 0.0277, 1e-4)
   })
@@ -74,6 +87,17 @@ describe('standard atmosphere', () => {
       expectWithin(pressurePa, expected.p_Pa[i] ?? NaN, toleranceOf(check, 'p_abs'))
       expectWithin(boilingPointC(pressurePa / 100), expected.t_C[i] ?? NaN, toleranceOf(check, 't_abs'))
     })
+  })
+  it('law: the air carries its own weight, dp/dz = −g·p/(R·T) with 6.5 K less each kilometre (ISO 2533)', () => {
+    fc.assert(
+      fc.property(fc.double({ min: -1900, max: 10_900, noNaN: true }), (altitudeM) => {
+        const pressurePa = standardPressurePa(altitudeM)
+        const slope = (standardPressurePa(altitudeM + 0.5) - standardPressurePa(altitudeM - 0.5)) / 1
+        const weight = (9.80665 * pressurePa) / (287.05287 * (288.15 - 0.0065 * altitudeM))
+        expectWithin(slope, -weight, 1e-6 * weight)
+      }),
+      propertyRun,
+    )
   })
   it('an altitude outside the troposphere is named', () => {
     for (const value of [...notNumbers, 11_001])

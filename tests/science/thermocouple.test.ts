@@ -94,6 +94,25 @@ describe('temperature from emf', () => {
       { ...propertyRun, numRuns: 2000 },
     )
   })
+  it('law: more emf is always a higher temperature, across the joints of the polynomials too', () => {
+    const joints = fc.constantFrom(0, 0.000_001, 20.644, 20.613, 42.919)
+    fc.assert(
+      fc.property(
+        typeAndTemp,
+        fc.double({ min: 1e-6, max: 2, noNaN: true }),
+        joints,
+        ({ type, tempC }, riseMv, joint) => {
+          const ends = [emfMv(type, inverseRangeC[type][0]), emfMv(type, inverseRangeC[type][1])] as const
+          for (const emf of [emfMv(type, tempC), joint]) {
+            const higher = emf + riseMv
+            if (emf < ends[0] || higher > ends[1]) continue
+            expect(tempCFromEmf(type, higher)).toBeGreaterThan(tempCFromEmf(type, emf))
+          }
+        },
+      ),
+      propertyRun,
+    )
+  })
   it('the ends of the published emf range are inside, anything beyond is no temperature', () => {
     const ends = {
       K: [-5.891, 54.886],

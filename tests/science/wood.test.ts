@@ -102,6 +102,49 @@ describe('heat and mass', () => {
       toleranceOf(check, 'abs'),
     )
   })
+  it('law: wet wood is its dry mass and its water, by mass as by density', () => {
+    fc.assert(
+      fc.property(
+        fc.double({ min: 1, max: 500, noNaN: true }),
+        fc.double({ min: 0, max: 120, noNaN: true }),
+        fc.double({ min: 0.3, max: 0.9, noNaN: true }),
+        (dryG, moisture, gravity) => {
+          expectWithin(moisturePercent(dryG * (1 + moisture / 100), dryG), moisture, 1e-9 * (1 + moisture))
+          const dry = densityKgPerM3(gravity, 0)
+          expectWithin(
+            moisturePercent(densityKgPerM3(gravity, moisture), dry),
+            moisture,
+            1e-9 * (1 + moisture),
+          )
+        },
+      ),
+      propertyRun,
+    )
+  })
+  it('law: warm wood and wet wood hold more heat, dense wood and wet wood conduct more, each in a straight line', () => {
+    const moisture = fc.double({ min: 0, max: 24, noNaN: true })
+    fc.assert(
+      fc.property(
+        fc.double({ min: 280, max: 420, noNaN: true }),
+        moisture,
+        fc.double({ min: 0.3, max: 0.8, noNaN: true }),
+        (tempK, mc, gravity) => {
+          expect(heatCapacityJPerKgK(tempK + 1, mc)).toBeGreaterThan(heatCapacityJPerKgK(tempK, mc))
+          expect(heatCapacityJPerKgK(tempK, mc + 1)).toBeGreaterThan(heatCapacityJPerKgK(tempK, mc))
+          const k = (g: number, m: number) => conductivityWPerMK(g, m)
+          const byGravity = [
+            k(gravity + 0.1, mc) - k(gravity, mc),
+            k(gravity, mc) - k(gravity - 0.1, mc),
+          ] as const
+          expect(byGravity[0]).toBeGreaterThan(0)
+          expectWithin(byGravity[0], byGravity[1], 1e-12)
+          expectWithin(k(gravity, mc + 1) - k(gravity, mc), k(gravity, 1) - k(gravity, 0), 1e-12)
+          expect(k(gravity, 1)).toBeGreaterThan(k(gravity, 0))
+        },
+      ),
+      propertyRun,
+    )
+  })
   it('names what is outside the domain', () => {
     for (const value of [...notNumbers, 0]) {
       expectRangeError('tempK', () => heatCapacityJPerKgK(value, 10))
