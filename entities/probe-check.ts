@@ -23,7 +23,7 @@ export const ProbeCheckEntity = defineEntity({
     /** k = 2. */
     referenceUncertaintyC: p.double().nullable(),
     settledSdC: p.double().nullable(),
-    settledSlopeCPerMin: p.double().nullable(),
+    settledSlopeCPerMin: p.double().name('settled_slope_c_per_min').nullable(),
     resolutionC: p.double().nullable(),
     altitudeM: p.double().nullable(),
   },

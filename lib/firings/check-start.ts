@@ -1,7 +1,12 @@
 import type { EntityManager } from '@mikro-orm/postgresql'
 import { queryRows } from '@/lib/db/orm'
 import { AppError, invalidField } from '@/lib/errors'
+import { leadCheckFaults } from '@/lib/probes/lead-check-faults'
+import { waterFault } from '@/lib/probes/water-fault'
 import type { RecipeContent } from '@/lib/recipes/schema'
+import type { CheckRow } from '@/lib/science/probe-correction'
+import type { SiteRules } from '@/lib/science/site-rules'
+import { currentSite } from '@/lib/site/current-site'
 
 export type StartProbe = {
   id: string
@@ -12,15 +17,12 @@ export type StartProbe = {
   depth_mm: number
   mounting: string
   may_replay: boolean
-  due_at: Date | null
 }
 
 type Chosen = { lead: string; opposite: string | null; coals: string | null }
 
 const probeSelect = `
-  select p.id, p.name, p.usual_role as role, p.height, p.side, p.depth_mm, p.mounting, g.may_replay,
-         (select min(k.due_at) from (select distinct on (kind) due_at from probe_checks
-           where probe_id = p.id order by kind, checked_at desc) k) as due_at
+  select p.id, p.name, p.usual_role as role, p.height, p.side, p.depth_mm, p.mounting, g.may_replay
     from probes p join gateways g on g.id = p.gateway_id`
 
 /** The probes of a firing: those chosen, or the hearth's usual ones. @throws AppError 'invalid' */
@@ -84,18 +86,78 @@ export function requireSamePlace(lead: StartProbe, place: RecipeContent['leadPla
 
 export type OutOfDate = { waterCheckId: string | null; faults: string[] }
 
-/** What is out of date: the water, the lead probe's check. Both may be overridden with a signature. */
-export async function findOutOfDate(em: EntityManager, lead: StartProbe, at: Date): Promise<OutOfDate> {
-  const [water] = await queryRows<{ id: string; due_at: Date }>(
-    em,
-    'select id, due_at from water_checks where checked_at <= ? order by checked_at desc limit 1',
-    [at],
-  )
-  const faults: string[] = []
-  if (water === undefined || new Date(water.due_at) <= at) faults.push('The water check is out of date.')
-  if (lead.due_at === null) faults.push(`${lead.name} has never been checked.`)
-  else if (new Date(lead.due_at) <= at) faults.push(`The check of ${lead.name} is out of date.`)
+/**
+ * What speaks against a start: water that was never checked, is out of date or above the site's limits; a lead probe
+ * whose checks have run out or leave out where the dose is made. All may be overridden with a signature.
+ */
+export async function findOutOfDate(
+  em: EntityManager,
+  lead: StartProbe,
+  at: Date,
+  waterSource?: string,
+): Promise<OutOfDate> {
+  const water = await newestWater(em, at, waterSource)
+  const { checks } = (await currentSite(em)).rules
+  const faults = water === undefined ? ['The water was never checked.'] : waterFaults(water, at, checks)
+  faults.push(...leadCheckFaults(lead.name, await readChecks(em, lead.id), at.getTime()))
   return { waterCheckId: water?.id ?? null, faults }
+}
+
+type Water = {
+  id: string
+  source: string
+  due_at: Date
+  tca_ng_per_l: number
+  free_chlorine_mg_per_l: number
+}
+
+/** The newest check of the source that is used, or of whichever was checked last. */
+async function newestWater(
+  em: EntityManager,
+  at: Date,
+  source: string | undefined,
+): Promise<Water | undefined> {
+  const [water] = await queryRows<Water>(
+    em,
+    `select id, source, due_at, tca_ng_per_l, free_chlorine_mg_per_l from water_checks
+      where checked_at <= ? and (?::text is null or lower(source) = lower(?))
+      order by checked_at desc, id desc limit 1`,
+    [at, source ?? null, source ?? null],
+  )
+  if (water === undefined && source !== undefined) {
+    throw invalidField('waterSource', 'Choose a source of water that was checked.')
+  }
+  return water
+}
+
+function waterFaults(water: Water, at: Date, checks: SiteRules['checks']): string[] {
+  const faults: string[] = []
+  if (new Date(water.due_at) <= at) faults.push(`The water check of ${water.source} is out of date.`)
+  const over = waterFault(
+    { tcaNgPerL: water.tca_ng_per_l, freeChlorineMgPerL: water.free_chlorine_mg_per_l },
+    checks,
+  )
+  if (over !== null) faults.push(`The water of ${water.source} is not to be used: ${over}`)
+  return faults
+}
+
+async function readChecks(em: EntityManager, probeId: string): Promise<CheckRow[]> {
+  type Row = Record<'reference_temp_c' | 'measured_temp_c' | 'uncertainty_c', number> &
+    Record<'checked_at' | 'due_at', Date> & { kind: CheckRow['kind'] }
+  const rows = await queryRows<Row>(
+    em,
+    `select kind, reference_temp_c, measured_temp_c, uncertainty_c, checked_at, due_at
+       from probe_checks where probe_id = ?`,
+    [probeId],
+  )
+  return rows.map((row) => ({
+    kind: row.kind,
+    referenceTempC: row.reference_temp_c,
+    measuredTempC: row.measured_temp_c,
+    uncertaintyC: row.uncertainty_c,
+    checkedAtMs: new Date(row.checked_at).getTime(),
+    dueAtMs: new Date(row.due_at).getTime(),
+  }))
 }
 
 /** @throws AppError 'conflict' with the way out. */

@@ -52,6 +52,8 @@ export const startFiringSchema = z.strictObject({
       coals: z.uuid().nullable().default(null),
     })
     .optional(),
+  /** Of the water that is used; left out: the source that was checked last. */
+  waterSource: z.string().trim().max(80, 'At most 80 letters.').optional(),
   isTrial: z.boolean().default(false),
   /** The person has gone through the start list. */
   isStartListDone: z.boolean().default(false),

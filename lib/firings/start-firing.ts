@@ -55,7 +55,7 @@ async function begin(person: PersonActor, input: Input): Promise<FiringDto> {
     if (lead === undefined) throw invalidField('probes.lead', 'A firing needs its lead probe.')
     requireSamePlace(lead, version.content.leadPlace)
     const at = startInstant(input, lead)
-    const outOfDate = await findOutOfDate(em, lead, at)
+    const outOfDate = await findOutOfDate(em, lead, at, input.waterSource)
     const { copy, sha256 } = recipeCopyOf(version)
     await signOverride(em, person, input, outOfDate, { id: firing.id, sha256 })
     em.assign(firing, {

@@ -4,28 +4,25 @@ import { writeAuditEntry } from '@/lib/audit/write-entry'
 import type { Actor } from '@/lib/auth/actor'
 import { requirePermission, requirePerson } from '@/lib/auth/permissions'
 import { inTransaction } from '@/lib/db/orm'
-import { invalidField } from '@/lib/errors'
+import { checkDates } from '@/lib/probes/check-dates'
 import type { recordWaterCheckSchema } from '@/lib/probes/schema'
-import { now } from '@/lib/runtime'
+import { waterFault } from '@/lib/probes/water-fault'
+import { currentSite } from '@/lib/site/current-site'
 
-/** Records a check of the preheat, leak-test and humidifier water. */
+/** Records a check of the preheat, leak-test and humidifier water; one above the site's limits is kept, and not usable. */
 export async function recordWaterCheck(
   actor: Actor,
   input: z.infer<typeof recordWaterCheckSchema>,
 ): Promise<{ id: string }> {
   requirePermission(actor, 'checks:write')
   const person = requirePerson(actor)
-  const checkedAt = input.checkedAt === undefined ? now() : new Date(input.checkedAt)
-  const dueAt = new Date(input.dueAt)
-  if (dueAt <= checkedAt) throw invalidField('dueAt', 'The next check must be after this one.')
-  if (checkedAt > now()) throw invalidField('checkedAt', 'A check cannot be in the future.')
   return inTransaction(async (em) => {
+    const { rules } = await currentSite(em)
     const check = em.create(WaterCheckEntity, {
       source: input.source,
       tcaNgPerL: input.tcaNgPerL,
       freeChlorineMgPerL: input.freeChlorineMgPerL,
-      checkedAt,
-      dueAt,
+      ...checkDates(input, rules.checks.waterMonths),
       accountId: person.accountId,
     })
     await em.persistAndFlush(check)
@@ -34,7 +31,12 @@ export async function recordWaterCheck(
       actor,
       'water.checked',
       { type: 'water check', id: check.id },
-      { source: input.source },
+      {
+        source: input.source,
+        tcaNgPerL: input.tcaNgPerL,
+        freeChlorineMgPerL: input.freeChlorineMgPerL,
+        overLimit: waterFault(input, rules.checks),
+      },
     )
     return { id: check.id }
   })

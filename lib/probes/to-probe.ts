@@ -1,5 +1,6 @@
+import { leadCheckFaults } from '@/lib/probes/lead-check-faults'
 import type { ProbeCheckDto, ProbeDto } from '@/lib/probes/schema'
-import { now } from '@/lib/runtime'
+import { nowMs } from '@/lib/runtime'
 
 type CheckRow = {
   id: string
@@ -11,6 +12,9 @@ type CheckRow = {
   checked_at: string
   due_at: string
   checked_by: string
+  way: 'by hand' | 'live'
+  settled_sd_c: number | null
+  altitude_m: number | null
 }
 
 export type ProbeRow = {
@@ -30,21 +34,33 @@ export type ProbeRow = {
   side: string
   depth_mm: number
   mounting: 'wedge' | 'drilled' | 'clamped' | 'hung'
+  retired_at: Date | null
+  created_at: Date
   checks: CheckRow[] | null
+  sort_key: string | null
 }
 
-/** One row a probe, with the newest check of each kind as JSON. */
-export const probeSelect = `
+/** When the earliest of the newest checks of each kind is due, by probe; for lists that filter or sort by it. */
+export const probeDueSql = `(
+  select min(k.due_at) from (select distinct on (c.kind) c.due_at from probe_checks c
+    where c.probe_id = p.id order by c.kind, c.checked_at desc) k)`
+
+/** One row a probe, with all its checks as JSON, newest first. `sortKey` is an expression of the list's order. */
+export function probeSelect(sortKey = 'null'): string {
+  return `
   select p.id, p.no, p.name, p.gateway_id, g.name as gateway_name, p.channel, p.thermocouple_type, p.iec_class, p.serial,
-         p.hearth_id, h.number as hearth_number, p.usual_role, p.height, p.side, p.depth_mm, p.mounting,
-         (select json_agg(k order by k.reference_temp_c) from (
-            select distinct on (c.kind) c.id, c.kind, c.reference_temp_c, c.measured_temp_c, c.uncertainty_c,
-                   c.station_pressure_hpa, c.checked_at, c.due_at, a.name as checked_by
-              from probe_checks c join accounts a on a.id = c.account_id
-             where c.probe_id = p.id order by c.kind, c.checked_at desc) k) as checks
+         p.hearth_id, h.number as hearth_number, p.usual_role, p.height, p.side, p.depth_mm, p.mounting, p.retired_at,
+         p.created_at, (${sortKey})::text as sort_key,
+         (select json_agg(json_build_object('id', c.id, 'kind', c.kind, 'reference_temp_c', c.reference_temp_c,
+              'measured_temp_c', c.measured_temp_c, 'uncertainty_c', c.uncertainty_c,
+              'station_pressure_hpa', c.station_pressure_hpa, 'checked_at', c.checked_at, 'due_at', c.due_at,
+              'checked_by', a.name, 'way', c.way, 'settled_sd_c', c.settled_sd_c, 'altitude_m', c.altitude_m)
+              order by c.checked_at desc, c.reference_temp_c desc, c.id)
+            from probe_checks c join accounts a on a.id = c.account_id where c.probe_id = p.id) as checks
     from probes p
     join gateways g on g.id = p.gateway_id
     left join hearths h on h.id = p.hearth_id`
+}
 
 function toCheck(row: CheckRow): ProbeCheckDto {
   return {
@@ -58,11 +74,31 @@ function toCheck(row: CheckRow): ProbeCheckDto {
     checkedAt: new Date(row.checked_at).toISOString(),
     dueAt: new Date(row.due_at).toISOString(),
     checkedBy: row.checked_by,
+    way: row.way,
+    settledSdC: row.settled_sd_c,
+    altitudeM: row.altitude_m,
   }
 }
 
-export function toProbe(row: ProbeRow): ProbeDto {
-  const checks = (row.checks ?? []).map(toCheck)
+/** Every check of the row, newest first. */
+export function checksOf(row: ProbeRow): ProbeCheckDto[] {
+  return (row.checks ?? []).map(toCheck)
+}
+
+/** @param dueSoonDays the site's rule */
+export function toProbe(row: ProbeRow, dueSoonDays: number): ProbeDto {
+  const all = checksOf(row)
+  const atMs = nowMs()
+  const facts = all.map((check) => ({
+    kind: check.kind,
+    referenceTempC: check.referenceTempC,
+    measuredTempC: check.measuredTempC,
+    uncertaintyC: check.uncertaintyC,
+    checkedAtMs: Date.parse(check.checkedAt),
+    dueAtMs: Date.parse(check.dueAt),
+  }))
+  const newest = all.filter((check, index) => all.findIndex((one) => one.kind === check.kind) === index)
+  const checks = newest.sort((a, b) => a.referenceTempC - b.referenceTempC)
   const dueAt = checks.map((check) => check.dueAt).sort()[0] ?? null
   return {
     id: row.id,
@@ -77,6 +113,21 @@ export function toProbe(row: ProbeRow): ProbeDto {
     place: { height: row.height, side: row.side, depthMm: row.depth_mm, mounting: row.mounting },
     checks,
     checkDueAt: dueAt,
-    isCheckDue: dueAt === null || new Date(dueAt) <= now(),
+    isCheckDue: dueAt === null || Date.parse(dueAt) <= atMs,
+    checkState: stateOf(row.usual_role, dueAt, atMs, dueSoonDays),
+    leadFaults: row.usual_role === 'coals' ? [] : leadCheckFaults(row.name, facts, atMs),
+    retiredAt: row.retired_at === null ? null : new Date(row.retired_at).toISOString(),
   }
+}
+
+function stateOf(
+  role: ProbeRow['usual_role'],
+  dueAt: string | null,
+  atMs: number,
+  dueSoonDays: number,
+): ProbeDto['checkState'] {
+  if (dueAt === null) return role === 'coals' ? 'not asked' : 'never'
+  const leftMs = Date.parse(dueAt) - atMs
+  if (leftMs <= 0) return 'overdue'
+  return leftMs <= dueSoonDays * 86_400_000 ? 'due soon' : 'in date'
 }

@@ -63,8 +63,8 @@ describe('the uncertainty of a check', () => {
   test('adds reference, scatter and resolution as squares', () => {
     // 0.3² + (2·0.2)² = 0.5²; resolution 0.1 alone is 2·0.1/√12 = 0.0577.
     expect(checkUncertaintyC(0.3, 0.2, 0)).toBeCloseTo(0.5, 12)
-    expect(checkUncertaintyC(1e-9, 0, 0.1)).toBeCloseTo(0.057_735, 6)
+    expect(checkUncertaintyC(0, 0, 0.1)).toBeCloseTo(0.057_735, 6)
     expect(checkUncertaintyC(0.4, 0, 0)).toBe(0.4)
-    expect(() => checkUncertaintyC(0, 0, 0)).toThrow('referenceC')
+    expect(() => checkUncertaintyC(-0.1, 0, 0)).toThrow('referenceC')
   })
 })

@@ -200,6 +200,9 @@ describe('the start list', () => {
     dueAt: iso(PREHEAT + 7 * 24 * 60 * MINUTE),
     checkedBy: 'N. Brandt',
     isInDate: true,
+    isDueSoon: false,
+    overLimit: null,
+    isNewest: true,
   }
 
   test('has the cautions, the water and the lead probe with their dates', () => {
