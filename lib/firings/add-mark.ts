@@ -6,6 +6,7 @@ import { MarkEntity } from '@/entities/mark'
 import { writeAuditEntry } from '@/lib/audit/write-entry'
 import type { Actor } from '@/lib/auth/actor'
 import { requirePermission, requirePerson } from '@/lib/auth/permissions'
+import { violatedConstraint } from '@/lib/db/database-errors'
 import { inTransaction } from '@/lib/db/orm'
 import { AppError, invalidField } from '@/lib/errors'
 import { canMove, isLive } from '@/lib/firings/firing-states'
@@ -13,6 +14,9 @@ import { lockFiring } from '@/lib/firings/lock-firing'
 import { markInstant } from '@/lib/firings/mark-instant'
 import { readMarks } from '@/lib/firings/read-firing'
 import type { addMarkSchema, MarkDto } from '@/lib/firings/schema'
+import type { DoneSwap } from '@/lib/firings/swap-probe'
+import { swapProbe } from '@/lib/firings/swap-probe'
+import type { FiringChange } from '@/lib/live/notify'
 import { notifyFiringChanged } from '@/lib/live/notify'
 import { recipeCopySchema } from '@/lib/recipes/schema'
 import { now } from '@/lib/runtime'
@@ -46,8 +50,13 @@ export async function addMark(actor: Actor, input: Input): Promise<MarkDto> {
   })
   if (mark === undefined)
     throw new AppError('conflict', 'A mark of another firing has this id. Make a new one.')
-  if (isNew) notifyFiringChanged(input.firingId, input.kind === 'phase' ? 'phase' : 'mark')
+  if (isNew) notifyFiringChanged(input.firingId, changeOf(input.kind))
   return mark
+}
+
+function changeOf(kind: Input['kind']): FiringChange {
+  if (kind === 'phase') return 'phase'
+  return kind === 'swap' ? 'probe' : 'mark'
 }
 
 async function insertMark(em: EntityManager, firing: Firing, input: Input, accountId: string): Promise<void> {
@@ -61,6 +70,7 @@ async function insertMark(em: EntityManager, firing: Firing, input: Input, accou
   const at = markInstant(input.at, { notBefore: firing.preheatAt })
   const replaced = await findReplaced(em, firing, input)
   requireWhatKindNeeds(firing, input)
+  const swap = input.kind === 'swap' ? await swapBy(em, firing, input, at) : null
   em.create(MarkEntity, {
     id: input.id,
     firingId: firing.id,
@@ -71,12 +81,31 @@ async function insertMark(em: EntityManager, firing: Firing, input: Input, accou
     phase: input.kind === 'phase' ? (input.phase ?? null) : null,
     stagePosition: input.stagePosition ?? null,
     call: input.kind === 'call' ? (input.call ?? null) : null,
-    words: input.words,
+    words: swap === null || input.words !== '' ? input.words : swap.words,
+    swapRole: swap === null ? null : (input.role ?? null),
+    fromProbeId: swap?.fromProbeId ?? null,
+    toProbeId: swap?.toProbeId ?? null,
     replacesId: input.replacesId ?? null,
   })
   if (input.kind === 'phase' && input.phase !== undefined) movePhase(firing, input.phase, at, replaced)
   em.assign(firing, { revision: firing.revision + 1 })
   await em.flush()
+}
+
+/** Closes the one probe's period and opens the other's; the database holds one firing a probe. */
+async function swapBy(em: EntityManager, firing: Firing, input: Input, at: Date): Promise<DoneSwap> {
+  const { role, probeId, isAtSamePlace } = input
+  if (role === undefined) throw invalidField('role', 'Say which probe is swapped: lead, opposite or coals.')
+  if (probeId === undefined) throw invalidField('probeId', 'Choose the probe that takes its place.')
+  if (isAtSamePlace === undefined) {
+    throw invalidField('isAtSamePlace', 'Say whether it sits in the same place.')
+  }
+  try {
+    return await swapProbe(em, firing, { role, probeId, isAtSamePlace }, at)
+  } catch (error) {
+    if (violatedConstraint(error) !== 'one_firing_per_probe') throw error
+    throw invalidField('probeId', 'This probe read another firing at that time. Choose another.')
+  }
 }
 
 async function findReplaced(em: EntityManager, firing: Firing, input: Input): Promise<Mark | null> {
@@ -88,6 +117,9 @@ async function findReplaced(em: EntityManager, firing: Firing, input: Input): Pr
   if (replaced === null) throw invalidField('replacesId', 'There is no such mark in this firing.')
   if ((await em.findOne(MarkEntity, { replacesId: replaced.id })) !== null) {
     throw new AppError('conflict', 'This mark was corrected already. Correct the newest one.')
+  }
+  if (replaced.kind === 'swap' || input.kind === 'swap') {
+    throw invalidField('kind', 'A swap is not undone or moved: what was read since stands. Swap again.')
   }
   if (replaced.kind === 'phase' && !(input.kind === 'phase' && input.phase === replaced.phase)) {
     throw invalidField(

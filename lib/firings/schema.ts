@@ -73,6 +73,10 @@ export const addMarkSchema = z.strictObject({
   stagePosition: z.number().int().min(1).max(24).optional(),
   call: z.enum(calls, 'Choose early, right or late.').optional(),
   words: z.string().trim().max(500, 'At most 500 letters.').default(''),
+  /** For a swap: whose place is taken, by which probe, and whether that sits in the very same place. */
+  role: z.enum(probeRoles, 'Choose lead, opposite or coals.').optional(),
+  probeId: z.uuid('Choose a probe.').optional(),
+  isAtSamePlace: z.boolean().optional(),
   replacesId: z.uuid().optional(),
 })
 

@@ -30,15 +30,11 @@ export async function getProbe(actor: Actor, input: { id: string }): Promise<Pro
   const [row] = await queryRows<ProbeRow>(em, `${probeSelect()} where p.id = ?`, [input.id])
   if (row === undefined) throw new AppError('not found', 'There is no such probe.')
   const { dueSoonDays } = (await currentSite(em)).rules.checks
-  const live = await queryRows(em, 'select 1 from firing_probes where probe_id = ? and until_at is null', [
-    input.id,
-  ])
   return {
     ...toProbe(row, dueSoonDays),
     createdAt: new Date(row.created_at).toISOString(),
     places: await readPlaces(em, input.id),
     allChecks: checksOf(row),
-    isReading: live.length > 0,
   }
 }
 

@@ -176,6 +176,8 @@ export const probeSchema = z.object({
   checkState: z.enum(checkStates),
   /** What keeps it from being a lead probe without a signed override, in sentences; empty for none. */
   leadFaults: z.array(z.string()),
+  /** It reads a firing now: it is not moved or retired. */
+  isReading: z.boolean(),
   retiredAt: z.iso.datetime().nullable(),
 })
 export type ProbeDto = z.infer<typeof probeSchema>
@@ -218,8 +220,6 @@ export const probeDetailSchema = probeSchema.extend({
   places: z.array(probePlaceSchema),
   /** Every check, newest first. */
   allChecks: z.array(probeCheckSchema),
-  /** It reads a firing now: it is not moved or retired. */
-  isReading: z.boolean(),
 })
 export type ProbeDetailDto = z.infer<typeof probeDetailSchema>
 

@@ -36,6 +36,7 @@ export type ProbeRow = {
   mounting: 'wedge' | 'drilled' | 'clamped' | 'hung'
   retired_at: Date | null
   created_at: Date
+  is_reading: boolean
   checks: CheckRow[] | null
   sort_key: string | null
 }
@@ -50,7 +51,8 @@ export function probeSelect(sortKey = 'null'): string {
   return `
   select p.id, p.no, p.name, p.gateway_id, g.name as gateway_name, p.channel, p.thermocouple_type, p.iec_class, p.serial,
          p.hearth_id, h.number as hearth_number, p.usual_role, p.height, p.side, p.depth_mm, p.mounting, p.retired_at,
-         p.created_at, (${sortKey})::text as sort_key,
+         p.created_at, exists (select 1 from firing_probes l where l.probe_id = p.id and l.until_at is null) as is_reading,
+         (${sortKey})::text as sort_key,
          (select json_agg(json_build_object('id', c.id, 'kind', c.kind, 'reference_temp_c', c.reference_temp_c,
               'measured_temp_c', c.measured_temp_c, 'uncertainty_c', c.uncertainty_c,
               'station_pressure_hpa', c.station_pressure_hpa, 'checked_at', c.checked_at, 'due_at', c.due_at,
@@ -116,6 +118,7 @@ export function toProbe(row: ProbeRow, dueSoonDays: number): ProbeDto {
     isCheckDue: dueAt === null || Date.parse(dueAt) <= atMs,
     checkState: stateOf(row.usual_role, dueAt, atMs, dueSoonDays),
     leadFaults: row.usual_role === 'coals' ? [] : leadCheckFaults(row.name, facts, atMs),
+    isReading: row.is_reading,
     retiredAt: row.retired_at === null ? null : new Date(row.retired_at).toISOString(),
   }
 }
