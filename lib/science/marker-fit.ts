@@ -3,6 +3,7 @@ import { requireNumbers } from './domain'
 import type { FamilyId, MarkerFamily, PredictorKey } from './marker-families'
 import { curveStarts, markerFamilies, predictors } from './marker-families'
 import { linearRegression, nonlinearLeastSquares, tQuantile } from './statistics'
+import { threeDigits } from './three-digits'
 
 /**
  * A marker's response fitted from results: parameters with intervals, residuals, and predictions with intervals inside
@@ -291,12 +292,4 @@ export function predictMarker(fit: MarkerFit, x: readonly number[]): MarkerPredi
     meanLow: value - meanHalf,
     meanHigh: value + meanHalf,
   }
-}
-
-/** Three digits that count, without idle noughts: 13.8, 0.0042, 1240. */
-export function threeDigits(value: number): string {
-  if (value === 0) return '0'
-  const size = Math.floor(Math.log10(Math.abs(value)))
-  const text = String(Number(value.toFixed(Math.min(20, Math.max(0, 2 - size)))))
-  return text.replace('-', '\u2212')
 }

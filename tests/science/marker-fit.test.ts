@@ -5,8 +5,9 @@ import { censoredRegression } from '../../lib/science/censored-regression'
 import type { FamilyId } from '../../lib/science/marker-families'
 import { familyIds, markerFamilies } from '../../lib/science/marker-families'
 import type { MarkerFit, MarkerResult } from '../../lib/science/marker-fit'
-import { fitMarker, predictMarker, threeDigits } from '../../lib/science/marker-fit'
+import { fitMarker, predictMarker } from '../../lib/science/marker-fit'
 import { linearRegression, nonlinearLeastSquares, tQuantile } from '../../lib/science/statistics'
+import { threeDigits } from '../../lib/science/three-digits'
 import { expectRangeError, expectWithin, numbersShape, propertyRun, testPublished } from './published-checks'
 
 function resultsOf(x: readonly (number | readonly number[])[], y: readonly number[]): MarkerResult[] {
@@ -176,7 +177,7 @@ describe('the curves', () => {
     'strd.nls.Misra1a',
   )
 
-  it('rise and fall is found again from exact results, wherever it has its highest point', () => {
+  it('law: rise and fall is found again from exact results, wherever it has its highest point', () => {
     fc.assert(
       fc.property(
         fc.double({ min: 5, max: 60, noNaN: true }),
@@ -266,7 +267,7 @@ describe('results below a limit', () => {
     }
   })
 
-  it('none of them: the estimates of least squares, standard errors and spread too', () => {
+  it('law: none of them: the estimates of least squares, standard errors and spread too', () => {
     fc.assert(
       fc.property(fc.integer({ min: 1, max: 1e6 }), fc.integer({ min: 4, max: 30 }), (seed, n) => {
         const normal = normals(seed)
@@ -443,7 +444,7 @@ describe('what the data cannot support is refused in words', () => {
 })
 
 describe('laws', () => {
-  it('results in another unit give the same fit in that unit, and another order the same fit', () => {
+  it('law: results in another unit give the same fit in that unit, and another order the same fit', () => {
     const y = doses.map((dose, i) => 3 + 2 * Math.log10(dose) + wobble(i))
     const results = resultsOf(doses, y).map((one, i) => ({ ...one, isBelowLimit: i < 2 }))
     fc.assert(

@@ -75,6 +75,7 @@ const areas = [
   'orders',
   'wood',
   'lab',
+  'markers',
   'barrels',
   'probes',
   'compare',
