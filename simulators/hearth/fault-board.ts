@@ -1,11 +1,18 @@
 import * as z from 'zod'
-import { createProbeFault, gatewayFaultSchema, probeFaultSchema, type GatewayFaultKind } from './faults'
+import {
+  createProbeFault,
+  gatewayFaultSchema,
+  moduleFaultSchema,
+  probeFaultSchema,
+  type GatewayFaultKind,
+  type ModuleFaultKind,
+} from './faults'
 import type { HearthReading } from './hearth'
 
 /** A fault on command: at a hearth (a gateway's fault touches every hearth of its gateway), for so many seconds. */
 export const faultOrderSchema = z.strictObject({
   hearth: z.int().min(1).max(99),
-  kind: z.union([probeFaultSchema, gatewayFaultSchema]),
+  kind: z.union([probeFaultSchema, gatewayFaultSchema, moduleFaultSchema]),
   forS: z.number().positive().max(86_400),
   /** Of a probe's fault; the cold junction is the gateway's and touches all three. */
   probe: z.enum(['lead', 'opposite', 'coals']).default('lead'),
@@ -16,7 +23,7 @@ export type FaultBoard = {
   begin: (order: FaultOrder) => void
   /** What is wrong now, with the seconds that are left. */
   list: () => (FaultOrder & { leftS: number })[]
-  isActive: (kind: GatewayFaultKind, hearths: readonly number[]) => boolean
+  isActive: (kind: GatewayFaultKind | ModuleFaultKind, hearths: readonly number[]) => boolean
   /** Readings of a hearth as its faults show them; `timeS` must be the wall clock's seconds. */
   spoil: (hearth: number, readings: readonly HearthReading[]) => HearthReading[]
 }

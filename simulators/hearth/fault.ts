@@ -1,5 +1,5 @@
 import { parseArgs } from 'node:util'
-import { GATEWAY_FAULTS, PROBE_FAULTS } from './faults'
+import { GATEWAY_FAULTS, MODULE_FAULTS, PROBE_FAULTS } from './faults'
 
 /*
  * Puts a fault on a simulated hearth:
@@ -9,6 +9,7 @@ import { GATEWAY_FAULTS, PROBE_FAULTS } from './faults'
 const usage = `Say which fault, where, and for how many seconds:
   node --import tsx simulators/hearth/fault.ts --hearth 2 --kind 'open circuit' --for 60 [--probe lead]
 Kinds: ${[...PROBE_FAULTS, ...GATEWAY_FAULTS].join(', ')}.
+With FEED=modbus: ${[...PROBE_FAULTS, 'restart', ...MODULE_FAULTS].join(', ')}.
 Probes: lead, opposite, coals. The port is CONTROL_PORT or --port, as the simulator was started with.`
 
 const { values } = parseArgs({

@@ -2,7 +2,8 @@ import * as z from 'zod'
 import type { HearthProbe, HearthReading } from './hearth'
 
 /*
- * Faults on command. Those of a probe change its readings; those of the gateway change how they travel. A fault
+ * Faults on command. Those of a probe change its readings; those of the gateway change how they travel; those of a
+ * module, which there is only with FEED=modbus, change how it answers the gateway program. A fault
  * lasts `forS` seconds and then is gone as if repaired.
  */
 
@@ -15,10 +16,14 @@ export const GATEWAY_FAULTS = [
   'reordered batches',
 ] as const
 
+export const MODULE_FAULTS = ['module off', 'module hangs', 'module cuts', 'module garbage'] as const
+
 export const probeFaultSchema = z.enum(PROBE_FAULTS)
 export const gatewayFaultSchema = z.enum(GATEWAY_FAULTS)
+export const moduleFaultSchema = z.enum(MODULE_FAULTS)
 export type ProbeFaultKind = z.infer<typeof probeFaultSchema>
 export type GatewayFaultKind = z.infer<typeof gatewayFaultSchema>
+export type ModuleFaultKind = z.infer<typeof moduleFaultSchema>
 
 /** Voltage at which the gateway's input rests when a thermocouple is open, µV: beyond any thermocouple. */
 export const OPEN_INPUT_MICROVOLTS = 100_000

@@ -4,6 +4,8 @@ import * as z from 'zod'
 import { startControl } from './control'
 import { readDemoFile } from './demo-file'
 import { createFaultBoard } from './fault-board'
+import { gatewayFaultSchema, moduleFaultSchema } from './faults'
+import { startModbusFedGateway } from './modbus-feed'
 import { openOwnFirings } from './own-firings'
 import { createRoom, type Room } from './room'
 import { createServerView } from './server-view'
@@ -18,6 +20,8 @@ const environmentSchema = z.object({
   SERVER_URL: z.url('SERVER_URL must be the address of the server, such as http://127.0.0.1:3000'),
   DEMO_FILE: z.string('DEMO_FILE must name the file that the seed wrote'),
   SPOOL_DIR: z.string('SPOOL_DIR must name a folder for readings that were not acknowledged'),
+  /** How readings travel: by the gateway's client in here, or by Modbus modules that the gateway program reads. */
+  FEED: z.enum(['direct', 'modbus'], 'FEED must be direct or modbus').default('direct'),
   CONTROL_PORT: z.coerce.number().int().min(0).max(65_535).default(0),
 })
 
@@ -38,13 +42,11 @@ async function main() {
   const toaster = demo.signIns.find((one) => one.role === 'toaster')
   if (toaster === undefined) throw new Error('The demo file names no toaster to sign in as.')
   const board = createFaultBoard(Date.now)
-  const gateways = demo.gateways.map((gateway) =>
-    createSimulatedGateway({
-      demo: gateway,
-      serverUrl: environment.SERVER_URL,
-      spoolDir: environment.SPOOL_DIR,
-      board,
-      say,
+  const gateways = await Promise.all(
+    demo.gateways.map((gateway) => {
+      const { SERVER_URL: serverUrl, SPOOL_DIR: spoolDir } = environment
+      const options = { demo: gateway, serverUrl, spoolDir, board, say }
+      return environment.FEED === 'modbus' ? startModbusFedGateway(options) : createSimulatedGateway(options)
     }),
   )
   const room = createRoom({
@@ -59,13 +61,27 @@ async function main() {
   })
   if (environment.CONTROL_PORT !== 0) {
     await startControl(environment.CONTROL_PORT, board, ({ hearth, kind }) => {
-      say(`on command: ${kind} at hearth ${hearth}`)
+      const isKnown = environment.FEED === 'modbus' ? !isDirectOnly(kind) : !isModuleFault(kind)
+      say(
+        isKnown
+          ? `on command: ${kind} at hearth ${hearth}`
+          : `${kind} does nothing with FEED=${environment.FEED}`,
+      )
       if (kind === 'restart') void gatewayOf(gateways, hearth)?.restart()
     })
     say(`takes faults at http://127.0.0.1:${environment.CONTROL_PORT}/faults`)
   }
   say(`${demo.gateways.length} gateways read ${demo.gateways.flatMap((one) => one.hearths).length} hearths`)
   await run(room, gateways, (hearth, readings) => board.spoil(hearth, readings))
+}
+
+function isModuleFault(kind: string): boolean {
+  return moduleFaultSchema.safeParse(kind).success
+}
+
+/** Faults of the line to the server are those of the client in here; the gateway program's line is its own. */
+function isDirectOnly(kind: string): boolean {
+  return gatewayFaultSchema.safeParse(kind).success && kind !== 'restart'
 }
 
 function gatewayOf(gateways: readonly SimulatedGateway[], hearth: number): SimulatedGateway | undefined {

@@ -322,6 +322,43 @@ describe('spool', () => {
     expect(seqs(spool.peek(10)?.readings ?? [])).toEqual([4, 5])
   })
 
+  it('cut at every byte of its last record, what is before comes whole and the number is declared, kept or free', () => {
+    const files = memoryFiles()
+    const before = createSpool({ files, bootId: BOOTS[0] })
+    before.append(drafts(5))
+    const [name] = files.list()
+    const whole = files.read(name ?? '')
+    const recordBytes = encodeRecord({ kind: 'reading', reading: { ...draft(4), seq: 5 } }).length
+    for (let cut = 0; cut <= recordBytes; cut += 1) {
+      const torn = memoryFiles()
+      torn.append(name ?? '', whole.subarray(0, whole.length - cut))
+      const { readings, lost } = drain(torn, BOOTS[1])
+      expect(readings.map(({ reading }) => reading.seq)).toEqual(cut === 0 ? [1, 2, 3, 4, 5] : [1, 2, 3, 4])
+      expect(readings.map(({ reading }) => reading.emf?.microvolts)).toEqual(
+        readings.map((_, i) => draft(i).emf?.microvolts),
+      )
+      // The last number never reached the disk, so nobody was told of it: there is nothing to declare.
+      expect(lost).toEqual([])
+    }
+  })
+
+  it('a clock that was set dates what is unsent anew, also after a restart, and no other boot', () => {
+    const files = memoryFiles()
+    const spool = createSpool({ files, bootId: BOOTS[0], segmentBytes: 200 })
+    spool.append(drafts(6))
+    spool.acknowledge(BOOTS[0], 2)
+    spool.setClockShift(3_600_000.4)
+    spool.append(drafts(2, 6))
+    const atOf = (i: number, shiftMs: number) => new Date(Date.parse(draft(i).at) + shiftMs).toISOString()
+    const expected = [2, 3, 4, 5, 6, 7].map((i) => atOf(i, 3_600_000))
+    expect(spool.peek(100)?.readings.map(({ at }) => at)).toEqual(expected)
+    const next = createSpool({ files, bootId: BOOTS[1] })
+    next.append(drafts(1))
+    expect(next.peek(100)?.readings.map(({ at }) => at)).toEqual(expected)
+    next.acknowledge(BOOTS[0], 8)
+    expect(next.peek(100)?.readings.map(({ at }) => at)).toEqual([atOf(0, 0)])
+  })
+
   it('works on a real disk through a restart', () => {
     const folder = mkdtempSync(join(tmpdir(), 'emberstave-spool-'))
     try {

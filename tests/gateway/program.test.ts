@@ -1,0 +1,301 @@
+import { spawn } from 'node:child_process'
+import { mkdtempSync, readFileSync, rmSync, statSync, writeFileSync } from 'node:fs'
+import { createServer, type Server } from 'node:http'
+import { tmpdir } from 'node:os'
+import { join } from 'node:path'
+import { fileURLToPath } from 'node:url'
+import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import { runCommand } from '@/lib/gateway/command'
+import { gatewayConfigSchema } from '@/lib/gateway/config'
+import { INGEST_PATH, ingestMessageSchema, type IngestMessage } from '@/lib/gateway/protocol'
+import { startSimulatedModule, type SimulatedModule } from '@/simulators/modbus/simulated-module'
+import { until } from '@/tests/support/until'
+
+/* The program as it is started on a box: a process of its own, a real module on a socket, an HTTP server that answers. */
+
+const root = fileURLToPath(new URL('../../', import.meta.url))
+const PROBE = '8f14e45f-ceea-467f-a1b2-0c5d6e7f8a01'
+const GATEWAY_ID = '8f14e45f-ceea-467f-a1b2-0c5d6e7f8aff'
+const TOKEN = 'emb_a-token-that-no-log-may-show'
+
+let folder = ''
+const endings: (() => Promise<unknown> | unknown)[] = []
+beforeEach(() => {
+  folder = mkdtempSync(join(tmpdir(), 'emberstave-program-'))
+})
+afterEach(async () => {
+  for (const end of endings.splice(0).reverse()) await end()
+  rmSync(folder, { recursive: true })
+})
+
+/** A server that keeps what it is told; `status` other than 200 is answered as a problem. */
+async function startServer() {
+  const state = {
+    status: 200,
+    messages: [] as IngestMessage[],
+    tokens: [] as string[],
+    kept: new Map<string, Set<number>>(),
+  }
+  const server: Server = createServer((request, response) => {
+    const parts: Buffer[] = []
+    request.on('data', (part: Buffer) => parts.push(part))
+    request.on('end', () => {
+      const reply = (status: number, body: unknown) =>
+        response.writeHead(status, { 'content-type': 'application/json' }).end(JSON.stringify(body))
+      const body: unknown = parts.length > 0 ? JSON.parse(Buffer.concat(parts).toString()) : null
+      if (request.url === '/api/gateways/enrol') {
+        const isRight = JSON.stringify(body) === JSON.stringify({ code: 'EMBER-4711', name: 'box' })
+        if (isRight) reply(201, { token: TOKEN, gatewayId: GATEWAY_ID, gatewayName: 'Box by the window' })
+        else
+          reply(422, {
+            title: 'Not valid',
+            status: 422,
+            detail: 'This code is not known, was used, or is too old.',
+          })
+        return
+      }
+      if (request.url !== INGEST_PATH) return reply(404, { title: 'Not found', status: 404 })
+      state.tokens.push(request.headers.authorization ?? '')
+      if (state.status !== 200) return reply(state.status, { title: 'Refused', status: state.status })
+      const message = ingestMessageSchema.parse(body)
+      state.messages.push(message)
+      const kept = state.kept.get(message.bootId) ?? new Set()
+      state.kept.set(message.bootId, kept)
+      for (const { seq } of message.readings) kept.add(seq)
+      for (const { from, to } of message.lost ?? []) for (let seq = from; seq <= to; seq += 1) kept.add(seq)
+      let ackedSeq = 0
+      while (kept.has(ackedSeq + 1)) ackedSeq += 1
+      reply(200, { ackedSeq, refused: [] })
+    })
+  })
+  await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve))
+  endings.push(() => {
+    server.closeAllConnections()
+    return new Promise((resolve) => server.close(resolve))
+  })
+  const address = server.address()
+  if (address === null || typeof address === 'string') throw new Error('the server has no port')
+  return { ...state, state, url: `http://127.0.0.1:${address.port}` }
+}
+
+function channelsOf() {
+  return [
+    {
+      probeId: PROBE,
+      label: 'lead',
+      kind: 'temperature',
+      table: 'input',
+      address: 0,
+      type: 'int16',
+      scale: 0.1,
+      errorCodes: [{ raw: 32_767, means: 'open' }],
+    },
+  ]
+}
+
+async function startModule(): Promise<SimulatedModule> {
+  const module = { name: 'Box', host: '127.0.0.1', port: 1, channels: channelsOf() }
+  const config = gatewayConfigSchema.shape.modules.element.parse(module)
+  const simulated = await startSimulatedModule({ config })
+  endings.push(simulated.close)
+  simulated.show(new Map([[PROBE, { tempC: 151.5 }]]))
+  return simulated
+}
+
+function writeConfig(serverUrl: string, port: number, change: object = {}): string {
+  const path = join(folder, 'gateway.json')
+  const config = {
+    server: serverUrl,
+    tokenFile: 'token',
+    spool: { folder: 'spool' },
+    pollIntervalMs: 100,
+    modules: [{ name: 'Box', host: '127.0.0.1', port, timeoutMs: 300, channels: channelsOf() }],
+    ...change,
+  }
+  writeFileSync(path, JSON.stringify(config))
+  return path
+}
+
+function writeToken(token = TOKEN) {
+  writeFileSync(join(folder, 'token'), `${token}\n`, { mode: 0o600 })
+}
+
+function startProgram(...args: string[]) {
+  const child = spawn(process.execPath, ['--import', 'tsx', 'lib/gateway/main.ts', ...args], {
+    cwd: root,
+    env: { PATH: process.env['PATH'], NODE_ENV: process.env.NODE_ENV },
+    stdio: ['ignore', 'pipe', 'pipe'],
+  })
+  let text = ''
+  for (const stream of [child.stdout, child.stderr])
+    stream.on('data', (part: Buffer) => (text += part.toString()))
+  const ended = new Promise<number | null>((resolve) => child.on('close', (code) => resolve(code)))
+  endings.push(() => {
+    child.kill('SIGKILL')
+    return ended
+  })
+  return { child, ended, text: () => text }
+}
+
+/** A command in this process, which ends at once when it would run on. */
+async function command(...args: string[]) {
+  const lines: string[] = []
+  const print = (line: string) => void lines.push(line)
+  const status = await runCommand(args, { print, printError: print, untilEnded: () => Promise.resolve() })
+  return { status, text: lines.join('\n') }
+}
+
+describe('the gateway program', () => {
+  it('reads, sends with its status, ends on SIGTERM with everything sent, and shows its token nowhere', async () => {
+    const server = await startServer()
+    const module = await startModule()
+    writeToken()
+    const program = startProgram(writeConfig(server.url, module.port))
+    const readings = () => server.messages.flatMap((message) => message.readings)
+    await until(() => readings().length >= 10)
+    module.show(new Map([[PROBE, { flag: 'open' }]]))
+    await until(() => readings().some(({ flag }) => flag === 'open'))
+    program.child.kill('SIGTERM')
+    expect(await program.ended).toBe(0)
+    expect(program.text()).toContain('Ended. Everything was sent.')
+
+    expect(readings().map(({ seq }) => seq)).toEqual(readings().map((_, i) => i + 1))
+    expect(readings()[0]).toMatchObject({ probeId: PROBE, tempC: 151.5 })
+    const times = readings().map(({ at }) => Date.parse(at))
+    expect(times).toEqual([...times].sort((a, b) => a - b))
+    expect(Math.abs(Date.now() - (times.at(-1) ?? 0))).toBeLessThan(5_000)
+    expect(server.messages[0]?.status).toMatchObject({ programVersion: '0.1.0', uptimeS: expect.any(Number) })
+    expect(server.messages.filter(({ status }) => status !== undefined).length).toBeLessThan(3)
+    expect(new Set(server.tokens)).toEqual(new Set([`Bearer ${TOKEN}`]))
+    expect(program.text()).not.toContain(TOKEN)
+  })
+
+  it('keeps on disk what the server does not take, through a refused token and kill −9, and sends it at the next start', async () => {
+    const server = await startServer()
+    const module = await startModule()
+    writeToken()
+    server.state.status = 401
+    const path = writeConfig(server.url, module.port)
+    const first = startProgram(path)
+    await until(() => first.text().includes("refuses this gateway's token"))
+    // It goes on reading: three more seconds would be 30; a handful is enough to show that.
+    const requests = module.requestCount()
+    await until(() => module.requestCount() > requests + 8)
+    first.child.kill('SIGKILL')
+    await first.ended
+    const taken = module.requestCount()
+
+    server.state.status = 200
+    const second = startProgram(path)
+    await until(() => second.text().includes('of earlier runs wait in the spool'))
+    await until(() => server.messages.length > 1)
+    second.child.kill('SIGTERM')
+    expect(await second.ended).toBe(0)
+    const [boot, next] = [...server.state.kept.values()]
+    // At most the reading under way was not on disk yet.
+    expect(boot?.size).toBeGreaterThanOrEqual(taken - 1)
+    expect([...(boot ?? [])]).toEqual(Array.from({ length: boot?.size ?? 0 }, (_, i) => i + 1))
+    expect(next?.size).toBeGreaterThan(0)
+    expect(server.tokens.length).toBeLessThan(12)
+  })
+
+  it('a second program does not touch the spool of the first', async () => {
+    const module = await startModule()
+    writeToken()
+    const path = writeConfig('http://127.0.0.1:9', module.port)
+    let end = () => {}
+    let isReading = false
+    const first = runCommand([path], {
+      print: (line) => (isReading ||= line.includes('channels on 1 modules')),
+      printError: () => {},
+      untilEnded: () => new Promise<void>((resolve) => (end = resolve)),
+    })
+    await until(() => isReading)
+    expect(await command(path)).toMatchObject({
+      status: 1,
+      text: expect.stringContaining('Another gateway program is using the spool folder'),
+    })
+    end()
+    expect(await first).toBe(0)
+  })
+
+  it('--check reads every channel once and prints what it found', async () => {
+    const module = await startModule()
+    const path = writeConfig('http://127.0.0.1:9', module.port)
+    const { status, text } = await command(path, '--check')
+    expect(text).toMatch(/^module +channel +register +reads\nBox +lead +input 0 int16 +151\.50 °C\n/)
+    expect(text).toContain('The token file cannot be read')
+    expect(status).toBe(0)
+    expect(module.requestCount()).toBe(1)
+
+    await module.behave({ kind: 'off' })
+    const silent = await command(path, '--check')
+    expect(silent.status).toBe(1)
+    expect(silent.text).toContain('no reading: fault')
+    expect(silent.text).toMatch(/Box \(127\.0\.0\.1:\d+, unit 1\) does not answer/)
+  })
+
+  it('a configuration that does not fit is refused with the field, a command that makes no sense with the usage', async () => {
+    const unfit = await command(writeConfig('nowhere', 1, { pollIntervalMs: 1 }))
+    expect(unfit.status).toBe(1)
+    expect(unfit.text).toContain('  server: Give the address of the server')
+    expect(unfit.text).toContain('  pollIntervalMs: ')
+    expect(await command()).toMatchObject({
+      status: 2,
+      text: expect.stringContaining('Name the configuration'),
+    })
+    expect(await command('--chek')).toMatchObject({
+      status: 2,
+      text: expect.stringContaining('npm run gateway'),
+    })
+    expect(await command('enrol')).toMatchObject({ status: 2, text: expect.stringContaining('--code CODE') })
+  })
+
+  it('without a token it says where one comes from', async () => {
+    const { status, text } = await command(writeConfig('http://127.0.0.1:9', 1))
+    expect(status).toBe(1)
+    expect(text).toContain('Enrol this gateway with a code')
+    writeFileSync(join(folder, 'token'), 'two words')
+    expect((await command(join(folder, 'gateway.json'))).text).toContain('holds no device token')
+  })
+
+  it('--print-schema prints a JSON Schema', async () => {
+    const { status, text } = await command('--print-schema')
+    expect(status).toBe(0)
+    expect(JSON.parse(text)).toMatchObject({ type: 'object', additionalProperties: false })
+  })
+})
+
+describe('enrolling', () => {
+  it('trades the code for a token that only its owner can read, and shows it nowhere', async () => {
+    const server = await startServer()
+    const path = join(folder, 'gateway.json')
+    writeFileSync(path, JSON.stringify({ tokenFile: 'secret/token' }))
+    const args = ['--server', server.url, '--code', 'EMBER-4711', '--name', 'box', '--config', path]
+    const { status, text } = await command('enrol', ...args)
+    const tokenPath = join(folder, 'secret/token')
+    expect(readFileSync(tokenPath, 'utf8')).toBe(`${TOKEN}\n`)
+    expect(statSync(tokenPath).mode & 0o777).toBe(0o600)
+    expect(status).toBe(0)
+    expect(text).toContain('This box is now the gateway "Box by the window".')
+    expect(text).not.toContain(TOKEN)
+    expect(text).not.toContain('EMBER-4711')
+  })
+
+  it('a code that is not taken leaves the token that is there as it was', async () => {
+    const server = await startServer()
+    const path = writeConfig(server.url, 1)
+    writeToken('emb_before')
+    const refused = await command('enrol', '--code', 'WRONG', '--config', path)
+    expect(refused.status).toBe(1)
+    expect(refused.text).toContain(
+      'did not enrol this gateway: This code is not known, was used, or is too old.',
+    )
+    expect(readFileSync(join(folder, 'token'), 'utf8')).toBe('emb_before\n')
+    const nobody = await command('enrol', '--server', 'http://127.0.0.1:9', '--code', 'X', '--config', path)
+    expect(nobody.status).toBe(1)
+    expect(nobody.text).toContain('http://127.0.0.1:9 cannot be reached')
+    const strange = await command('enrol', '--server', `${server.url}/api`, '--code', 'X', '--config', path)
+    expect(strange.status).toBe(1)
+  })
+})
