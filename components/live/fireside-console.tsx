@@ -11,12 +11,14 @@ import { createServerClock, useServerTime } from './fireside-clock'
 import { lidNow, firesideFacts } from './fireside-facts'
 import type { FiresideFacts } from './fireside-facts'
 import type { FiresideKey } from './fireside-keys'
-import { alarmKey, capital, topLineOf } from './fireside-lines'
+import { capital, listedAlarms, topLineOf } from './fireside-lines'
+import { FiresideAlarms } from './fireside-alarms'
 import type { FiresideSheetName } from './fireside-sheets'
 import { FiresideSheets } from './fireside-sheets'
 import type { MainStep } from './fireside-step'
 import { FiresideEnded } from './fireside-ended'
 import { FiresideView } from './fireside-view'
+import { useAlarmHands } from './use-alarm-hands'
 import { useFiresideKeys } from './use-fireside-keys'
 import { refusalOf, useFiresideLive } from './use-fireside-live'
 import { useKeysOn } from './use-keys-on'
@@ -32,6 +34,7 @@ export type FiresideConsoleProps = {
   unit: TemperatureUnit
   /** Hands: may run this firing. */
   canRun: boolean
+  canShelve: boolean
   serverNowMs: number
 }
 
@@ -82,7 +85,7 @@ type RunningProps = FiresideConsoleProps & {
 
 function RunningFireside(props: RunningProps) {
   const { firing, facts, live, nowMs, sender, queue, canRun, unit, zone } = props
-  const [seenAlarm, setSeenAlarm] = useState<string | null>(null)
+  const hands = useAlarmHands()
   const [sheet, setSheet] = useState<FiresideSheetName | null>(null)
   const [areKeysOn, setKeysOn] = useKeysOn()
   const [scan, setScan] = useState<{ words: string; atMs: number } | null>(null)
@@ -96,9 +99,17 @@ function RunningFireside(props: RunningProps) {
     if (main.mark === 'finish') setSheet('finish')
     else touch.mark(main.mark, main.doneWords)
   }
-  const alarm = live.state?.alarm ?? null
+  const topLine = topLineOf({
+    state: live.state,
+    queue,
+    refusal: refusalOf(live.connection),
+    seenHere: hands.seenHere,
+    unit,
+    nowMs,
+    zone,
+  })
   const seeAlarm = () => {
-    if (alarm !== null) setSeenAlarm(alarmKey(alarm))
+    if (canRun && topLine !== null && topLine.alarmId !== null && !topLine.isSeen) hands.see(topLine.alarmId)
   }
   const onKey = (key: FiresideKey) => {
     if (key === '?') setSheet('more')
@@ -115,16 +126,8 @@ function RunningFireside(props: RunningProps) {
   }
   const isHeldByKey = useFiresideKeys(areKeysOn && sheet === null, onKey, onScan)
   const refusedMark = queue.find((queued) => queued.refusal !== null)
-  const topLine = topLineOf({
-    state: live.state,
-    queue,
-    refusal: refusalOf(live.connection),
-    seenAlarm,
-    nowMs,
-    zone,
-  })
   const seenHandlers = {
-    alarm: topLine?.isSeen === false ? seeAlarm : undefined,
+    alarm: canRun && topLine?.isSeen === false ? seeAlarm : undefined,
     mark: refusedMark === undefined ? undefined : () => sender.drop(refusedMark.mark.id),
     connection: undefined,
   }
@@ -140,7 +143,16 @@ function RunningFireside(props: RunningProps) {
         unit={unit}
         canRun={canRun}
         isHeldByKey={isHeldByKey && canRun}
-        topLine={topLine === null ? null : { ...topLine, onSeen: seenHandlers[topLine.about] }}
+        topLine={
+          topLine === null
+            ? null
+            : {
+                ...topLine,
+                onSeen: seenHandlers[topLine.about],
+                onList: topLine.about === 'alarm' ? () => setSheet('alarms') : undefined,
+              }
+        }
+        alarmProblem={hands.problem?.title ?? null}
         scanWords={scan !== null && nowMs - scan.atMs < SCAN_SHOWN_MS ? scan.words : null}
         touched={touch.touched}
         onStep={step}
@@ -150,6 +162,19 @@ function RunningFireside(props: RunningProps) {
         onMinutesAgo={touch.moveTo}
         onCall={(call: Call) => touch.call(call)}
       />
+      {sheet === 'alarms' ? (
+        <FiresideAlarms
+          alarms={listedAlarms(live.state, hands.seenHere)}
+          hands={hands}
+          canSee={canRun}
+          canShelve={props.canShelve}
+          shelveAtMostMin={props.rules.alarms.shelveAtMostMin}
+          nowMs={nowMs}
+          zone={zone}
+          unit={unit}
+          onClose={() => setSheet(null)}
+        />
+      ) : null}
       <FiresideSheets
         sheet={sheet}
         onSheet={setSheet}

@@ -1,13 +1,31 @@
+import { isSounding } from '@/lib/alarms/alarm-states'
+import { shownAlarmWords, splitAlarmWords } from '@/lib/alarms/alarm-words'
 import { formatClock, formatInstant } from '@/lib/format'
+import type { TemperatureUnit } from '@/lib/format'
 import type { FiringState } from '@/lib/live/events'
 import type { MarkQueue } from './fireside-mark-queue'
 import { isCut } from './fireside-reading'
 import type { TopLineProps } from './fireside-top-line'
-import { splitAlarmWords } from './fireside-top-line'
 
-/** One alarm of one firing; seen once it is taken note of. */
-export function alarmKey(alarm: NonNullable<FiringState['alarm']>): string {
-  return `${alarm.sinceMs} ${alarm.level}`
+export type ShownAlarm = FiringState['alarms'][number]
+
+/**
+ * The alarms that are on, with what this screen has just taken note of counted as seen: the unseen first, each group
+ * with the gravest first, as the server sends them.
+ */
+export function soundingAlarms(state: FiringState | null, seenHere: ReadonlySet<string>): ShownAlarm[] {
+  const alarms = (state?.alarms ?? []).filter((alarm) => isSounding(alarm.state))
+  const isUnseen = (alarm: ShownAlarm) => alarm.mayAcknowledge && !seenHere.has(alarm.id)
+  const unseen = alarms.filter(isUnseen)
+  // One that had ended and has been seen now is over.
+  const seen = alarms.filter((alarm) => !isUnseen(alarm) && alarm.state !== 'returned unacknowledged')
+  return [...unseen, ...seen.map((alarm) => ({ ...alarm, mayAcknowledge: false }))]
+}
+
+/** Those that are on, and behind them the shelved ones. */
+export function listedAlarms(state: FiringState | null, seenHere: ReadonlySet<string>): ShownAlarm[] {
+  const shelved = (state?.alarms ?? []).filter((alarm) => alarm.state === 'shelved')
+  return [...soundingAlarms(state, seenHere), ...shelved]
 }
 
 /** The one line across the top: that this screen is cut off, else the alarm, else a mark that was refused, or none. */
@@ -16,10 +34,12 @@ export function topLineOf(input: {
   queue: MarkQueue
   /** The server's sentence when it let nobody in: signed out, not allowed. */
   refusal: string | null
-  seenAlarm: string | null
+  /** Alarms by id that this screen has taken note of and the server may not have told back yet. */
+  seenHere: ReadonlySet<string>
+  unit: TemperatureUnit
   nowMs: number
   zone: string
-}): (TopLineProps & { about: 'connection' | 'alarm' | 'mark' }) | null {
+}): (TopLineProps & { about: 'connection' | 'alarm' | 'mark'; alarmId: string | null }) | null {
   const { state, queue, nowMs } = input
   if (input.refusal !== null) {
     return line('connection', {
@@ -29,12 +49,18 @@ export function topLineOf(input: {
       level: 'amber',
     })
   }
-  if (isCut(state, nowMs) && state !== null) return cutLine(state, queue, nowMs, input.zone)
-  const alarm = state?.alarm ?? null
-  if (alarm !== null) {
-    const age = formatClock((nowMs - alarm.sinceMs) / 1000)
-    const isSeen = input.seenAlarm === alarmKey(alarm)
-    return { about: 'alarm', ...splitAlarmWords(alarm.words), age, level: alarm.level, isSeen }
+  if (isCut(state, nowMs) && state !== null) return cutLine(state, queue, nowMs, input)
+  const [alarm, ...more] = soundingAlarms(state, input.seenHere)
+  if (alarm !== undefined) {
+    return {
+      about: 'alarm',
+      alarmId: alarm.id,
+      ...splitAlarmWords(shownAlarmWords(alarm.words, input.unit)),
+      age: formatClock((nowMs - alarm.sinceMs) / 1000),
+      level: alarm.level,
+      isSeen: !alarm.mayAcknowledge,
+      moreCount: more.length,
+    }
   }
   const refused = queue.find((queued) => queued.refusal !== null)
   if (refused === undefined) return null
@@ -46,13 +72,18 @@ export function topLineOf(input: {
   })
 }
 
-function cutLine(state: FiringState, queue: MarkQueue, nowMs: number, zone: string) {
+function cutLine(
+  state: FiringState,
+  queue: MarkQueue,
+  nowMs: number,
+  { zone, unit }: { zone: string; unit: TemperatureUnit },
+) {
   const waiting = queue.filter((queued) => queued.refusal === null).length
   const marks =
     waiting === 0
       ? 'Go on marking: marks are kept here.'
       : `${waiting} ${waiting === 1 ? 'mark waits' : 'marks wait'} here and ${waiting === 1 ? 'is' : 'are'} sent once it is back.`
-  const before = state.alarm === null ? '' : ` Before that: ${state.alarm.words}`
+  const before = state.alarm === null ? '' : ` Before that: ${shownAlarmWords(state.alarm.words, unit)}`
   return line('connection', {
     headline: `No connection since ${formatInstant(state.atMs, zone, 'time')}.`,
     instruction: `Figures are from then. ${marks}${before}`,
@@ -62,7 +93,7 @@ function cutLine(state: FiringState, queue: MarkQueue, nowMs: number, zone: stri
 }
 
 function line(about: 'connection' | 'mark', words: Omit<TopLineProps, 'isSeen'>) {
-  return { about, isSeen: true, ...words }
+  return { about, alarmId: null, isSeen: true, ...words }
 }
 
 export function capital(words: string): string {

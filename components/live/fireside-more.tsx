@@ -17,6 +17,7 @@ export type MoreProps = {
   areKeysOn: boolean
   onKeysOn: (isOn: boolean) => void
   onTurn: () => void
+  onAlarms: () => void
   onAbandon: () => void
   onClose: () => void
 }
@@ -28,6 +29,7 @@ export function FiresideMore({
   areKeysOn,
   onKeysOn,
   onTurn,
+  onAlarms,
   onAbandon,
   onClose,
 }: MoreProps) {
@@ -35,6 +37,7 @@ export function FiresideMore({
     <FiresideSheet title="More" onClose={onClose}>
       <div className="grid grid-cols-2 gap-3">
         {canRun ? <Button onClick={onTurn}>Turn the barrel</Button> : null}
+        <Button onClick={onAlarms}>Alarms, and those shelved</Button>
         <Link href="/room" className={buttonClass('plain')}>
           Back to the room
         </Link>

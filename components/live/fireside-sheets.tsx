@@ -13,7 +13,7 @@ import type { MarkSender } from './fireside-mark-sender'
 import { FiresideAbandon, FiresideMore } from './fireside-more'
 import { FiresideNote } from './fireside-note'
 
-export type FiresideSheetName = 'more' | 'note' | 'finish' | 'abandon'
+export type FiresideSheetName = 'alarms' | 'more' | 'note' | 'finish' | 'abandon'
 
 /** The sheets over the fireside; the finish and the abandoning go to the server once every mark is there. */
 export function FiresideSheets({
@@ -71,6 +71,7 @@ export function FiresideSheets({
           onTurn()
           close()
         }}
+        onAlarms={() => onSheet('alarms')}
         onAbandon={() => onSheet('abandon')}
         onClose={close}
       />

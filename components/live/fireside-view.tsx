@@ -2,6 +2,7 @@ import { formatInstant } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
 import type { FiringDto } from '@/lib/firings/schema'
 import type { FiringState } from '@/lib/live/events'
+import { adviceFor } from '@/lib/live/signal-words'
 import { nextAction, stageNow } from '@/lib/live/stage-now'
 import { AfterTouch, isTouchShown } from './fireside-after-touch'
 import type { Touched } from './fireside-after-touch'
@@ -35,6 +36,8 @@ export type FiresideViewProps = {
   canRun: boolean
   isHeldByKey: boolean
   topLine: TopLineProps | null
+  /** Why a touch on an alarm was not taken. */
+  alarmProblem: string | null
   /** What a barcode scanner found out. */
   scanWords: string | null
   touched: Touched | null
@@ -76,7 +79,7 @@ export function FiresideView(props: FiresideViewProps) {
       }
       figures={<Figures {...props} />}
       picture={<Picture facts={facts} live={live} nowMs={nowMs} unit={unit} />}
-      strip={props.scanWords ?? stripOf(facts, next)}
+      strip={props.alarmProblem ?? props.scanWords ?? troubleStrip(live.state, nowMs) ?? stripOf(facts, next)}
       overlay={
         isShown ? (
           <AfterTouch
@@ -106,6 +109,7 @@ function Figures({ facts, live, nowMs, unit, zone }: FiresideViewProps) {
         opposite={readProbe(state, 'opposite', nowMs)}
         planTempC={isToasting && state !== null ? state.planTempC : null}
         climbCPerMin={state?.climbCPerMin ?? null}
+        isOverMaximum={isNow && hasAlarm(state, 'wood maximum')}
         isFar={isNow && isToasting && isFarFromPlan(state, facts.plan)}
         unit={unit}
         zone={zone}
@@ -120,6 +124,13 @@ function Figures({ facts, live, nowMs, unit, zone }: FiresideViewProps) {
         zone={zone}
       />
     </>
+  )
+}
+
+/** On, and still beyond its limit. */
+function hasAlarm(state: FiringState, kind: FiringState['alarms'][number]['kind']): boolean {
+  return state.alarms.some(
+    (alarm) => alarm.kind === kind && (alarm.state === 'unacknowledged' || alarm.state === 'acknowledged'),
   )
 }
 
@@ -144,6 +155,26 @@ function Picture({ facts, live, nowMs, unit }: Pick<FiresideViewProps, 'facts' |
       unit={unit}
     />
   )
+}
+
+/** What is wrong with the signals, with what to do; a lead probe without reading first. Null when nothing is. */
+function troubleStrip(state: FiringState | null, nowMs: number): string | null {
+  if (state === null || isCut(state, nowMs)) return null
+  const lead = readProbe(state, 'lead', nowMs)
+  const isMissing = lead.kind === 'none' && state.state !== 'preheating'
+  const words = [
+    ...(isMissing ? [adviceFor(lead.cause)] : []),
+    ...state.troubles.map((trouble) => trouble.words),
+    ...shelvedWords(state),
+    ...(isMissing ? [cautions.noReading] : []),
+  ]
+  return words.length === 0 ? null : words.join(' ')
+}
+
+function shelvedWords(state: FiringState): string[] {
+  const shelved = state.alarms.filter((alarm) => alarm.state === 'shelved')
+  if (shelved.length === 0) return []
+  return [`${shelved.length === 1 ? 'One alarm is' : `${shelved.length} alarms are`} shelved; see More.`]
 }
 
 /** The caution of what is being done or comes next; else the cue's words when they are long. */

@@ -12,6 +12,7 @@ export function WoodFigure({
   opposite,
   planTempC,
   climbCPerMin,
+  isOverMaximum = false,
   isFar,
   unit,
   zone,
@@ -22,6 +23,8 @@ export function WoodFigure({
   /** Null outside the plan. */
   planTempC: number | null
   climbCPerMin: number | null
+  /** The wood-maximum alarm is on: the figure takes its red. */
+  isOverMaximum?: boolean
   isFar: boolean
   unit: TemperatureUnit
   zone: string
@@ -42,7 +45,9 @@ export function WoodFigure({
             className={classNames(
               firesideType.numeral.className,
               'shrink-0',
-              (lead.kind === 'old' || lead.kind === 'cut' || isFar) && 'text-amber',
+              isOverMaximum && lead.kind === 'live'
+                ? 'text-red'
+                : (lead.kind === 'old' || lead.kind === 'cut' || isFar) && 'text-amber',
             )}
           >
             {numeralOf(lead, unit)}

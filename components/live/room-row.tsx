@@ -3,6 +3,7 @@ import { memo } from 'react'
 import { Pair } from '@/components/chart/pair'
 import type { PairProps } from '@/components/chart/pair-types'
 import { classNames } from '@/components/ui/class-names'
+import { shownAlarmWords, splitAlarmWords } from '@/lib/alarms/alarm-words'
 import { formatAge, formatFromPlan, formatNumber, toShownTemp } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
 import type { RoomFiring } from '@/lib/live/events'
@@ -10,7 +11,6 @@ import { roundPercent } from './fireside-dose-figure'
 import type { ProbeReading } from './fireside-reading'
 import { clockFigures } from './fireside-step'
 import { roomType } from './fireside-type'
-import { splitAlarmWords } from './fireside-top-line'
 import type { RoomTime } from './room-view'
 
 export type RoomRowProps = {
@@ -76,7 +76,7 @@ export function RoomRow(props: RoomRowProps) {
         >
           {firing === null || firing.alarm === null
             ? timeWords(time)
-            : splitAlarmWords(firing.alarm.words).headline}
+            : splitAlarmWords(shownAlarmWords(firing.alarm.words, props.unit)).headline}
         </p>
       </div>
     </Link>

@@ -1,5 +1,5 @@
 import { Pair } from '@/components/chart/pair'
-import { AlarmLine } from '@/components/ui/alarm-line'
+import { TopLine } from '@/components/live/fireside-top-line'
 import { Button } from '@/components/ui/button'
 import { StaveGauge } from '@/components/ui/stave-gauge'
 import { LiveSpecimen } from './live-specimen'
@@ -18,12 +18,13 @@ export function FiresideSpecimen({ isAlarm }: { isAlarm: boolean }) {
       id={isAlarm ? 'alarm' : 'fireside'}
     >
       {isAlarm ? (
-        <AlarmLine
-          words="Bilge A has no reading. Look at the barrel, then its lead."
-          ageWords="0:42"
-          priority="medium"
+        <TopLine
+          headline="Bilge A has no reading."
+          instruction="Look at the barrel, then its lead."
+          age="0:42"
+          level="amber"
           isSeen={false}
-          action={<button className="min-h-[70px] border-3 border-current px-6 font-[640]">Seen</button>}
+          moreCount={1}
         />
       ) : null}
       <div className="grid min-h-0 flex-1 grid-cols-[396px_1fr]">

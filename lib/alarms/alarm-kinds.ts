@@ -122,3 +122,11 @@ export const alarmCatalog: Record<AlarmKind, AlarmFacts> = {
 export function countsAsAlarm(kind: AlarmKind): boolean {
   return alarmCatalog[kind].priority < 4
 }
+
+/** Why an alarm is shelved, as the fireside offers it; the table keeps the words. */
+export const shelfReasons = [
+  'The probe is wrong',
+  'Known, being worked on',
+  'The barrel is off the fire',
+  'Meant so',
+] as const

@@ -3,13 +3,6 @@ import { alarmKinds } from '@/lib/alarms/alarm-kinds'
 import { alarmStates } from '@/lib/alarms/alarm-states'
 import { pageQuery, pageSchema } from '@/lib/http/cursor'
 
-/** Why an alarm is shelved, as the fireside offers it; own words serve as well. */
-export const shelfReasons = [
-  'The probe is wrong',
-  'Known, being worked on',
-  'The barrel is off the fire',
-] as const
-
 /** Longest that the product lets any site choose; the site's own limit is in its rules. */
 const mostMinutes = 120
 

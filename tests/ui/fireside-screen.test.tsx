@@ -7,7 +7,7 @@ import { cautionFor, cautions } from '@/components/live/fireside-cautions'
 import { nextOffsetMs } from '@/components/live/fireside-clock'
 import { nothingTaken, takeFrom, takenAll } from '@/components/live/fireside-feed'
 import { noKeys, settledKey, takeKey } from '@/components/live/fireside-keys'
-import { topLineOf } from '@/components/live/fireside-lines'
+import { listedAlarms, topLineOf } from '@/components/live/fireside-lines'
 import { PRESS_MS } from '@/components/live/fireside-press'
 import { PressButton } from '@/components/live/fireside-press-button'
 import { readProbe } from '@/components/live/fireside-reading'
@@ -16,6 +16,7 @@ import { TopLine } from '@/components/live/fireside-top-line'
 import { firesideType, letterArcMinutes, panelMm, roomType, TARGET_PX } from '@/components/live/fireside-type'
 import { WoodFigure } from '@/components/live/fireside-wood-figure'
 import { createPointFeed } from '@/components/live/point-feed'
+import { shownAlarmWords } from '@/lib/alarms/alarm-words'
 import type { FiringState } from '@/lib/live/events'
 
 afterEach(cleanup)
@@ -155,15 +156,36 @@ describe('the wood temperature', () => {
 })
 
 describe('the line across the top', () => {
-  const base = { queue: [], refusal: null, seenAlarm: null, nowMs: NOW, zone: 'Europe/Paris' }
-  const alarm = {
-    words: 'Bilge A has no reading. Look at the barrel, then its lead.',
-    level: 'amber' as const,
-    sinceMs: NOW - 42_000,
+  const none: ReadonlySet<string> = new Set()
+  const base = {
+    queue: [],
+    refusal: null,
+    seenHere: none,
+    unit: 'C' as const,
+    nowMs: NOW,
+    zone: 'Europe/Paris',
   }
+  const alarm: FiringState['alarms'][number] = {
+    id: 'a',
+    kind: 'no reading',
+    words: 'Bilge A has no reading. Look at the barrel, then its lead.',
+    level: 'amber',
+    sinceMs: NOW - 42_000,
+    state: 'unacknowledged',
+    mayAcknowledge: true,
+    shelvedUntilMs: null,
+  }
+  const hot = {
+    ...alarm,
+    id: 'b',
+    kind: 'wood maximum' as const,
+    words: 'Wood at 2 mm is over 215 °C. Lid off, lower the fire.',
+    level: 'red' as const,
+  }
+  const seen = { state: 'acknowledged' as const, mayAcknowledge: false }
 
   test('says the alarm large, what to do beneath, and how long', () => {
-    const line = topLineOf({ ...base, state: stateOf({}, { alarm }) })
+    const line = topLineOf({ ...base, state: stateOf({}, { alarms: [alarm] }) })
     expect(line).toMatchObject({
       headline: 'Bilge A has no reading.',
       instruction: 'Look at the barrel, then its lead.',
@@ -181,18 +203,67 @@ describe('the line across the top', () => {
     expect(container.querySelector('.alarm-unseen')).toBeNull()
   })
 
-  test('seen holds for this alarm and not for the next', () => {
-    const seenAlarm = `${alarm.sinceMs} amber`
-    expect(topLineOf({ ...base, seenAlarm, state: stateOf({}, { alarm }) })?.isSeen).toBe(true)
-    const next = { ...alarm, sinceMs: NOW - 1_000 }
-    expect(topLineOf({ ...base, seenAlarm, state: stateOf({}, { alarm: next }) })?.isSeen).toBe(false)
+  test('a touch holds for this coming of the alarm at once, and not for the next', () => {
+    const seenHere = new Set(['a'])
+    expect(topLineOf({ ...base, seenHere, state: stateOf({}, { alarms: [alarm] }) })?.isSeen).toBe(true)
+    const next = { ...alarm, id: 'c' }
+    expect(topLineOf({ ...base, seenHere, state: stateOf({}, { alarms: [next] }) })?.isSeen).toBe(false)
   })
+
+  test('what nobody has seen stands before what was seen, however grave; the others are counted', () => {
+    const line = topLineOf({ ...base, state: stateOf({}, { alarms: [{ ...hot, ...seen }, alarm] }) })
+    expect(line).toMatchObject({ alarmId: 'a', isSeen: false, moreCount: 1 })
+    const both = topLineOf({ ...base, state: stateOf({}, { alarms: [hot, alarm] }) })
+    expect(both).toMatchObject({ alarmId: 'b', level: 'red', moreCount: 1 })
+  })
+
+  test('one that is over stays until it is seen, and then goes at once', () => {
+    const over = { ...alarm, state: 'returned unacknowledged' as const }
+    expect(topLineOf({ ...base, state: stateOf({}, { alarms: [over] }) })?.isSeen).toBe(false)
+    const seenHere = new Set(['a'])
+    expect(topLineOf({ ...base, seenHere, state: stateOf({}, { alarms: [over] }) })).toBeNull()
+  })
+
+  test('a shelved alarm has no line; the list still has it', () => {
+    const state = stateOf({}, { alarms: [{ ...alarm, state: 'shelved', shelvedUntilMs: NOW + 60_000 }] })
+    expect(topLineOf({ ...base, state })).toBeNull()
+    expect(listedAlarms(state, none)).toHaveLength(1)
+  })
+
+  test('the words come in the person’s unit, a rate and a difference without the 32', () => {
+    const line = topLineOf({ ...base, unit: 'F', state: stateOf({}, { alarms: [hot] }) })
+    expect(line?.headline).toBe('Wood at 2 mm is over 419 °F.')
+    expect(shownAlarmWords('Climbs over 22 °C a minute. ', 'F')).toBe('Climbs over 40 °F a minute. ')
+    expect(shownAlarmWords('The sides are over 8 °C apart.', 'F')).toBe('The sides are over 14 °F apart.')
+  })
+
+  test('Seen is a target for gloves, and the list opens from the line', () => {
+    const onSeen = vi.fn()
+    const onList = vi.fn()
+    const line = { headline: 'a', instruction: 'b', age: '', level: 'amber' as const, moreCount: 2 }
+    render(<TopLine {...line} isSeen={false} onSeen={onSeen} onList={onList} />)
+    const button = screen.getByRole('button', { name: 'Seen' })
+    expect(Number(/min-h-\[(\d+)px\]/.exec(button.className)?.[1])).toBeGreaterThanOrEqual(TARGET_PX)
+    fireEvent.click(button)
+    fireEvent.click(screen.getByRole('button', { name: 'and 2 more' }))
+    expect([onSeen.mock.calls.length, onList.mock.calls.length]).toEqual([1, 1])
+  })
+
+  test('a reminder has no alarm’s colour and does not change', () => {
+    const { container } = render(
+      <TopLine headline="Feed was due." instruction="" age="" level="grey" isSeen={false} />,
+    )
+    expect(container.querySelector('.alarm-unseen')).toBeNull()
+    expect(container.innerHTML).not.toMatch(/bg-alarm/)
+  })
+
+  const amber = { words: alarm.words, level: 'amber' as const, sinceMs: alarm.sinceMs }
 
   test('a lost connection is said with its time and with the marks that wait', () => {
     const queue = [
       { mark: { id: '1', kind: 'feed' as const, at: '2027-02-01T13:27:01Z' }, tries: 1, refusal: null },
     ]
-    const line = topLineOf({ ...base, queue, nowMs: NOW + 20_000, state: stateOf({}, { alarm }) })
+    const line = topLineOf({ ...base, queue, nowMs: NOW + 20_000, state: stateOf({}, { alarm: amber }) })
     expect(line?.headline).toBe('No connection since 14:27.')
     expect(line?.instruction).toContain('1 mark waits here')
     expect(line?.instruction).toContain('Bilge A has no reading')

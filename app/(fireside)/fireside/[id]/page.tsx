@@ -21,6 +21,7 @@ export default async function FiresidePage({ params }: { params: Promise<{ id: s
       zone={site.timeZone}
       unit={actor.temperatureUnit}
       canRun={isAllowed(actor, firing.isTrial ? 'firings:run trial' : 'firings:run')}
+      canShelve={isAllowed(actor, 'alarms:shelve')}
       serverNowMs={nowMs()}
     />
   )
