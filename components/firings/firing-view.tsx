@@ -36,7 +36,7 @@ export function FiringView({ picture, unit }: { picture: FiringPicture; unit: Te
         </div>
         <div className="min-w-0 space-y-6">
           {score === null ? null : <TermTable score={score.result} refTempC={refTempC} unit={unit} />}
-          <HappenedList picture={picture} />
+          <HappenedList picture={picture} unit={unit} />
         </div>
       </div>
     </>

@@ -1,9 +1,13 @@
 import type { ReactNode } from 'react'
+import { storySentence } from '@/components/alarms/alarm-story'
 import { silenceWords } from '@/components/firings/gap-words'
 import { listWords } from '@/components/firings/mark-words'
+import { countsAsAlarm } from '@/lib/alarms/alarm-kinds'
+import { shownAlarmWords, splitAlarmWords } from '@/lib/alarms/alarm-words'
 import type { FiringPicture } from '@/lib/firings/picture-types'
 import type { FiringDto, MarkDto } from '@/lib/firings/schema'
 import { formatInstant } from '@/lib/format'
+import type { TemperatureUnit } from '@/lib/format'
 
 type Line = { key: string; at: string; what: ReactNode; who: string }
 
@@ -11,11 +15,14 @@ type Line = { key: string; at: string; what: ReactNode; who: string }
 const lateFromS = 60
 
 /** What was done and what went missing, in order, each with its time and who says so. */
-export function HappenedList({ picture }: { picture: FiringPicture }) {
+export function HappenedList({ picture, unit }: { picture: FiringPicture; unit: TemperatureUnit }) {
   const { firing, timeZone } = picture
-  const lines = [...phaseLines(firing), ...markLines(picture), ...gapLines(picture)].sort((a, b) =>
-    a.at.localeCompare(b.at),
-  )
+  const lines = [
+    ...phaseLines(firing),
+    ...markLines(picture),
+    ...gapLines(picture),
+    ...alarmLines(picture, unit),
+  ].sort((a, b) => a.at.localeCompare(b.at))
   return (
     <section>
       <h2 className="mb-1">
@@ -25,7 +32,7 @@ export function HappenedList({ picture }: { picture: FiringPicture }) {
         <p className="border-y border-line py-2 text-soft">Nothing yet.</p>
       ) : (
         <table className="w-full border-collapse">
-          <caption className="sr-only">Marks and silences, times in {timeZone}</caption>
+          <caption className="sr-only">Marks, alarms and silences, times in {timeZone}</caption>
           <thead className="sr-only">
             <tr>
               <th scope="col">Time</th>
@@ -111,6 +118,23 @@ function PutRight({
       )}
     </>
   )
+}
+
+/** Alarms with what became of them; reminders are left to the page of alarms. */
+function alarmLines({ alarms }: FiringPicture, unit: TemperatureUnit): Line[] {
+  return alarms
+    .filter((alarm) => countsAsAlarm(alarm.kind))
+    .map((alarm) => ({
+      key: alarm.id,
+      at: alarm.cameAt,
+      what: (
+        <>
+          Alarm: {splitAlarmWords(shownAlarmWords(alarm.words, unit)).headline}
+          <span className="block text-small text-soft">{storySentence(alarm)}</span>
+        </>
+      ),
+      who: alarm.seen?.by ?? '',
+    }))
 }
 
 function gapLines({ curves }: FiringPicture): Line[] {

@@ -5,10 +5,12 @@ export type Place = { href: string; label: string }
 const places: readonly (Place & { roles: readonly Role[] })[] = [
   { href: '/room', label: 'Room', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
   { href: '/recipes', label: 'Recipes', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
+  { href: '/markers', label: 'Markers', roles: ['administrator', 'master cooper', 'chemist'] },
   { href: '/firings', label: 'Firings', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
   { href: '/batches', label: 'Batches', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
   { href: '/barrels', label: 'Barrels', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
   { href: '/probes', label: 'Probes', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
+  { href: '/alarms', label: 'Alarms', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
   { href: '/accounts', label: 'Accounts', roles: ['administrator'] },
   { href: '/audit', label: 'Audit', roles: ['administrator', 'master cooper'] },
   { href: '/settings', label: 'Settings', roles: ['administrator'] },
