@@ -118,7 +118,7 @@ function lawFilesOf(lane, module) {
 /** Laws that fail before anything is planted would catch everything, and prove nothing. */
 async function provePlain(lane, faults) {
   const files = new Set(faults.map((fault) => lawFilesOf(lane, fault.file)[0]))
-  say(`the laws of ${files.size} test files, before anything is planted`)
+  say(`first the laws of ${[...files].join(', ')}, with nothing planted`)
   const { failed, output } = await runLaws(lane, [...files])
   if (failed.length === 0) return
   throw new SetupError(

@@ -71,6 +71,7 @@ describe('plane wall with convection', () => {
     })
   })
   it('halving both steps divides the error by about four (second order)', () => {
+    // The series of cond.wall.series.a at Bi 1, Fo 0.2, x* 1.
     const exact = 0.6433907845
     const coarse = Math.abs(wallTheta(1, 0.2, 1, 21) - exact)
     const fine = Math.abs(wallTheta(1, 0.2, 1, 41) - exact)

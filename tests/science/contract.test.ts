@@ -56,12 +56,9 @@ import {
   moisturePercent,
 } from '../../lib/science/wood'
 import { expectWithin, notNumbers } from './published-checks'
+import { hold } from './sample-curves'
 
 const model: DoseModel = { refTempC: 200, zC: 34, baseTempC: 120 }
-const hold = (minutes: number, tempC: number): CurvePoint[] => [
-  { timeS: 0, tempC },
-  { timeS: minutes * 60, tempC },
-]
 const slab = {
   thicknessM: 0.027,
   nodes: 5,

@@ -22,13 +22,7 @@ import {
   tableShape,
   testPublished,
 } from './published-checks'
-
-function hold(minutes: number, tempC: number): CurvePoint[] {
-  return [
-    { timeS: 0, tempC },
-    { timeS: minutes * 60, tempC },
-  ]
-}
+import { hold } from './sample-curves'
 
 /** Holds one after another, joined by steps. */
 function holds(segments: readonly (readonly number[])[]): CurvePoint[] {
@@ -162,7 +156,7 @@ describe('published doses', () => {
     expectClose(check, arrheniusEquivalentMinutes(inputs.Ea_J_mol, inputs.Tref_C, points), expected)
     expectClose(check, inputs.t_min * arrheniusRate(inputs.Ea_J_mol, inputs.Tref_C, inputs.T_C), expected)
   })
-  it('the table of usual toasts has these severities and doses (closed form, z 33.963)', () => {
+  it('SCIENCE §2: the table of usual toasts has these severities and doses (closed form, z 33.963)', () => {
     const rows: [number, number, number, number, number][] = [
       [30, 125, 2.21, 0.19, 0.005],
       [35, 165, 3.46, 3.3, 0.05],
@@ -179,7 +173,7 @@ describe('published doses', () => {
       )
     }
   })
-  it('z 34 at 200 °C is an activation energy of 126 kJ/mol', () => {
+  it('SCIENCE §2: z 34 at 200 °C is an activation energy of 126 kJ/mol (z = ln 10·R·T²/Ea)', () => {
     expectWithin(zCFromActivationEnergy(126_000, 200), 34, 0.05)
   })
 })

@@ -15,7 +15,7 @@ describe('check characters', () => {
   testPublished('check_digit.iso7064.mod37_36', (check) => {
     expect(checkCharacter37_36(String(check.inputs.payload))).toBe(check.expected)
   })
-  it('hyphens do not count, and small letters are capitals', () => {
+  it('SCIENCE §8: SML-0427 gives P, hyphens do not count, and small letters are capitals', () => {
     expect(checkCharacter37_36('SML-0427')).toBe('P')
     expect(isValid37_36('SML-0427-P')).toBe(true)
     expect(isValid37_36('sml0427p')).toBe(true)
@@ -40,7 +40,7 @@ describe('check characters', () => {
       { ...propertyRun, numRuns: 2000 },
     )
   })
-  it('of all swaps of two different neighbours one in 630 passes, at every place', () => {
+  it('of all swaps of two different neighbours one in 630 passes, at every place (counted out)', () => {
     // A hybrid system misses one pair for each state that it can be in; pure systems miss none.
     for (const before of alphabet) {
       let missed = 0

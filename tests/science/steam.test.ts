@@ -68,7 +68,7 @@ describe('saturation line', () => {
       propertyRun,
     )
   })
-  it('near one atmosphere a hectopascal is 0.0277 °C', () => {
+  it('near one atmosphere a hectopascal is 0.0277 °C (CHECKS §2, from IF97 region 4)', () => {
     expectWithin(boilingPointC(1013.75) - boilingPointC(1012.75), 0.0277, 1e-4)
   })
   it('values outside the domain are named', () => {

@@ -59,7 +59,7 @@ describe('emf of the reference functions', () => {
       propertyRun,
     )
   })
-  it('covers the whole published range and nothing beyond it', () => {
+  it('covers the whole range of NIST Monograph 175 and nothing beyond it', () => {
     const full = { K: [-270, 1372], N: [-270, 1300], J: [-210, 1200], T: [-270, 400] } as const
     for (const type of types) {
       const [min, max] = full[type]
@@ -113,7 +113,7 @@ describe('temperature from emf', () => {
       propertyRun,
     )
   })
-  it('the ends of the published emf range are inside, anything beyond is no temperature', () => {
+  it('the ends of Monograph 175’s emf range are inside, anything beyond is no temperature', () => {
     const ends = {
       K: [-5.891, 54.886],
       N: [-3.99, 47.513],
