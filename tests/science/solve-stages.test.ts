@@ -70,7 +70,7 @@ const anyMoves = fc
   .filter(([first, second]) => first === undefined || second === undefined || thing(first) !== thing(second))
 
 describe('solving one or two stages for a dose', () => {
-  it('dose ∘ solve is identity, inside the limits, both at one share; or the range does not hold it', () => {
+  it('law: dose ∘ solve is identity, inside the limits, both at one share; or the range does not hold it', () => {
     fc.assert(
       fc.property(anyMoves, fc.double({ min: 0.2, max: 300, noNaN: true }), (moves, doseMin) => {
         const result = solveStages({ ...request, moves, wanted: { what: 'dose', doseMin } })
@@ -90,7 +90,7 @@ describe('solving one or two stages for a dose', () => {
     )
   })
 
-  it('whatever the limits allow at a share is found again, and more dose asks a larger share', () => {
+  it('law: whatever the limits allow at a share is found again, and more dose asks a larger share', () => {
     const share = fc.double({ min: 0.01, max: 0.99, noNaN: true })
     fc.assert(
       fc.property(anyMoves, share, share, (moves, first, second) => {
@@ -225,7 +225,7 @@ describe('the root finder', () => {
       1e-12,
     )
   })
-  it('brackets any root of a rising function', () => {
+  it('law: brackets any root of a rising function', () => {
     fc.assert(
       fc.property(
         fc.double({ min: -50, max: 50, noNaN: true }),
