@@ -2,9 +2,7 @@ import type { FiringState } from '@/lib/live/events'
 import type { FiringFacts } from '@/lib/live/firing-facts'
 import type { Signal } from '@/lib/live/live-signals'
 import type { Forecast } from '@/lib/science/forecast'
-import { forecastDose } from '@/lib/science/forecast'
-import type { CurvePoint } from '@/lib/science/heat-dose'
-import { planTempCAt } from '@/lib/science/plan'
+import { forecastDose, planFrom } from '@/lib/science/forecast'
 
 export type ForecastFacts = {
   facts: FiringFacts
@@ -47,14 +45,6 @@ export function liveForecast(input: ForecastFacts): FiringState['forecast'] {
 }
 
 const noMinutes = { minutesToTargetLow: null, minutesToTargetHigh: null }
-
-/** The plan from a moment of it on, that moment as 0; after its end its last temperature alone. */
-export function planFrom(points: readonly CurvePoint[], toastS: number): CurvePoint[] {
-  const tempC = planTempCAt(points, toastS)
-  if (tempC === null) return [{ timeS: 0, tempC: points.at(-1)?.tempC ?? 0 }]
-  const rest = points.filter((point) => point.timeS > toastS)
-  return [{ timeS: 0, tempC }, ...rest.map((point) => ({ timeS: point.timeS - toastS, tempC: point.tempC }))]
-}
 
 function targetSentence(line: Forecast['plan']): string {
   if (line.minutesToTarget === 0) return 'The target dose is reached.'

@@ -1,7 +1,11 @@
 import { requireFinite, requireNotNegative, requirePositive } from './domain'
+import { ratioFromLog10 } from './dose-ratio'
 import type { CurvePoint, DoseModel } from './heat-dose'
-import { createDoseAccumulator } from './heat-dose'
+import { createDoseAccumulator, createSegmentDose } from './heat-dose'
+import { planTempCAt } from './plan'
+import { findRoot } from './root'
 import type { SiteRules } from './site-rules'
+import { straightBetween } from './straight-line'
 
 /** What a forecast starts from. Times in minutes from now. */
 export type ForecastInput = {
@@ -32,8 +36,10 @@ export type ForecastLine = {
   /** The same if the dose is really at the high and at the low end of its interval: earliest and latest. */
   earliestMinutes: number | null
   latestMinutes: number | null
-  /** Dose at the plan's end, minutes at the reference temperature. */
+  /** Dose at the plan's end, minutes at the reference temperature, and the ends of its interval. */
   doseAtPlannedEndMin: number
+  lowAtPlannedEndMin: number
+  highAtPlannedEndMin: number
 }
 
 export type AdviceKind = 'rest now' | 'rest early' | 'no extra time' | 'hold longer' | 'out of reach'
@@ -53,6 +59,9 @@ export type Forecast = {
 /**
  * Time to the target dose under the three assumptions of SCIENCE §6, and one piece of advice made from the third
  * alone, so that it cannot contradict the line it stands beside.
+ *
+ * (a) holds the reading; (b) keeps its climb up to the wood maximum and holds there, or falls on down, or without a
+ * maximum climbs on to 400 °C, where no wood is.
  *
  * (c) takes the firing back onto the plan in a straight line over the rule's minutes, or slower when the recipe's
  * climb maximum asks it, then along the plan, then holding the plan's last temperature. The interval turns into
@@ -133,8 +142,8 @@ function resumedPlan(input: ForecastInput, horizonS: number): CurvePoint[] {
   curve.forEach((point, i) => {
     const before = curve[i - 1]
     if (before !== undefined && before.timeS < rejoinS && point.timeS > rejoinS) {
-      const share = (rejoinS - before.timeS) / (point.timeS - before.timeS)
-      rejoining.push({ timeS: rejoinS, tempC: before.tempC + share * (point.tempC - before.tempC) })
+      const tempC = straightBetween(before.timeS, before.tempC, point.timeS, point.tempC, rejoinS)
+      rejoining.push({ timeS: rejoinS, tempC })
     }
     const left = Math.max(0, 1 - point.timeS / rejoinS)
     rejoining.push({ timeS: point.timeS, tempC: point.tempC + offsetC * left })
@@ -145,13 +154,16 @@ function resumedPlan(input: ForecastInput, horizonS: number): CurvePoint[] {
 /** Follows a curve that starts now with the running dose on it. */
 function followCurve(input: ForecastInput, curve: readonly CurvePoint[], endS: number): ForecastLine {
   const { doseMin, targetDoseMin, intervalLog10 } = input
-  const factor = 10 ** intervalLog10
+  const factor = ratioFromLog10(intervalLog10)
+  const doseAtPlannedEndMin = doseMin + doseUpTo(input.model, curve, endS)
   return {
     minutesToTarget: minutesUntil(input, curve, targetDoseMin),
     // Dose read off by a fixed factor stays off by it: the true dose reaches the target when the read one reaches this.
     earliestMinutes: minutesUntil(input, curve, targetDoseMin / factor),
     latestMinutes: minutesUntil(input, curve, targetDoseMin * factor),
-    doseAtPlannedEndMin: doseMin + doseUpTo(input.model, curve, endS),
+    doseAtPlannedEndMin,
+    lowAtPlannedEndMin: doseAtPlannedEndMin / factor,
+    highAtPlannedEndMin: doseAtPlannedEndMin * factor,
   }
 }
 
@@ -167,8 +179,8 @@ function cutAt(curve: readonly CurvePoint[], endS: number): CurvePoint[] {
   for (const point of curve) {
     const before = points.at(-1)
     if (before !== undefined && point.timeS > endS) {
-      const share = (endS - before.timeS) / (point.timeS - before.timeS)
-      points.push({ timeS: endS, tempC: before.tempC + share * (point.tempC - before.tempC) })
+      const tempC = straightBetween(before.timeS, before.tempC, point.timeS, point.tempC, endS)
+      points.push({ timeS: endS, tempC })
       return points
     }
     points.push(point)
@@ -195,65 +207,67 @@ function minutesUntil(input: ForecastInput, curve: readonly CurvePoint[], goalMi
   return null
 }
 
-/** Bisection on the exact dose of the cut segment: it only grows, and 60 halvings leave nothing of a segment. */
+const ROOT_TOLERANCE_S = 1e-9
+
+/** Where in a segment its own dose has come to `neededMin`: the root of the exact dose of the cut segment. */
 function secondsIntoSegment(model: DoseModel, from: CurvePoint, to: CurvePoint, neededMin: number): number {
   const spanS = to.timeS - from.timeS
-  let low = 0
-  let high = spanS
-  for (let i = 0; i < 60 && high - low > 1e-9 * Math.max(1, high); i += 1) {
-    const middle = (low + high) / 2
-    const dose = createDoseAccumulator(model)
-    dose.add(0, from.tempC)
-    dose.add(middle, from.tempC + ((to.tempC - from.tempC) * middle) / spanS)
-    if (dose.minutes < neededMin) low = middle
-    else high = middle
+  const segment = createSegmentDose(model)
+  const fromRate = segment.rateAt(from.tempC)
+  const missingAt = (seconds: number) => {
+    const tempC = straightBetween(0, from.tempC, spanS, to.tempC, seconds)
+    return segment.minutes(seconds, from.tempC, fromRate, tempC, segment.rateAt(tempC)) - neededMin
   }
-  return high
+  // A last digit may be missing at the end, of what the sum had there; a step has no inside.
+  if (!(spanS > 0) || missingAt(spanS) <= 0) return Math.max(0, spanS)
+  if (missingAt(0) >= 0) return 0
+  const rootS = findRoot(missingAt, 0, spanS, ROOT_TOLERANCE_S)
+  // On the far side of the root, so that what is not reached yet never reads as reached now.
+  return missingAt(rootS) >= 0 ? rootS : Math.min(spanS, rootS + 2 * ROOT_TOLERANCE_S)
 }
 
+/** Less than this from now or from the plan's end is no time to act on, min. */
+const NO_TIME_MIN = 0.5
+
 /**
- * One piece of advice from the plan's line: 'rest now' when the target is reached, or the plan is at its end with the
- * dose within tolerance; 'no extra time' when the plan's own end lies within tolerance of it, or less than half a
- * minute from it; otherwise how much longer or sooner.
+ * One piece of advice from the plan's line alone, so that it can not contradict it:
+ *
+ * - target reached, or plan at its end with the dose within tolerance: 'rest now';
+ * - the plan's end lies within tolerance: 'no extra time', and within means within, whatever minute the target falls on;
+ * - the plan would end above: 'rest early' by the whole minutes that the target comes before its end, 'rest now' when
+ *   that is less than half a minute from now;
+ * - it would end below: 'hold longer' by the whole minutes after its end, 'out of reach' when holding never gets there;
+ * - and 'no extra time' again when the target falls within half a minute of the plan's end.
  */
 function adviseFrom(input: ForecastInput, line: ForecastLine, minutesToPlannedEnd: number): Advice {
-  const { targetDoseMin, toleranceLog10 } = input
-  if (line.minutesToTarget === 0) {
-    return { kind: 'rest now', minutes: 0, sentence: 'The target dose is reached: rest now.' }
+  const { minutesToTarget } = line
+  if (minutesToTarget === 0) return advice('rest now', 'The target dose is reached: rest now.')
+  const offLog10 = Math.log10(line.doseAtPlannedEndMin / input.targetDoseMin)
+  if (Math.abs(offLog10) <= input.toleranceLog10) {
+    return minutesToPlannedEnd > 0
+      ? advice('no extra time', 'On the plan from here the dose ends within tolerance: no extra time.')
+      : advice('rest now', 'The plan is at its end and the dose is within tolerance: rest now.')
   }
-  const offLog10 = Math.log10(line.doseAtPlannedEndMin / targetDoseMin)
-  const isWithin = Math.abs(offLog10) <= toleranceLog10
-  const none: Advice = {
-    kind: 'no extra time',
-    minutes: 0,
-    sentence: 'On the plan from here the dose arrives at its end: no extra time.',
+  if (minutesToTarget === null) {
+    return advice(
+      'out of reach',
+      'On the plan from here the target dose is not reached: raise the temperature or ask the master cooper.',
+    )
   }
-  if (isWithin && minutesToPlannedEnd > 0) return none
-  if (isWithin) {
-    return {
-      kind: 'rest now',
-      minutes: 0,
-      sentence: 'The plan is at its end and the dose is within tolerance: rest now.',
-    }
+  if (offLog10 > 0 && minutesToTarget < NO_TIME_MIN) {
+    return advice('rest now', 'The target dose is less than half a minute away: rest now.')
   }
-  if (line.minutesToTarget === null) {
-    return {
-      kind: 'out of reach',
-      minutes: 0,
-      sentence:
-        'On the plan from here the target dose is not reached: raise the temperature or ask the master cooper.',
-    }
-  }
-  const moreMinutes = Math.round(line.minutesToTarget - minutesToPlannedEnd)
-  if (moreMinutes > 0) {
-    const sentence = `Holding ${moreMinutes} min longer than planned gets there.`
-    return { kind: 'hold longer', minutes: moreMinutes, sentence }
-  }
-  if (moreMinutes < 0) {
-    const sentence = `The dose arrives early: rest ${-moreMinutes} min sooner than planned.`
-    return { kind: 'rest early', minutes: -moreMinutes, sentence }
-  }
-  return none
+  const more = Math.round(minutesToTarget - minutesToPlannedEnd)
+  if (more > 0) return advice('hold longer', `On the plan from here, hold ${more} min longer.`, more)
+  if (more < 0)
+    return advice('rest early', `On the plan from here, rest ${-more} min sooner than planned.`, -more)
+  return minutesToPlannedEnd > 0
+    ? advice('no extra time', 'The target comes within half a minute of the plan’s end: no extra time.')
+    : advice('no extra time', 'The target dose is less than half a minute away: rest then, no extra time.')
+}
+
+function advice(kind: AdviceKind, sentence: string, minutes = 0): Advice {
+  return { kind, minutes, sentence }
 }
 
 /**
@@ -269,11 +283,9 @@ export function planFrom(plan: readonly CurvePoint[], planTimeS: number): CurveP
   if (first === undefined || last === undefined) throw new RangeError('plan must hold at least one point')
   if (planTimeS >= last.timeS) return [{ timeS: 0, tempC: last.tempC }]
   if (planTimeS <= first.timeS) return plan.map(({ timeS, tempC }) => ({ timeS: timeS - first.timeS, tempC }))
-  const next = plan.findIndex((point) => point.timeS > planTimeS)
-  const from = plan[next - 1] ?? first
-  const to = plan[next] ?? last
-  const share = (planTimeS - from.timeS) / (to.timeS - from.timeS)
-  const nowTempC = from.tempC + share * (to.tempC - from.tempC)
-  const rest = plan.slice(next).map(({ timeS, tempC }) => ({ timeS: timeS - planTimeS, tempC }))
-  return [{ timeS: 0, tempC: nowTempC }, ...rest]
+  const rest = plan.filter((point) => point.timeS > planTimeS)
+  return [
+    { timeS: 0, tempC: planTempCAt(plan, planTimeS) ?? last.tempC },
+    ...rest.map(({ timeS, tempC }) => ({ timeS: timeS - planTimeS, tempC })),
+  ]
 }

@@ -82,10 +82,10 @@ describe('a forecast', () => {
   })
 
   test('advice is to hold longer, rest early, or rest now, by where the plan’s line ends', () => {
-    expect(forecastDose({ ...atHold, doseMin: 0.5 }).advice).toEqual({
+    expect(forecastDose({ ...atHold, doseMin: 0.4 }).advice).toEqual({
       kind: 'hold longer',
       minutes: 4,
-      sentence: 'Holding 4 min longer than planned gets there.',
+      sentence: 'On the plan from here, hold 4 min longer.',
     })
     expect(forecastDose({ ...atHold, doseMin: 9 }).advice).toMatchObject({ kind: 'rest early', minutes: 5 })
     expect(forecastDose({ ...atHold, doseMin: 14 }).advice.kind).toBe('rest now')
@@ -164,6 +164,8 @@ describe('laws of the forecast', () => {
           expect(earliest).toBeLessThanOrEqual(expected + 1e-6)
           expect(expected).toBeLessThanOrEqual(latest + 1e-6)
           expect(line.doseAtPlannedEndMin).toBeGreaterThanOrEqual(input.doseMin)
+          expect(line.lowAtPlannedEndMin).toBeLessThanOrEqual(line.doseAtPlannedEndMin)
+          expect(line.highAtPlannedEndMin).toBeGreaterThanOrEqual(line.doseAtPlannedEndMin)
           expect(line.minutesToTarget === 0).toBe(input.doseMin >= input.targetDoseMin)
         }
       }),
@@ -181,15 +183,18 @@ describe('laws of the forecast', () => {
         const isWithin =
           plan.doseAtPlannedEndMin >= low * (1 - 1e-9) && plan.doseAtPlannedEndMin <= high * (1 + 1e-9)
         switch (advice.kind) {
-          case 'rest now':
-            expect(minutes === 0 || (minutesToPlannedEnd === 0 && isWithin)).toBe(true)
+          case 'rest now': {
+            const isAlmost = minutes !== null && minutes < 0.5 && plan.doseAtPlannedEndMin > high
+            expect(minutes === 0 || isAlmost || (minutesToPlannedEnd === 0 && isWithin)).toBe(true)
             break
+          }
           case 'hold longer':
             expect(Math.round((minutes ?? NaN) - minutesToPlannedEnd)).toBe(advice.minutes)
             expect(plan.doseAtPlannedEndMin).toBeLessThan(low)
             break
           case 'rest early':
-            expect(Math.round(minutesToPlannedEnd - (minutes ?? NaN))).toBe(advice.minutes)
+            expect(Math.round((minutes ?? NaN) - minutesToPlannedEnd)).toBe(-advice.minutes)
+            expect(advice.minutes).toBeLessThanOrEqual(minutesToPlannedEnd)
             expect(plan.doseAtPlannedEndMin).toBeGreaterThan(high)
             break
           case 'out of reach':
@@ -201,6 +206,82 @@ describe('laws of the forecast', () => {
         }
       }),
       { seed: 20260307, numRuns: 600 },
+    )
+  })
+
+  test('law: advice never contradicts the other lines, and its words are those of its kind', () => {
+    fc.assert(
+      fc.property(anyForecast, (input) => {
+        const { held, climb, plan, advice } = forecastDose(input)
+        for (const line of [held, climb, plan]) {
+          // Reached is reached whatever is assumed: nobody is told to go on, or that it is out of reach.
+          if (line.minutesToTarget === 0) expect(advice.kind).toBe('rest now')
+        }
+        const says = advice.sentence.toLowerCase()
+        expect(says.includes('rest now')).toBe(advice.kind === 'rest now')
+        expect(says.includes('no extra time')).toBe(advice.kind === 'no extra time')
+        expect(/hold \d+ min longer/.test(says)).toBe(advice.kind === 'hold longer')
+        expect(/rest \d+ min sooner/.test(says)).toBe(advice.kind === 'rest early')
+        if (advice.kind === 'hold longer' || advice.kind === 'rest early') {
+          expect(says).toContain(` ${advice.minutes} min `)
+          expect(advice.minutes).toBeGreaterThan(0)
+        } else expect(advice.minutes).toBe(0)
+      }),
+      { seed: 20260309, numRuns: 400 },
+    )
+  })
+
+  test('law: if the true dose is off by anything inside its interval, it comes to the target inside the minutes given', () => {
+    fc.assert(
+      fc.property(anyForecast, fc.double({ min: -1, max: 1, noNaN: true }), (input, part) => {
+        const truth = 10 ** (part * input.intervalLog10)
+        const { plan } = forecastDose(input)
+        // A true dose that is `truth` times the read one is at the target when the read one is at target ÷ truth.
+        const { plan: real } = forecastDose({ ...input, targetDoseMin: input.targetDoseMin / truth })
+        const minutes = real.minutesToTarget ?? Infinity
+        expect(minutes).toBeGreaterThanOrEqual((plan.earliestMinutes ?? Infinity) - 1e-6)
+        expect(minutes).toBeLessThanOrEqual((plan.latestMinutes ?? Infinity) + 1e-6)
+        const trueEndMin = real.doseAtPlannedEndMin * truth
+        expect(trueEndMin).toBeGreaterThanOrEqual(plan.lowAtPlannedEndMin * (1 - 1e-9))
+        expect(trueEndMin).toBeLessThanOrEqual(plan.highAtPlannedEndMin * (1 + 1e-9))
+      }),
+      { seed: 20260310, numRuns: 300 },
+    )
+  })
+
+  test('law: a firing on its plan reaches the plan’s dose at the plan’s end, and is told no extra time until then', () => {
+    const legs = fc.array(
+      fc.record({
+        durationS: fc.integer({ min: 30, max: 1500 }),
+        tempC: fc.double({ min: 125, max: 225, noNaN: true }),
+      }),
+      { minLength: 1, maxLength: 5 },
+    )
+    fc.assert(
+      fc.property(legs, fc.double({ min: 0, max: 1, noNaN: true }), (stages, share) => {
+        const plan = [{ timeS: 0, tempC: 60 }]
+        for (const leg of stages) {
+          plan.push({ timeS: (plan.at(-1)?.timeS ?? 0) + leg.durationS, tempC: leg.tempC })
+        }
+        const endS = plan.at(-1)?.timeS ?? 0
+        const atS = share * endS
+        const planRemaining = planFrom(plan, atS)
+        const tempC = planRemaining[0]?.tempC ?? NaN
+        const passed = [...plan.filter((point) => point.timeS <= atS), { timeS: atS, tempC }]
+        const forecast = forecastDose({
+          ...atHold,
+          planRemaining,
+          tempC,
+          doseMin: equivalentMinutes(model, passed),
+          targetDoseMin: equivalentMinutes(model, plan),
+        })
+        expect(forecast.minutesToPlannedEnd).toBeCloseTo((endS - atS) / 60, 9)
+        expect(forecast.plan.minutesToTarget).toBeCloseTo((endS - atS) / 60, 3)
+        expect(forecast.plan.doseAtPlannedEndMin / equivalentMinutes(model, plan)).toBeCloseTo(1, 9)
+        expect(['no extra time', 'rest now']).toContain(forecast.advice.kind)
+        if (share < 0.999) expect(forecast.advice.kind).toBe('no extra time')
+      }),
+      { seed: 20260311, numRuns: 300 },
     )
   })
 
