@@ -1,3 +1,4 @@
+import { hostname } from 'node:os'
 import { parseArgs } from 'node:util'
 import { checkModules, printModuleChecks } from './check-modules'
 import { gatewayConfigJsonSchema } from './config'
@@ -87,7 +88,13 @@ async function enrol(values: Arguments['values'], { print }: CommandSurroundings
   if (code === undefined || config === undefined) {
     throw new UsageError('Enrolling needs --code CODE and --config CONFIG.')
   }
-  const { gatewayName, tokenFile } = await enrolGateway({ configPath: config, code, server, name })
+  const machineName = name ?? hostname().slice(0, 80)
+  const { gatewayName, tokenFile } = await enrolGateway({
+    configPath: config,
+    code,
+    server,
+    name: machineName,
+  })
   print(`This box is now the gateway "${gatewayName}". Its token is in ${tokenFile}.`)
   return 0
 }

@@ -8,8 +8,8 @@ export const ENROL_PATH = '/api/gateways/enrol'
 
 /** What is asked: the one-time code that an administrator was shown, and a name that helps to know the box. */
 export const enrolRequestSchema = z.strictObject({
-  code: z.string().trim().min(1).max(100),
-  name: z.string().trim().min(1).max(100).optional(),
+  code: z.string().trim().min(1).max(40),
+  name: z.string().trim().min(1).max(80).optional(),
 })
 
 export const enrolAnswerSchema = z.object({

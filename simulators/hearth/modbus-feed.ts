@@ -51,7 +51,7 @@ const behaviours: readonly [ModuleFaultKind, ModuleBehaviour][] = [
 
 /**
  * The register map of a simulated hearth's module: the terminals' temperature in 0.01 °C at input register 0, then
- * each probe's voltage in 0.1 µV as 32-bit numbers, low word first, from register 10 on.
+ * each probe's voltage in 0.1 µV as 32-bit numbers, low word first; one request reads them all.
  */
 export function hearthModuleConfig(
   hearth: number,
@@ -67,7 +67,7 @@ export function hearthModuleConfig(
       label: probe.role,
       kind: 'microvolts',
       table: 'input',
-      address: 10 + 2 * i,
+      address: 1 + 2 * i,
       type: 'int32',
       wordOrder: 'mixed',
       scale: 0.1,
