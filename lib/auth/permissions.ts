@@ -11,6 +11,8 @@ const permissions = {
   'site:write': ['administrator'],
   'checks:read': ['administrator', 'master cooper', 'chemist', 'toaster'],
   'checks:write': ['administrator', 'master cooper', 'toaster'],
+  /** Makes measured repeat placements the site's own figure: a part of the settings that the master cooper judges by. */
+  'repeatability:adopt': ['administrator', 'master cooper'],
   'recipes:read': ['administrator', 'master cooper', 'chemist', 'toaster'],
   'recipes:read unapproved': ['administrator', 'master cooper', 'chemist'],
   'recipes:write': ['master cooper', 'chemist'],

@@ -7,6 +7,7 @@ import { operations as http } from '@/lib/http/operations'
 import { operations as ingest } from '@/lib/ingest/operations'
 import { operations as markers } from '@/lib/markers/operations'
 import { operations as probes } from '@/lib/probes/operations'
+import { operations as studies } from '@/lib/probes/study-operations'
 import { operations as recipes } from '@/lib/recipes/operations'
 import { operations as site } from '@/lib/site/operations'
 import type { AnyOperation } from '@/lib/http/operation'
@@ -25,6 +26,7 @@ const areas: readonly Readonly<Record<string, AnyOperation>>[] = [
   ingest,
   markers,
   probes,
+  studies,
   recipes,
   site,
 ]
