@@ -12,6 +12,12 @@ import { chiSquareQuantile, mean } from './statistics'
 /** d2 for the moving range of two: mean range of two normal values in units of their standard deviation (ASTM E2587). */
 const D2_OF_TWO = 1.128
 
+/** D4 for ranges of two: the upper limit of a range chart in units of the mean range, 1 + 3·d3/d2 (ASTM E2587). */
+const D4_OF_TWO = 3.267
+
+/** Limits made from fewer values than this move a good deal with each new one: a chart calls them provisional. */
+export const PROVISIONAL_LIMITS_BELOW = 20
+
 /**
  * Individuals and moving range chart: centre = mean, limits = mean ± 3·(mean moving range)/1.128, the moving range
  * being |xᵢ − xᵢ₋₁|. NIST/SEMATECH e-Handbook 6.3.2.2. All in the values' own unit; give doses as log10.
@@ -26,16 +32,28 @@ export function individualsMovingRange(values: readonly number[]): {
   lcl: number
 } {
   requireNumbers('values', values, 2)
-  const ranges: number[] = []
-  let last: number | undefined
-  for (const value of values) {
-    if (last !== undefined) ranges.push(Math.abs(value - last))
-    last = value
-  }
   const centre = mean(values)
-  const meanMovingRange = mean(ranges)
+  const meanMovingRange = mean(rangesOf(values))
   const reach = (3 * meanMovingRange) / D2_OF_TWO
   return { mean: centre, meanMovingRange, ucl: centre + reach, lcl: centre - reach }
+}
+
+/** |xᵢ − xᵢ₋₁|, one fewer than the values. */
+function rangesOf(values: readonly number[]): number[] {
+  return values.slice(1).map((value, i) => Math.abs(value - (values[i] ?? value)))
+}
+
+/**
+ * The moving range chart beside the individuals: the ranges |xᵢ − xᵢ₋₁| (the first belongs to the second value), their
+ * mean as centre and 3.267·mean as upper limit; the lower one is 0. NIST/SEMATECH e-Handbook 6.3.2.2.
+ *
+ * @throws RangeError for fewer than two values or one that is not finite
+ */
+export function movingRanges(values: readonly number[]): { ranges: number[]; mean: number; ucl: number } {
+  requireNumbers('values', values, 2)
+  const ranges = rangesOf(values)
+  const centre = mean(ranges)
+  return { ranges, mean: centre, ucl: D4_OF_TWO * centre }
 }
 
 /**
@@ -118,6 +136,9 @@ export const NELSON_RULE_WORDS: Readonly<Record<NelsonRule, string>> = {
   7: 'fifteen points in a row within 1 sigma of the centre',
   8: 'eight points in a row beyond 1 sigma, on either side',
 }
+
+/** Rules that a chart watches unless the site says otherwise; each further one brings false alarms of its own. */
+export const NELSON_RULES_ON: readonly NelsonRule[] = [1, 2]
 
 function indicesWhere(
   count: number,

@@ -7,6 +7,7 @@ import {
   ewma,
   ewmaLimits,
   individualsMovingRange,
+  movingRanges,
   nelsonRules,
   processCapability,
   tabularCusum,
@@ -52,12 +53,35 @@ describe('individuals chart', () => {
     expectClose(check, chart.ucl, expected.UCL)
     expectClose(check, chart.lcl, expected.LCL)
   })
-  it('d2 of two is the published one: ASTM E2587, Montgomery appendix VI (spc.constants.a)', () => {
-    const { d2 } = z
-      .object({ '2': z.object({ d2: z.number() }) })
+  it('d2 and D4 of two are the published ones: ASTM E2587, Montgomery appendix VI (spc.constants.a)', () => {
+    const { d2, d3, D4 } = z
+      .object({ '2': z.object({ d2: z.number(), d3: z.number(), D4: z.number() }) })
       .parse(publishedCheck('spc.constants.a').expected)['2']
     const { mean, ucl } = individualsMovingRange([0, 1])
     expectWithin(3 / (ucl - mean), d2, 1e-12)
+    expectWithin(movingRanges([0, 1]).ucl, D4, 1e-12)
+    // From d2 and d3 of three decimals.
+    expectWithin(1 + (3 * d3) / d2, D4, 0.002)
+  })
+  it('law: the ranges are one fewer than the values, their mean is the chart’s, and their limit is never below it', () => {
+    fc.assert(
+      fc.property(shiftedAndScaled, ({ x, moved, factor, size }) => {
+        const found = movingRanges(x)
+        expect(found.ranges).toHaveLength(x.length - 1)
+        expect(Math.min(...found.ranges)).toBeGreaterThanOrEqual(0)
+        expect(found.mean).toBe(individualsMovingRange(x).meanMovingRange)
+        expect(found.ucl).toBeGreaterThanOrEqual(found.mean)
+        expectWithin(movingRanges(moved).ucl, factor * found.ucl, 1e-8 * size)
+        // A chart that only rises has ranges that add up to its whole rise.
+        const rising = movingRanges([...x].sort((a, b) => a - b))
+        expectWithin(
+          rising.ranges.reduce((sum, range) => sum + range, 0),
+          Math.max(...x) - Math.min(...x),
+          1e-9 * size,
+        )
+      }),
+      propertyRun,
+    )
   })
   it('law: a shift moves the centre and the limits, a change of unit takes them all along', () => {
     fc.assert(
@@ -90,6 +114,7 @@ describe('individuals chart', () => {
   })
   it('names values that are too few or not numbers', () => {
     expectRangeError('values', () => individualsMovingRange([1]))
+    expectRangeError('values', () => movingRanges([1]))
     for (const value of notNumbers) expectRangeError('values[1]', () => individualsMovingRange([1, value]))
   })
 })

@@ -26,7 +26,7 @@ export const notImplemented: readonly NotImplemented[] = [
     computation: 'spc.constants',
     ids: ['spc.constants.a'],
     because:
-      'One firing is one value: charts are of individuals, which need d2(2) alone; control-chart.test.ts holds it.',
+      'One firing is one value: charts are of individuals, which need d2 and D4 of two; control-chart.test.ts holds both.',
   },
   {
     computation: 'spc.xbar_r_limits',
