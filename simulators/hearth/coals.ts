@@ -6,6 +6,9 @@
  * burning gives the coals' temperature and that of the gas in the barrel, each with its own lag.
  */
 
+import { LATENT_HEAT_J_PER_KG } from '@/lib/science/constants'
+import type { FaceFire } from '@/lib/science/stave'
+
 export type Coals = {
   /** Fed, not yet glowing, kg. */
   freshKg: number
@@ -33,7 +36,6 @@ const COALS_LAG_S = 40
 const GAS_LAG_S = 60
 const BRIGHTENING_FADE_S = 45
 const ASH_TIME_S = 900
-const LATENT_HEAT_J_PER_KG = 2.26e6
 /** Radiation from coals to the wood at the lead probe's height: view factor times emissivities. */
 const RADIATIVE_SHARE = 0.055
 const CONVECTION_W_PER_M2K = 14
@@ -125,9 +127,6 @@ function approach(value: number, target: number, dtS: number, lagS: number): num
   return target + (value - target) * Math.exp(-dtS / lagS)
 }
 
-/** What acts at the face of a stave. */
-export type FaceFire = { gasTempC: number; hWPerM2K: number; radiantTempC: number; emissivity: number }
-
 /**
  * Fire at the face. `exposure` is this side's share of the radiation, about 1. Water on the face takes its heat as
  * if from the gas, so that the sum of fluxes is right.
@@ -156,11 +155,4 @@ export function dryFace(coals: Coals, faceTempC: number, dtS: number) {
     0,
     coals.filmKgPerM2 - (evaporationFlux(coals, faceTempC) * dtS) / LATENT_HEAT_J_PER_KG,
   )
-}
-
-/** Net flux of a fire into a face at `faceTempC`, W/m². */
-export function netFluxWPerM2(fire: FaceFire, faceTempC: number): number {
-  const stefanBoltzmann = 5.670374419e-8
-  const radiation = (fire.radiantTempC + 273.15) ** 4 - (faceTempC + 273.15) ** 4
-  return fire.hWPerM2K * (fire.gasTempC - faceTempC) + fire.emissivity * stefanBoltzmann * radiation
 }

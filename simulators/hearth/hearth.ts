@@ -1,5 +1,7 @@
-import { createStave, stepStave, type StaveState } from '@/lib/science/stave'
 import { createDoseAccumulator, type DoseAccumulator } from '@/lib/science/heat-dose'
+import { findRoot } from '@/lib/science/root'
+import { createStave, fireFluxWPerM2, stepStave, type StaveState } from '@/lib/science/stave'
+import { valueAt } from '@/lib/science/straight-line'
 import type { ThermocoupleType } from '@/lib/science/thermocouple'
 import type { Emf, ReadingFlag } from '@/lib/gateway/protocol'
 import {
@@ -8,7 +10,6 @@ import {
   feedCoals,
   fireAtFace,
   mistFace,
-  netFluxWPerM2,
   settleCoals,
   stepCoals,
   stirCoals,
@@ -145,6 +146,8 @@ type HearthState = {
 }
 
 const LONGEST_STEP_S = 1
+/** Between which heats of the fire a steady one is sought. */
+const STEADY_HEAT_KW = { low: 0.5, high: 25 }
 const PROBES: readonly HearthProbe[] = ['lead', 'opposite', 'coals']
 const COLD_FACE_H_W_PER_M2K = 11
 const WATER_H_W_PER_M2K = 120
@@ -520,30 +523,27 @@ function doseOfPoints(points: readonly { timeS: number; tempC: number }[], fromS
 
 /** The last minute, a value a second, straight between points. */
 function shownBefore(points: readonly { timeS: number; tempC: number }[], endS: number): number[] {
+  const times = points.map((point) => point.timeS)
+  const temps = points.map((point) => point.tempC)
   const shown: number[] = []
   for (let timeS = endS - 59; timeS <= endS; timeS += 1) {
-    const after = points.find((point) => point.timeS >= timeS)
-    const before = points.findLast((point) => point.timeS <= timeS)
-    if (after === undefined || before === undefined) continue
-    const share = after.timeS > before.timeS ? (timeS - before.timeS) / (after.timeS - before.timeS) : 0
-    shown.push(before.tempC + share * (after.tempC - before.tempC))
+    const tempC = valueAt(times, temps, timeS)
+    if (!Number.isNaN(tempC)) shown.push(tempC)
   }
   return shown
 }
 
-/** Steady coals, found by bisection, whose net flux is what the face takes now. */
+/** Puts the fire at the steady coals whose net flux is what the face takes now, or at the nearest end of what burns. */
 function setFireToFlux(fire: Fire, stave: StaveState, roomTempC: number) {
   const faceTempC = stave.tempC[0] ?? roomTempC
-  const wantedFlux = stave.probeFluxWPerM2
-  let low = 0.5
-  let high = 25
-  for (let i = 0; i < 40; i += 1) {
-    const middle = (low + high) / 2
-    settleCoals(fire.coals, middle, roomTempC)
-    const flux = netFluxWPerM2(fireAtFace(fire.coals, faceTempC, 1, roomTempC), faceTempC)
-    if (flux < wantedFlux) low = middle
-    else high = middle
+  const excessAt = (heatKw: number) => {
+    settleCoals(fire.coals, heatKw, roomTempC)
+    const flux = fireFluxWPerM2(fireAtFace(fire.coals, faceTempC, 1, roomTempC), faceTempC)
+    return flux - stave.probeFluxWPerM2
   }
+  const { low, high } = STEADY_HEAT_KW
+  const heatKw = excessAt(low) >= 0 ? low : excessAt(high) <= 0 ? high : findRoot(excessAt, low, high, 1e-6)
+  settleCoals(fire.coals, heatKw, roomTempC)
 }
 
 /** Ornstein–Uhlenbeck: wanders about `mean` with standard deviation `sd` and memory `memoryS`. */

@@ -1,5 +1,8 @@
 /** What the simulated toaster needs of a recipe version; the server's recipe copy is mapped to it. */
 
+import type { CurvePoint } from '@/lib/science/heat-dose'
+import { planCurve, planTempCAt } from '@/lib/science/plan'
+
 export type CueAction = 'feed' | 'stir' | 'mist' | 'lid on' | 'lid off' | 'turn' | 'turn over'
 
 /** `minute` counts from the start of its stage. An action that is not one of ours is only words, and is skipped. */
@@ -32,19 +35,20 @@ export function planDurationS(recipe: HearthRecipe): number {
   return recipe.stages.reduce((sum, stage) => sum + stage.durationS, 0)
 }
 
+const plannedCurves = new WeakMap<HearthRecipe, CurvePoint[]>()
+
+function plannedCurve(recipe: HearthRecipe): CurvePoint[] {
+  const known = plannedCurves.get(recipe)
+  if (known !== undefined) return known
+  const curve = planCurve(recipe.planStartTempC, recipe.stages)
+  plannedCurves.set(recipe, curve)
+  return curve
+}
+
 /** Planned wood temperature, °C; before the plan its start, after it its end. */
 export function planTempC(recipe: HearthRecipe, timeS: number): number {
-  let startS = 0
-  let startTempC = recipe.planStartTempC
-  for (const stage of recipe.stages) {
-    if (timeS < startS + stage.durationS) {
-      const share = Math.max(0, (timeS - startS) / stage.durationS)
-      return stage.kind === 'hold' ? stage.targetTempC : startTempC + share * (stage.targetTempC - startTempC)
-    }
-    startS += stage.durationS
-    startTempC = stage.targetTempC
-  }
-  return startTempC
+  const insideS = Math.min(Math.max(timeS, 0), planDurationS(recipe))
+  return planTempCAt(plannedCurve(recipe), insideS) ?? recipe.planStartTempC
 }
 
 /** Where a stage begins in the plan, s from toast start. */

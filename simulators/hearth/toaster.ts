@@ -1,4 +1,6 @@
+import { doseFactorFromOffset } from '@/lib/science/dose-ratio'
 import { equivalentMinutes, type CurvePoint, type DoseModel } from '@/lib/science/heat-dose'
+import { defaultSiteRules } from '@/lib/science/site-rules'
 import { burningShare, heatKwOf, MOST_GLOWING_KG, type Coals } from './coals'
 import type { Random } from './random'
 import { planDurationS, planTempC, stageStartS, type CueAction, type HearthRecipe } from './recipe'
@@ -27,7 +29,7 @@ export type ToasterTurn = { acts: ToasterAct[]; isStageOver: boolean; isPhaseOve
 
 export type Toaster = { tend: (view: ToasterView) => ToasterTurn; planDoseMin: number }
 
-export const HEARTH_DOSE_MODEL: DoseModel = { refTempC: 200, zC: 34, baseTempC: 120 }
+export const HEARTH_DOSE_MODEL: DoseModel = defaultSiteRules.dose
 
 /** A toaster's hand, drawn once for each firing. */
 type Hand = {
@@ -218,7 +220,7 @@ function isStageDone(
   const isLast = view.stageIndex === recipe.stages.length - 1
   if (!isLast) return view.stageTimeS >= durationS + lateS
   const leewayS = Math.min(120, 0.12 * durationS) * hand.skill
-  const isDosed = view.doseMin >= planDoseMin * 10 ** (hand.biasC / 34)
+  const isDosed = view.doseMin >= planDoseMin * doseFactorFromOffset(HEARTH_DOSE_MODEL, hand.biasC)
   if (isDosed) return view.stageTimeS >= durationS - leewayS
   return view.stageTimeS >= durationS + leewayS
 }

@@ -1,14 +1,13 @@
 import { spawn } from 'node:child_process'
 import { mkdtempSync, readFileSync, rmSync, statSync, writeFileSync } from 'node:fs'
-import { createServer, type Server } from 'node:http'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import { runCommand } from '@/lib/gateway/command'
 import { gatewayConfigSchema } from '@/lib/gateway/config'
-import { INGEST_PATH, ingestMessageSchema, type IngestMessage } from '@/lib/gateway/protocol'
 import { startSimulatedModule, type SimulatedModule } from '@/simulators/modbus/simulated-module'
+import { startIngestServer } from '@/tests/support/ingest-server'
 import { until } from '@/tests/support/until'
 
 /* The program as it is started on a box: a process of its own, a real module on a socket, an HTTP server that answers. */
@@ -28,54 +27,15 @@ afterEach(async () => {
   rmSync(folder, { recursive: true })
 })
 
-/** A server that keeps what it is told; `status` other than 200 is answered as a problem. */
+/** A server that knows one code. */
 async function startServer() {
-  const state = {
-    status: 200,
-    messages: [] as IngestMessage[],
-    tokens: [] as string[],
-    kept: new Map<string, Set<number>>(),
-  }
-  const server: Server = createServer((request, response) => {
-    const parts: Buffer[] = []
-    request.on('data', (part: Buffer) => parts.push(part))
-    request.on('end', () => {
-      const reply = (status: number, body: unknown) =>
-        response.writeHead(status, { 'content-type': 'application/json' }).end(JSON.stringify(body))
-      const body: unknown = parts.length > 0 ? JSON.parse(Buffer.concat(parts).toString()) : null
-      if (request.url === '/api/gateways/enrol') {
-        const isRight = JSON.stringify(body) === JSON.stringify({ code: 'EMBER-4711', name: 'box' })
-        if (isRight) reply(201, { token: TOKEN, gatewayId: GATEWAY_ID, gatewayName: 'Box by the window' })
-        else
-          reply(422, {
-            title: 'Not valid',
-            status: 422,
-            detail: 'This code is not known, was used, or is too old.',
-          })
-        return
-      }
-      if (request.url !== INGEST_PATH) return reply(404, { title: 'Not found', status: 404 })
-      state.tokens.push(request.headers.authorization ?? '')
-      if (state.status !== 200) return reply(state.status, { title: 'Refused', status: state.status })
-      const message = ingestMessageSchema.parse(body)
-      state.messages.push(message)
-      const kept = state.kept.get(message.bootId) ?? new Set()
-      state.kept.set(message.bootId, kept)
-      for (const { seq } of message.readings) kept.add(seq)
-      for (const { from, to } of message.lost ?? []) for (let seq = from; seq <= to; seq += 1) kept.add(seq)
-      let ackedSeq = 0
-      while (kept.has(ackedSeq + 1)) ackedSeq += 1
-      reply(200, { ackedSeq, refused: [] })
-    })
-  })
-  await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve))
-  endings.push(() => {
-    server.closeAllConnections()
-    return new Promise((resolve) => server.close(resolve))
-  })
-  const address = server.address()
-  if (address === null || typeof address === 'string') throw new Error('the server has no port')
-  return { ...state, state, url: `http://127.0.0.1:${address.port}` }
+  const server = await startIngestServer((body) =>
+    JSON.stringify(body) === JSON.stringify({ code: 'EMBER-4711', name: 'box' })
+      ? { status: 201, body: { token: TOKEN, gatewayId: GATEWAY_ID, gatewayName: 'Box by the window' } }
+      : { status: 422, body: { title: 'Not valid', status: 422, detail: 'This code is not good any more.' } },
+  )
+  endings.push(server.close)
+  return server
 }
 
 function channelsOf() {
@@ -166,7 +126,7 @@ describe('the gateway program', () => {
     expect(Math.abs(Date.now() - (times.at(-1) ?? 0))).toBeLessThan(5_000)
     expect(server.messages[0]?.status).toMatchObject({ programVersion: '0.1.0', uptimeS: expect.any(Number) })
     expect(server.messages.filter(({ status }) => status !== undefined).length).toBeLessThan(3)
-    expect(new Set(server.tokens)).toEqual(new Set([`Bearer ${TOKEN}`]))
+    expect(new Set(server.authorizations)).toEqual(new Set([`Bearer ${TOKEN}`]))
     expect(program.text()).not.toContain(TOKEN)
   })
 
@@ -174,7 +134,7 @@ describe('the gateway program', () => {
     const server = await startServer()
     const module = await startModule()
     writeToken()
-    server.state.status = 401
+    server.answerWith(401)
     const path = writeConfig(server.url, module.port)
     const first = startProgram(path)
     await until(() => first.text().includes("refuses this gateway's token"))
@@ -185,18 +145,18 @@ describe('the gateway program', () => {
     await first.ended
     const taken = module.requestCount()
 
-    server.state.status = 200
+    server.answerWith(200)
     const second = startProgram(path)
     await until(() => second.text().includes('of earlier runs wait in the spool'))
     await until(() => server.messages.length > 1)
     second.child.kill('SIGTERM')
     expect(await second.ended).toBe(0)
-    const [boot, next] = [...server.state.kept.values()]
+    const [boot, next] = [...server.kept.values()]
     // At most the reading under way was not on disk yet.
     expect(boot?.size).toBeGreaterThanOrEqual(taken - 1)
     expect([...(boot ?? [])]).toEqual(Array.from({ length: boot?.size ?? 0 }, (_, i) => i + 1))
     expect(next?.size).toBeGreaterThan(0)
-    expect(server.tokens.length).toBeLessThan(12)
+    expect(server.authorizations.length).toBeLessThan(12)
   })
 
   it('a second program does not touch the spool of the first', async () => {
@@ -288,9 +248,7 @@ describe('enrolling', () => {
     writeToken('emb_before')
     const refused = await command('enrol', '--code', 'WRONG', '--config', path)
     expect(refused.status).toBe(1)
-    expect(refused.text).toContain(
-      'did not enrol this gateway: This code is not known, was used, or is too old.',
-    )
+    expect(refused.text).toContain('did not enrol this gateway: This code is not good any more.')
     expect(readFileSync(join(folder, 'token'), 'utf8')).toBe('emb_before\n')
     const nobody = await command('enrol', '--server', 'http://127.0.0.1:9', '--code', 'X', '--config', path)
     expect(nobody.status).toBe(1)

@@ -1,11 +1,11 @@
 import { describe, expect, it } from 'vitest'
+import { fireFluxWPerM2 } from '@/lib/science/stave'
 import { compensatedTempC } from '@/lib/science/thermocouple'
 import {
   createCoals,
   feedCoals,
   fireAtFace,
   mistFace,
-  netFluxWPerM2,
   stepCoals,
   stirCoals,
   type Coals,
@@ -244,7 +244,7 @@ describe('coals', () => {
     for (let i = 0; i < 600; i += 1) stepCoals(coals, 1, 1, 18)
     prepare(coals)
     for (let i = 0; i < seconds; i += 1) stepCoals(coals, 1, 1, 18)
-    const flux = netFluxWPerM2(fireAtFace(coals, 190, 1, 18), 190)
+    const flux = fireFluxWPerM2(fireAtFace(coals, 190, 1, 18), 190)
     return { flux, heatKw: coals.heatKw }
   }
   const nothing = () => {}
