@@ -108,8 +108,11 @@ export function EditBench({ version, shadow, rules, unit, sub }: EditBenchProps)
   )
 
   const saveNow = useCallback(async () => {
-    if ((await save(saved.version.revision)) !== null) toast({ words: 'Saved.' })
-  }, [save, saved, toast])
+    if ((await save(saved.version.revision)) === null) return
+    toast({ words: 'Saved.' })
+    // What the server makes of the version, its predicted markers, is made anew; what is typed stays.
+    router.refresh()
+  }, [router, save, saved, toast])
 
   const send = useCallback(async () => {
     const sent = isUnsaved ? await save(saved.version.revision) : saved.version

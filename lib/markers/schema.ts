@@ -244,3 +244,13 @@ export const versionMarkersSchema = z.object({
   lotAssays: z.array(z.object({ key: z.string(), name: z.string(), unit: unitSchema })),
 })
 export type VersionMarkers = z.infer<typeof versionMarkersSchema>
+
+const place = z.coerce.number().int().min(1).optional()
+
+/** Of a marker's page: which part of it, which response is looked at, and which one an editor begins from. */
+export const markerPageQuery = z.strictObject({
+  view: z.enum(['response', 'formula', 'fit', 'earlier']).default('response'),
+  number: place,
+  from: place,
+})
+export type MarkerPageView = z.infer<typeof markerPageQuery>['view']

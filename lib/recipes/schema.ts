@@ -1,9 +1,10 @@
 import * as z from 'zod'
+import { leadHeights, leadMountings } from '@/lib/recipes/lead-places'
+
+export { leadHeights, leadMountings }
 
 export const pieceKinds = ['barrel', 'head'] as const
 export const versionStates = ['draft', 'in review', 'approved', 'superseded', 'withdrawn'] as const
-export const leadHeights = ['bilge', 'quarter', 'head end', 'head'] as const
-export const leadMountings = ['wedge', 'drilled', 'clamped'] as const
 export const preheatMethods = ['spray', 'immersion', 'steam', 'none'] as const
 export const cueActions = ['stir', 'feed', 'mist', 'lid on', 'lid off', 'turn', 'turn over', 'look'] as const
 export const stageKinds = ['ramp', 'hold'] as const

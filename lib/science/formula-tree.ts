@@ -35,7 +35,7 @@ export type FormulaNode = Placed &
 export type FormulaTree = { ok: true; root: FormulaNode } | { ok: false; fault: FormulaFault }
 
 /** Only the parser and what it is built from: no function that a formula could call is in this instance. */
-const { parse } = create({ parseDependencies })
+const { parse } = create(parseDependencies ?? {})
 
 class Refusal extends Error {
   constructor(readonly fault: FormulaFault) {

@@ -6,35 +6,33 @@ import { VersionSub } from '@/components/recipes/version-sub'
 import { PageHead } from '@/components/ui/page-head'
 import { requirePageActor } from '@/lib/auth/page-actor'
 import { orNotFound } from '@/lib/http/or-not-found'
+import type { SearchParams } from '@/lib/http/page-query'
 import { getBench } from '@/lib/recipes/get-bench'
+import { VersionMarkers } from './version-markers'
 
 export const metadata: Metadata = { title: 'Recipe version' }
 
-export default async function BenchPage({ params }: { params: Promise<{ id: string }> }) {
+type Props = { params: Promise<{ id: string }>; searchParams: SearchParams }
+
+export default async function BenchPage({ params, searchParams }: Props) {
   const actor = await requirePageActor()
   const { id } = await params
   const bench = await orNotFound(getBench(actor, { id }), id)
   const { version, basedOn, basedOnPoints, rules, timeZone, openVersion } = bench
-  const shadow =
-    basedOn === null || basedOnPoints === null
-      ? null
-      : { name: `version ${basedOn.number}`, points: basedOnPoints }
-  const unit = actor.temperatureUnit
+  const shadow = basedOn && basedOnPoints && { name: `version ${basedOn.number}`, points: basedOnPoints }
+  const shown = { version, shadow, rules, unit: actor.temperatureUnit }
   const sub = <VersionSub version={version} basedOn={basedOn} zone={timeZone} />
-  if (version.state === 'draft' && bench.canWrite) {
-    return <EditBench key={id} version={version} shadow={shadow} rules={rules} unit={unit} sub={sub} />
-  }
   const { isAuthor, canWrite, canApprove } = bench
   const rights = { personName: actor.name, isAuthor, canWrite, canApprove, openVersion }
+  const isDraft = version.state === 'draft' && canWrite
+  const { lot } = await searchParams
+  const title = `${version.recipeName}, version ${version.number}`
+  const actions = <VersionActions version={version} rights={rights} />
   return (
     <>
-      <PageHead
-        title={`${version.recipeName}, version ${version.number}`}
-        aside={version.state}
-        sub={sub}
-        actions={<VersionActions version={version} rights={rights} />}
-      />
-      <ReadBench version={version} shadow={shadow} rules={rules} unit={unit} zone={timeZone} />
+      {isDraft ? null : <PageHead title={title} aside={version.state} sub={sub} actions={actions} />}
+      {isDraft ? <EditBench key={id} {...shown} sub={sub} /> : <ReadBench {...shown} zone={timeZone} />}
+      <VersionMarkers actor={actor} id={id} lot={lot} isDraft={isDraft} />
     </>
   )
 }
