@@ -149,7 +149,7 @@ const probesUp = `
   insert into probe_places (probe_id, gateway_id, channel, hearth_id, usual_role, height, side, depth_mm, mounting,
       from_at, until_at)
     select id, gateway_id, channel, hearth_id, usual_role, height, side, depth_mm, mounting, created_at,
-           greatest(retired_at, created_at) from probes;
+           case when retired_at is not null then greatest(retired_at, created_at) end from probes;
 
   -- Runs with the owner's rights: the application role may read the history and never write it.
   create function keep_probe_place() returns trigger
@@ -179,7 +179,7 @@ const probesUp = `
     insert into probe_places (probe_id, gateway_id, channel, hearth_id, usual_role, height, side, depth_mm, mounting,
         from_at, until_at, changed_by)
       values (new.id, new.gateway_id, new.channel, new.hearth_id, new.usual_role, new.height, new.side, new.depth_mm,
-        new.mounting, at, greatest(new.retired_at, at), new.changed_by);
+        new.mounting, at, case when new.retired_at is not null then greatest(new.retired_at, at) end, new.changed_by);
     return new;
   end $$;
   revoke all on function keep_probe_place() from public;
