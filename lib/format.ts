@@ -1,5 +1,11 @@
 import { TZDate } from '@date-fns/tz'
 import { format } from 'date-fns'
+import {
+  celsiusDifferenceFromF,
+  celsiusFromF,
+  fahrenheitDifferenceFromC,
+  fahrenheitFromC,
+} from '@/lib/science/temperature'
 
 /**
  * How quantities are written for a person. Pure; temperatures come in °C, durations in seconds, instants
@@ -11,24 +17,24 @@ export type TemperatureUnit = 'C' | 'F'
 const NO_BREAK_SPACE = '\u00a0'
 const MINUS = '\u2212'
 
-/** °C to the person's unit; F = 1.8 C + 32. */
+/** °C to the person's unit. */
 export function toShownTemp(tempC: number, unit: TemperatureUnit): number {
-  return unit === 'F' ? tempC * 1.8 + 32 : tempC
+  return unit === 'F' ? fahrenheitFromC(tempC) : tempC
 }
 
 /** The person's unit to °C, the inverse of {@link toShownTemp}. */
 export function fromShownTemp(shown: number, unit: TemperatureUnit): number {
-  return unit === 'F' ? (shown - 32) / 1.8 : shown
+  return unit === 'F' ? celsiusFromF(shown) : shown
 }
 
 /** A difference (band, spread, deviation, °C/min) to the person's unit; the 32 does not belong to it. */
 export function toShownDifference(differenceC: number, unit: TemperatureUnit): number {
-  return unit === 'F' ? differenceC * 1.8 : differenceC
+  return unit === 'F' ? fahrenheitDifferenceFromC(differenceC) : differenceC
 }
 
 /** The inverse of {@link toShownDifference}. */
 export function fromShownDifference(shown: number, unit: TemperatureUnit): number {
-  return unit === 'F' ? shown / 1.8 : shown
+  return unit === 'F' ? celsiusDifferenceFromF(shown) : shown
 }
 
 /** "°C" or "°F". */

@@ -202,25 +202,6 @@ export function widenTempRange(low: number, high: number): { lowC: number; highC
   }
 }
 
-/** Value of a line at a time, straight between neighbours; NaN outside it and beside a gap. */
-export function valueAt(times: ArrayLike<number>, values: ArrayLike<number>, timeS: number): number {
-  const last = times.length - 1
-  if (last < 0 || timeS < (times[0] ?? NaN) || timeS > (times[last] ?? NaN)) return NaN
-  let low = 0
-  let high = last
-  while (high - low > 1) {
-    const middle = (low + high) >> 1
-    if ((times[middle] ?? NaN) <= timeS) low = middle
-    else high = middle
-  }
-  const fromS = times[low] ?? NaN
-  const toS = times[high] ?? NaN
-  const from = values[low] ?? NaN
-  const to = values[high] ?? NaN
-  if (timeS === fromS || toS === fromS) return from
-  return timeS === toS ? to : from + ((to - from) * (timeS - fromS)) / (toS - fromS)
-}
-
 /** The last reading of a line that is not a gap, or null. */
 export function lastReading(line: {
   times: Float64Array

@@ -1,6 +1,7 @@
 import { formatClock, formatDoseFigure, formatNumber, formatTemp, formatTempBare } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
-import { lastReading, valueAt } from './pair-model'
+import { valueAt } from '@/lib/science/straight-line'
+import { lastReading } from './pair-model'
 import type { PairModel } from './pair-model'
 
 export type GutterWords = { words: string; isStrong: boolean }

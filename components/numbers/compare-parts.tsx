@@ -9,6 +9,7 @@ import {
 } from '@/lib/science/control-chart'
 import { cusumAverageRunLength } from '@/lib/science/cusum-run-length'
 import { curveDeviation, dynamicTimeWarping } from '@/lib/science/curve'
+import { ratioFromLog10 } from '@/lib/science/dose-ratio'
 import { logDoseSummary } from '@/lib/science/log-dose-summary'
 import { permutationTest } from '@/lib/science/permutation'
 import { oneWayAnova } from '@/lib/science/statistics'
@@ -71,11 +72,11 @@ EWMA z = L x + (1 - L) z before, L 0.2 to 0.3
 CUSUM high = max(0, high + x - target - k), k ½ sigma, signal at h 4 to 5 sigma
 Cp = (upper - lower) / 6 sigma, Cpk = nearer limit from the mean / 3 sigma`}</Formula>
       <Worked>
-        Nine invented barrels of {formatDoseFigure(10 ** chart.mean)} min: limits{' '}
-        {formatDoseFigure(10 ** chart.lcl)} to {formatDoseFigure(10 ** chart.ucl)} min. A CUSUM with k ½ and h
-        5 gives a false alarm once in {formatNumber(runLength)} firings. Forty firings 0.01 off centre with sd
-        0.03 inside ±0.12: Cpk {formatNumber(capability.cpk.value, 2)} ({formatNumber(capability.cpk.low, 2)}{' '}
-        to {formatNumber(capability.cpk.high, 2)}).
+        Nine invented barrels of {formatDoseFigure(ratioFromLog10(chart.mean))} min: limits{' '}
+        {formatDoseFigure(ratioFromLog10(chart.lcl))} to {formatDoseFigure(ratioFromLog10(chart.ucl))} min. A
+        CUSUM with k ½ and h 5 gives a false alarm once in {formatNumber(runLength)} firings. Forty firings
+        0.01 off centre with sd 0.03 inside ±0.12: Cpk {formatNumber(capability.cpk.value, 2)} (
+        {formatNumber(capability.cpk.low, 2)} to {formatNumber(capability.cpk.high, 2)}).
       </Worked>
       <Constants
         of="rules of the charts"

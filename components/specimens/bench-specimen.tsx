@@ -4,6 +4,7 @@ import { useMemo, useState } from 'react'
 import { Pair } from '@/components/chart/pair'
 import type { DraggedPoint, PairProps } from '@/components/chart/pair-types'
 import { Button } from '@/components/ui/button'
+import { toleranceBoundsMin } from '@/lib/science/dose-ratio'
 import { createDoseAccumulator } from '@/lib/science/heat-dose'
 import type { CurvePoint } from '@/lib/science/heat-dose'
 import { planTempCAt } from '@/lib/science/plan'
@@ -86,7 +87,7 @@ function draw(points: readonly CurvePoint[]): PairProps {
       timesS: dense.map((point) => point.timeS),
       equivalentMin: dense.map((point) => accumulator.add(point.timeS, point.tempC)),
       others: [samplePlanDose()],
-      target: { lowMin: 13.8 / 10 ** 0.12, targetMin: 13.8, highMin: 13.8 * 10 ** 0.12 },
+      target: { targetMin: 13.8, ...toleranceBoundsMin(13.8, 0.12) },
     },
     wood: staveHistory({
       thicknessMm: 27,

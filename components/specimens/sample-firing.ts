@@ -11,6 +11,7 @@ import { createDoseAccumulator } from '@/lib/science/heat-dose'
 import type { CurvePoint, DoseModel } from '@/lib/science/heat-dose'
 import { planCurve, planTempCAt } from '@/lib/science/plan'
 import { staveHistory } from '@/lib/science/stave'
+import { straightBetween } from '@/lib/science/straight-line'
 
 /** An invented firing, made from fixed random numbers, for the specimens page alone. */
 
@@ -87,7 +88,7 @@ export function joinGaps(series: PairSeries): PairSeries {
     while (to < tempC.length && tempC[to] === null) to += 1
     const fromC = tempC[from] ?? 0
     const toC = tempC[to] ?? fromC
-    for (let k = i; k < to; k += 1) tempC[k] = fromC + ((toC - fromC) * (k - from)) / (to - from)
+    for (let k = i; k < to; k += 1) tempC[k] = straightBetween(from, fromC, to, toC, k)
     i = to
   }
   return { ...series, tempC, isInterpolated }

@@ -1,4 +1,5 @@
 import { formatPercent } from '@/lib/format'
+import { ratioFromLog10 } from '@/lib/science/dose-ratio'
 
 export type StaveGaugeProps = {
   /** Dose now as a fraction of the target (1 is on target); null when it is not known. */
@@ -28,7 +29,7 @@ export function StaveGauge({
   width = 146,
   height = 48,
 }: StaveGaugeProps) {
-  const high = 10 ** toleranceLog10
+  const high = ratioFromLog10(toleranceLog10)
   const full = Math.max(1.45, high * 1.08)
   const toX = (part: number) => Math.min(Math.max(part / full, 0), 1) * width
   const clipId = `stave-${width}-${height}`

@@ -3,6 +3,7 @@ import { downsampleKeepingExtremes } from '@/lib/science/curve'
 import type { FilledSeries, Gap } from '@/lib/science/gaps'
 import type { DoseModel } from '@/lib/science/heat-dose'
 import { createDoseAccumulator } from '@/lib/science/heat-dose'
+import { straightBetween } from '@/lib/science/straight-line'
 
 const toHundredth = (value: number) => Math.round(value * 100) / 100
 
@@ -55,7 +56,7 @@ function joined(curve: { times: number[]; values: number[] }, at: number): numbe
   }
   const fromS = curve.times[before] ?? 0
   const toS = curve.times[after] ?? 0
-  return toHundredth(low + ((high - low) * ((curve.times[at] ?? 0) - fromS)) / (toS - fromS))
+  return toHundredth(straightBetween(fromS, low, toS, high, curve.times[at] ?? 0))
 }
 
 /**

@@ -3,7 +3,6 @@ import type { AlarmMove, AlarmStanding, PresentAlarm } from '@/lib/alarms/firing
 import { createFiringAlarms } from '@/lib/alarms/firing-alarms'
 import { isSounding } from '@/lib/alarms/alarm-states'
 import type { ProbeAssignment } from '@/lib/ingest/firing-probes'
-import { recordSpacingS } from '@/lib/ingest/record-spacing'
 import type { FiringJoined, FiringState } from '@/lib/live/events'
 import { alarmConditions } from '@/lib/live/alarm-conditions'
 import type { CheckedCurve } from '@/lib/live/checked-curve'
@@ -22,8 +21,10 @@ import { createRunningDose } from '@/lib/live/running-dose'
 import { nextAction, stageNow } from '@/lib/live/stage-now'
 import { planDoseAt } from '@/lib/recipes/plan-of'
 import { climbRateCPerMin } from '@/lib/science/curve'
+import { percentAboveFromLog10 } from '@/lib/science/dose-ratio'
 import { fillGaps, gapExtremes } from '@/lib/science/gaps'
 import { planTempCAt } from '@/lib/science/plan'
+import { recordSpacingS } from '@/lib/science/record-spacing'
 import { climbsCPerMin } from '@/lib/science/score-limits'
 
 /** What makes viewers be told at once, and not only at the next second. */
@@ -173,7 +174,7 @@ export function createLiveFiring(firstFacts: FiringFacts, gateways?: GatewayWatc
           targetMinutes: plan.targetDoseMin,
           planMinutesNow:
             toastS === null || toastS < 0 ? 0 : planDoseAt(plan.points, facts.rules.dose, toastS),
-          goodToPercent: 100 * (10 ** gaps.log10Half - 1),
+          goodToPercent: percentAboveFromLog10(gaps.log10Half),
           isIncomplete: gaps.isIncomplete,
         },
         forecast: liveForecast({

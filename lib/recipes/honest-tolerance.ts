@@ -1,3 +1,4 @@
+import { log10FromOffset } from '@/lib/science/dose-ratio'
 import type { SiteRules } from '@/lib/science/site-rules'
 
 /**
@@ -7,7 +8,7 @@ import type { SiteRules } from '@/lib/science/site-rules'
  */
 export function sameMountHalfLog10(rules: Pick<SiteRules, 'errors' | 'dose'>): number {
   const { sameMountLog10, isSameMountAssumed, driftC } = rules.errors
-  return isSameMountAssumed ? sameMountLog10 : Math.hypot(sameMountLog10, driftC / rules.dose.zC)
+  return isSameMountAssumed ? sameMountLog10 : Math.hypot(sameMountLog10, log10FromOffset(rules.dose, driftC))
 }
 
 /** The smallest tolerance that the site can honestly ask: twice its same-mount interval, rounded up to 0.001. */

@@ -1,4 +1,5 @@
 import type { RecipeContent } from '@/lib/recipes/schema'
+import { toleranceBoundsMin } from '@/lib/science/dose-ratio'
 import type { CurvePoint, DoseModel } from '@/lib/science/heat-dose'
 import { arrheniusEquivalentMinutes, createDoseAccumulator, equivalentMinutes } from '@/lib/science/heat-dose'
 import { planCurve, planTempCAt } from '@/lib/science/plan'
@@ -65,7 +66,7 @@ export function planOf(content: PlannedContent, model: DoseModel): Plan {
   const stages = plannedStages(content, points, model)
   const doseMin = equivalentMinutes(model, points)
   const targetDoseMin = content.doseTargetMinutes ?? doseMin
-  const tolerance = 10 ** content.doseToleranceLog10
+  const target = toleranceBoundsMin(targetDoseMin, content.doseToleranceLog10)
   return {
     points,
     stages,
@@ -73,8 +74,8 @@ export function planOf(content: PlannedContent, model: DoseModel): Plan {
     totalS: points.at(-1)?.timeS ?? 0,
     doseMin,
     targetDoseMin,
-    targetLowMin: targetDoseMin / tolerance,
-    targetHighMin: targetDoseMin * tolerance,
+    targetLowMin: target.lowMin,
+    targetHighMin: target.highMin,
   }
 }
 

@@ -45,15 +45,15 @@ export function percentOfDosePerC(model: DoseModel): number {
 }
 
 /**
- * The doses between which a tolerance holds, minutes: target·10^−t and target·10^t.
+ * The doses between which a tolerance holds, minutes: target·10^−t and target·10^t; both 0 about no dose at all.
  *
- * @throws RangeError for a target not above 0 or a tolerance below 0
+ * @throws RangeError for a target or a tolerance below 0
  */
 export function toleranceBoundsMin(
   targetDoseMin: number,
   toleranceLog10: number,
 ): { lowMin: number; highMin: number } {
-  requirePositive('targetDoseMin', targetDoseMin)
+  requireNotNegative('targetDoseMin', targetDoseMin)
   requireNotNegative('toleranceLog10', toleranceLog10)
   return {
     lowMin: targetDoseMin * ratioFromLog10(-toleranceLog10),

@@ -2,6 +2,7 @@ import { requireEqualLength, requireFinite, requirePositive } from './domain'
 import type { DoseModel } from './heat-dose'
 import { createDoseAccumulator } from './heat-dose'
 import type { SiteRules } from './site-rules'
+import { straightBetween } from './straight-line'
 
 /** Readings of one probe. `tempC` NaN is no reading. Both as long; `timeS` never falls, s from toast start. */
 export type ReadingSeries = {
@@ -158,7 +159,7 @@ function edgeTempC(
   if (outerS === undefined || outerC === undefined || Math.abs(innerS - outerS) > gapS) {
     return { tempC: innerC, isHeld: true }
   }
-  return { tempC: outerC + ((innerC - outerC) * (edgeS - outerS)) / (innerS - outerS), isHeld: false }
+  return { tempC: straightBetween(outerS, outerC, innerS, innerC, edgeS), isHeld: false }
 }
 
 function joinPoints(
@@ -275,19 +276,4 @@ function addGap(
   sum.joinedMin += joined.minutes
   sum.lowMin += low.minutes
   sum.highMin += high.minutes
-}
-
-/**
- * Nominal spacing of a record that does not state it: the median time between neighbouring readings, s.
- *
- * @throws RangeError for fewer than two times, or when half of them are equal
- */
-export function medianSpacingS(timeS: ArrayLike<number>): number {
-  if (timeS.length < 2) throw new RangeError('timeS must hold at least two times')
-  const spacings = Array.from(
-    { length: timeS.length - 1 },
-    (_, i) => (timeS[i + 1] ?? NaN) - (timeS[i] ?? NaN),
-  )
-  const sorted = Float64Array.from(spacings).sort()
-  return requirePositive('timeS spacing', sorted[Math.floor((sorted.length - 1) / 2)] ?? NaN)
 }

@@ -2,6 +2,7 @@ import { requireFinite, requireNotNegative, requirePositive } from './domain'
 import type { CurvePoint, DoseModel } from './heat-dose'
 import { equivalentMinutes } from './heat-dose'
 import { solveWithin } from './solve-within'
+import { straightBetween } from './straight-line'
 
 /**
  * One leg of the fire. A `ramp` is a straight line from the temperature before it to `targetTempC` over `durationS`;
@@ -79,8 +80,7 @@ export function planTempCAt(points: readonly CurvePoint[], timeS: number): numbe
   const before = points[low] ?? last
   const after = points[low + 1]
   if (after === undefined || before.timeS === timeS) return before.tempC
-  const share = (timeS - before.timeS) / (after.timeS - before.timeS)
-  return before.tempC + share * (after.tempC - before.tempC)
+  return straightBetween(before.timeS, before.tempC, after.timeS, after.tempC, timeS)
 }
 
 /**

@@ -1,4 +1,5 @@
 import type { ReadingSeries } from './gaps'
+import { straightBetween } from './straight-line'
 
 /** A limit that was exceeded for too long; °C or °C/min. */
 export type Exceedance = { atS: number; heldS: number; worst: number }
@@ -24,7 +25,7 @@ export function findHeldAbove(
     const temp = series.tempC[i] ?? NaN
     if (!(time >= window.fromS && time <= window.toS) || !Number.isFinite(temp)) continue
     const isJoined = time - lastS <= breakS
-    const crossingS = isJoined ? lastS + ((time - lastS) * (limit - lastC)) / (temp - lastC) : time
+    const crossingS = isJoined ? straightBetween(lastC, lastS, temp, time, limit) : time
     if (temp > limit && !(isAbove && isJoined))
       Object.assign(present, { atS: crossingS, heldS: 0, worst: temp })
     else if (temp > limit)
@@ -146,5 +147,5 @@ function otherTempC(
   const beforeS = other.timeS[next - 1]
   const beforeC = other.tempC[next - 1]
   if (beforeS === undefined || beforeC === undefined || afterS - beforeS > breakS) return null
-  return beforeC + ((timeS - beforeS) / (afterS - beforeS)) * (afterC - beforeC)
+  return straightBetween(beforeS, beforeC, afterS, afterC, timeS)
 }

@@ -3,6 +3,7 @@ import { requireFinite, requireNotNegative, requirePositive, requireWithin } fro
 import { doseFactorFromOffset } from './dose-ratio'
 import type { CurvePoint, DoseModel, SegmentDose } from './heat-dose'
 import { createSegmentDose } from './heat-dose'
+import { straightBetween } from './straight-line'
 import {
   CONDUCTIVITY_MOISTURE_LIMIT_PERCENT,
   conductivityWPerMK,
@@ -449,7 +450,15 @@ function stepWithFire(state: StaveState, boundary: Exclude<StaveBoundary, number
   finishStep(state, dtS)
 }
 
-/** Convection and radiation: h(Tg − T) + εσ(Tr⁴ − T⁴), kelvin in the second. */
+/** A fire at the face: gas that convects and coals that radiate. */
+export type FaceFire = Extract<StaveBoundary, { gasTempC: number }>
+
+/** Net flux of a fire into a face at `faceTempC`, W/m²: h(Tg − T) + εσ(Tr⁴ − T⁴), kelvin in the second. */
+export function fireFluxWPerM2(fire: FaceFire, faceTempC: number): number {
+  return faceFluxOf(fire)(faceTempC).flux
+}
+
+/** The flux with its slope in the face's temperature, which the implicit step needs. */
 function faceFluxOf(boundary: Exclude<StaveBoundary, number>): FaceFlux {
   if ('fluxWPerM2' in boundary) return () => ({ flux: boundary.fluxWPerM2, slope: 0 })
   const { gasTempC, hWPerM2K, radiantTempC, emissivity } = boundary
@@ -581,8 +590,14 @@ export function doseAtDepth(state: StaveState, depthMm: number): number {
 export function tempCAtDepth(state: StaveState, depthMm: number): number {
   requireWithin('depthMm', depthMm, 0, state.options.thicknessMm)
   const node = nodeBefore(state, depthMm)
-  const share = (depthMm - at(state.depthMm, node)) / (at(state.depthMm, node + 1) - at(state.depthMm, node))
-  return at(state.tempC, node) + share * (at(state.tempC, node + 1) - at(state.tempC, node))
+  const { depthMm: depths, tempC } = state
+  return straightBetween(
+    at(depths, node),
+    at(tempC, node),
+    at(depths, node + 1),
+    at(tempC, node + 1),
+    depthMm,
+  )
 }
 
 /** Estimated temperature of the face, °C, with the range that the probe's depth leaves. */
@@ -645,10 +660,7 @@ export function isothermDepthMm(state: StaveState, tempC: number): number | null
     if (here < tempC) continue
     if (i === state.tempC.length - 1) return at(state.depthMm, i)
     const next = at(state.tempC, i + 1)
-    return (
-      at(state.depthMm, i) +
-      ((here - tempC) / (here - next)) * (at(state.depthMm, i + 1) - at(state.depthMm, i))
-    )
+    return straightBetween(here, at(state.depthMm, i), next, at(state.depthMm, i + 1), tempC)
   }
   return null
 }
@@ -748,7 +760,7 @@ function curveTempC(points: readonly CurvePoint[], next: number, timeS: number):
   const from = pointAt(points, after - 1)
   const to = pointAt(points, after)
   if (!(to.timeS > from.timeS) || timeS >= to.timeS) return to.tempC
-  return from.tempC + ((timeS - from.timeS) / (to.timeS - from.timeS)) * (to.tempC - from.tempC)
+  return straightBetween(from.timeS, from.tempC, to.timeS, to.tempC, timeS)
 }
 
 function addColumn(

@@ -2,7 +2,7 @@ import fc from 'fast-check'
 import { describe, expect, test } from 'vitest'
 
 import type { ReadingSeries } from '../../lib/science/gaps'
-import { fillGaps, gapExtremes, medianSpacingS } from '../../lib/science/gaps'
+import { fillGaps, gapExtremes } from '../../lib/science/gaps'
 import { equivalentMinutes } from '../../lib/science/heat-dose'
 import { defaultSiteRules, siteRulesSchema } from '../../lib/science/site-rules'
 
@@ -116,11 +116,6 @@ describe('the gap policy of SCIENCE §5', () => {
     expect(extremes.highMin).toBeCloseTo(highMin, 9)
     expect(extremes.joinedMin).toBeGreaterThan(extremes.lowMin)
     expect(extremes.joinedMin).toBeLessThan(extremes.highMin)
-  })
-
-  test('the spacing of a record that does not say it is the median one', () => {
-    expect(medianSpacingS([0, 5, 10, 15, 300, 305])).toBe(5)
-    expect(() => medianSpacingS([1])).toThrow(/^timeS/)
   })
 })
 

@@ -29,6 +29,7 @@ export function recordSpacingS(atMs: ArrayLike<number>): number {
   return all.length > 0 ? median(all) / 1000 : usualSpacingS
 }
 
+/** The lower middle one of the values: of 2 the smaller. */
 function median(values: number[]): number {
   const sorted = Float64Array.from(values).sort()
   return sorted[(sorted.length - 1) >> 1] ?? NaN
