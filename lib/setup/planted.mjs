@@ -95,7 +95,7 @@ function copyScience(lane) {
   writeFileSync(join(lane, 'package.json'), '{ "type": "module" }\n')
   writeFileSync(
     join(lane, 'vitest.config.mjs'),
-    `export default { test: { include: ['tests/science/**/*.test.ts'], pool: 'forks', maxWorkers: 1, testTimeout: 60000 } }\n`,
+    `export default { test: { include: ['tests/science/**/*.test.ts'], pool: 'threads', isolate: false, maxWorkers: 1, testTimeout: 60000 } }\n`,
   )
   return lane
 }
