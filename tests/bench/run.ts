@@ -39,7 +39,11 @@ try {
   await database.drop()
 }
 process.stdout.write(`\n${printFigures(figures)}\n`)
-// Last, and in a process of its own: it points its process at the database of the app that it starts.
-if ('page weight'.includes(wanted)) {
-  execFileSync(process.execPath, ['--import', 'tsx', 'tests/bench/page-weight.ts'], { stdio: 'inherit' })
+// Last, and in processes of their own: each points its process at the database of the app that it starts.
+for (const [name, file] of [
+  ['page weight', 'page-weight'],
+  ['live page', 'live-page'],
+]) {
+  if (name?.includes(wanted) !== true) continue
+  execFileSync(process.execPath, ['--import', 'tsx', `tests/bench/${file}.ts`], { stdio: 'inherit' })
 }
