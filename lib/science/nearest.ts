@@ -105,7 +105,9 @@ export function createCurveSet(
 function requireCurve(name: string, curve: StageCurve, length: number): void {
   if (curve.length !== length)
     throw new RangeError(`${name} must hold ${length} temperatures, not ${curve.length}`)
-  curve.forEach((tempC, i) => requireFinite(`${name}[${i}]`, tempC))
+  // The name is made only on failure: there are thousands of curves.
+  const odd = curve.findIndex((tempC) => !Number.isFinite(tempC))
+  if (odd !== -1) requireFinite(`${name}[${odd}]`, curve[odd] ?? NaN)
 }
 
 /** Mean temperature of each piece of each stage; the last piece of a stage takes what is left. */

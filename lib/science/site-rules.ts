@@ -2,8 +2,9 @@ import * as z from 'zod'
 
 /**
  * Every constant of a site that a score depends on. A ruleset's number, these rules, the recipe copy and the stored
- * readings reproduce a score bit for bit, so the whole object is stored with each score and never read again from
- * the site's present settings. Plain JSON: no undefined, no NaN.
+ * readings reproduce a score bit for bit: each stored score names the numbered version of these rules that it was made
+ * with, a version never changes once written, and no score is made from the site's present ones. Plain JSON: no
+ * undefined, no NaN.
  */
 
 const finite = z.number()
@@ -159,6 +160,35 @@ export const alarmRulesSchema = z.strictObject({
   shelveAtMostMin: positive.min(1).max(120),
 })
 
+const defaultSignalRules: z.infer<typeof signalRulesSchema> = {
+  areChecked: true,
+  stuckAfterS: 30,
+  stuckWithinC: 0.05,
+  stuckWitnessC: 10,
+  stepC: 40,
+  stepAgreeS: 3,
+  pairApartC: 25,
+  pairApartS: 30,
+  gatewayLostAfterS: 5,
+  clockApartS: 2,
+}
+
+const defaultAlarmRules: z.infer<typeof alarmRulesSchema> = {
+  onDelayS: 5,
+  offDelayS: 15,
+  deadbandC: 4,
+  climbDeadbandShare: 0.2,
+  slowOnDelayS: 60,
+  belowBandTimes: 2,
+  overrunAfterS: 60,
+  remindAfterS: 30,
+  shelveAtMostMin: 15,
+}
+
+/**
+ * A part that came later has a default, with which a version of the settings from before it is read. Signals were not
+ * checked then: a score that names such a version is made again as it was.
+ */
 export const siteRulesSchema = z.strictObject({
   dose: doseRulesSchema,
   indices: indexRulesSchema,
@@ -168,8 +198,8 @@ export const siteRulesSchema = z.strictObject({
   limits: limitRulesSchema,
   forecast: forecastRulesSchema,
   checks: checkRulesSchema.default(defaultCheckRules),
-  signals: signalRulesSchema,
-  alarms: alarmRulesSchema,
+  signals: signalRulesSchema.default({ ...defaultSignalRules, areChecked: false }),
+  alarms: alarmRulesSchema.default(defaultAlarmRules),
   /** A marked turn-over silences NO READING for this long, s; the gap still counts. */
   noReadingSilenceS: notNegative.max(600),
   /** Recipe tolerance when the recipe sets none, log10 of dose. */
@@ -199,48 +229,9 @@ export const defaultSiteRules: SiteRules = {
   limits: { woodMaxHeldS: 10, climbWindowS: 60 },
   forecast: { rejoinMin: 2, horizonMin: 240 },
   checks: defaultCheckRules,
-  signals: {
-    areChecked: true,
-    stuckAfterS: 30,
-    stuckWithinC: 0.05,
-    stuckWitnessC: 10,
-    stepC: 40,
-    stepAgreeS: 3,
-    pairApartC: 25,
-    pairApartS: 30,
-    gatewayLostAfterS: 5,
-    clockApartS: 2,
-  },
-  alarms: {
-    onDelayS: 5,
-    offDelayS: 15,
-    deadbandC: 4,
-    climbDeadbandShare: 0.2,
-    slowOnDelayS: 60,
-    belowBandTimes: 2,
-    overrunAfterS: 60,
-    remindAfterS: 30,
-    shelveAtMostMin: 15,
-  },
+  signals: defaultSignalRules,
+  alarms: defaultAlarmRules,
   noReadingSilenceS: 90,
   doseToleranceLog10: 0.12,
   bendMin: 10,
-}
-
-/** The parts that came later, as they hold for rules that were written before them: nothing is checked. */
-const laterRules: Pick<SiteRules, 'signals' | 'alarms'> = {
-  signals: { ...defaultSiteRules.signals, areChecked: false },
-  alarms: defaultSiteRules.alarms,
-}
-
-/**
- * Rules as they were stored, whenever that was: a part that was not there yet is given as it then worked, so that a
- * score is made again bit for bit from the rules that it names.
- *
- * @throws ZodError for what are no rules
- */
-export function readStoredRules(stored: unknown): SiteRules {
-  return siteRulesSchema.parse(
-    typeof stored === 'object' && stored !== null ? { ...laterRules, ...stored } : stored,
-  )
 }

@@ -7,6 +7,7 @@ import { benchFanOut } from '@/tests/bench/fan-out'
 import { benchIngest } from '@/tests/bench/ingest'
 import { benchLiveStep } from '@/tests/bench/live-step'
 import { benchOpenFiring } from '@/tests/bench/open-firing'
+import { benchScience } from '@/tests/bench/science'
 import { benchScore } from '@/tests/bench/score'
 import { createTestDatabase } from '@/tests/support/database'
 import type { TestPeople } from '@/tests/support/people'
@@ -14,7 +15,10 @@ import { createPeople } from '@/tests/support/people'
 
 type Bench = (people: TestPeople) => Promise<Figure[]>
 
-/** In the order in which they run; `npm run bench -- NAME` runs those whose name contains NAME. */
+/**
+ * Those that need a database, in the order in which they run, after `science`, which needs none. `npm run bench -- NAME`
+ * runs those whose name contains NAME.
+ */
 const benches: Record<string, Bench> = {
   ingest: () => benchIngest(),
   'live step': benchLiveStep,
@@ -23,21 +27,29 @@ const benches: Record<string, Bench> = {
   score: benchScore,
 }
 
+async function runWithDatabase(): Promise<void> {
+  const database = await createTestDatabase()
+  try {
+    const people = await createPeople(database)
+    for (const [name, bench] of chosen) {
+      process.stdout.write(`${name} …\n`)
+      figures.push(...(await bench(people)))
+    }
+  } finally {
+    await closeIngestPool()
+    await closeOrm()
+    await database.drop()
+  }
+}
+
 const [wanted = ''] = process.argv.slice(2)
 const chosen = Object.entries(benches).filter(([name]) => name.includes(wanted))
-const database = await createTestDatabase()
 const figures: Figure[] = []
-try {
-  const people = await createPeople(database)
-  for (const [name, bench] of chosen) {
-    process.stdout.write(`${name} …\n`)
-    figures.push(...(await bench(people)))
-  }
-} finally {
-  await closeIngestPool()
-  await closeOrm()
-  await database.drop()
+if ('science'.includes(wanted)) {
+  process.stdout.write('science …\n')
+  figures.push(...benchScience())
 }
+if (chosen.length > 0) await runWithDatabase()
 process.stdout.write(`\n${printFigures(figures)}\n`)
 // Last, and in processes of their own: each points its process at the database of the app that it starts.
 for (const [name, file] of [

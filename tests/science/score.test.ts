@@ -136,6 +136,54 @@ describe('a perfect firing', () => {
   })
 })
 
+describe('a stored score', () => {
+  /** What a seal and a row keep: everything as JSON text, numbers in their shortest form. */
+  const stored = (input: ScoreInput) =>
+    JSON.stringify({
+      ...input,
+      lead: { ...input.lead, timeS: Array.from(input.lead.timeS), tempC: Array.from(input.lead.tempC) },
+      opposite: null,
+    })
+  // The text was made from a ScoreInput two lines above.
+  const read = (text: string): ScoreInput => JSON.parse(text) as ScoreInput
+
+  test('law: is deep equal, to the last bit, to the one made again from its stored inputs', () => {
+    fc.assert(
+      fc.property(
+        fc.double({ min: -9, max: 9, noNaN: true }),
+        fc.double({ min: 5, max: 200, noNaN: true }),
+        fc.double({ min: 0, max: 8, noNaN: true }),
+        (offC, wavesS, swingC) => {
+          const base = firing()
+          const tempC = Float64Array.from(
+            base.lead.tempC,
+            (value, i) => value + offC + swingC * Math.sin((base.lead.timeS[i] ?? 0) / wavesS),
+          )
+          const input: ScoreInput = { ...base, opposite: null, lead: { ...base.lead, tempC } }
+          const row = JSON.stringify(scoreFiring(input))
+          const again = scoreFiring(read(stored(input)))
+          expect(JSON.stringify(again)).toBe(row)
+          expect(JSON.parse(JSON.stringify(again))).toStrictEqual(JSON.parse(row))
+          const figures: number[] = []
+          JSON.parse(row, (_, value: unknown) => {
+            if (typeof value === 'number') figures.push(value)
+            return value
+          })
+          expect(figures.length).toBeGreaterThan(40)
+          expect(figures.every((figure) => Object.is(Number(String(figure)), figure))).toBe(true)
+        },
+      ),
+      { seed: 20260330, numRuns: 25 },
+    )
+  })
+
+  test('depends on the rules that it names: another z gives another score', () => {
+    const base = firing()
+    const rules = { ...base.rules, dose: { ...base.rules.dose, zC: 30 } }
+    expect(scoreFiring({ ...base, rules }).dose?.doseMin).not.toBe(scoreFiring(base).dose?.doseMin)
+  })
+})
+
 describe('the dose term and the verdict', () => {
   const shifted = (log10Step: number) =>
     scoreFiring(firing({ lead: readings((timeS) => planC(timeS) + offsetC(log10Step)) }))
