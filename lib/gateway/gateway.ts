@@ -21,6 +21,8 @@ type GatewayOptions = SenderEvents & {
   bootId?: string
   clock?: GatewayClock
   maxSpoolBytes?: number
+  /** As the sender's. */
+  slowRetryMs?: number
   /** Shown on the gateway's page beside the depth of its spool; left out, no status is sent. */
   programVersion?: string
 }
@@ -71,9 +73,14 @@ export function createGateway(options: GatewayOptions): Gateway {
   return {
     bootId,
     record: (drafts) => {
-      const { kept, from, to } = spool.append(drafts)
+      const { kept, from, to, dropped } = spool.append(drafts)
       if (kept) disk.works()
       else disk.loses(from, to)
+      if (dropped > 0) {
+        options.onTrouble?.(
+          `The spool is full: the ${dropped} oldest readings were dropped for new ones, and the server is told.`,
+        )
+      }
       sender.wake()
     },
     setClockShift: spool.setClockShift,

@@ -22,13 +22,17 @@ const STATUS_LINE_EVERY_MS = 60_000
 
 /**
  * The gateway program: polls the modules, spools, sends, and tells of it in the log. Runs until stopped.
+ * `bootClock` is replaced in tests.
  * @throws GatewayError when it cannot begin: no token, no spool folder, or another program on it
  */
-export async function runGateway(config: GatewayConfig, log: ProgramLog): Promise<RunningGateway> {
+export async function runGateway(
+  config: GatewayConfig,
+  log: ProgramLog,
+  bootClock: BootClock = createBootClock(),
+): Promise<RunningGateway> {
   const token = createTokenReader(config, log)
   const unlock = await lockSpoolFolder(config.spool.folder)
   const files = openSpoolFolder(config.spool.folder)
-  const bootClock = createBootClock()
   const gateway = createGateway({
     files,
     transports: [
@@ -64,11 +68,14 @@ export async function runGateway(config: GatewayConfig, log: ProgramLog): Promis
       })
     }
   })
+  let isFirst = true
   const stopStatusLines = startPolling(STATUS_LINE_EVERY_MS, systemSteadyClock, () => {
-    // The first is due at once, when nothing was read yet.
-    if (counts.readings + counts.missedPolls === 0) return
-    log.info(printStatusLine(gateway, modules, counts))
-    Object.assign(counts, { readings: 0, faults: 0, missedPolls: 0 })
+    // The first turn comes at once, when nothing was read yet.
+    if (!isFirst) {
+      log.info(printStatusLine(gateway, modules, counts))
+      Object.assign(counts, { readings: 0, faults: 0, missedPolls: 0 })
+    }
+    isFirst = false
   })
   return {
     stop: async () => {

@@ -12,8 +12,11 @@ export type SpoolStatus = { bytes: number; waiting: number; readings: number; bo
 
 export type Spool = {
   bootId: string
-  /** Gives each reading its number and keeps it. Without room the readings are declared lost: `kept` is false. */
-  append: (drafts: readonly ReadingDraft[]) => { from: number; to: number; kept: boolean }
+  /**
+   * Gives each reading its number and keeps it. Without room the readings are declared lost: `kept` is false;
+   * `dropped` older ones, declared lost too, made room.
+   */
+  append: (drafts: readonly ReadingDraft[]) => { from: number; to: number; kept: boolean; dropped: number }
   /** The oldest unacknowledged readings, an old boot before this one; null when nothing waits. */
   peek: (limit: number) => SpoolBatch | null
   /** Drops what the server has. A number lower than before means that the server has forgotten: see below. */
@@ -64,6 +67,7 @@ export function createSpool(options: SpoolOptions): Spool {
   const current = newBoot(bootId, Math.max(0, ...boots.map((boot) => boot.ordinal)) + 1)
   boots.push(current)
 
+  let droppedSoFar = 0
   const totalBytes = () => boots.reduce((sum, boot) => sum + bytesOf(boot), 0)
 
   const writingSegment = (boot: Boot): Segment => {
@@ -100,7 +104,9 @@ export function createSpool(options: SpoolOptions): Spool {
       if (boot === current && oldest === boot.writing) return false
       removeSegment(boot, oldest)
       if (oldest.lastSeq > boot.ackedSeq) {
-        addLoss(boot, Math.max(oldest.firstSeq, boot.ackedSeq + 1), oldest.lastSeq, FULL_REASON)
+        const first = Math.max(oldest.firstSeq, boot.ackedSeq + 1)
+        addLoss(boot, first, oldest.lastSeq, FULL_REASON)
+        droppedSoFar += oldest.lastSeq + 1 - first
       }
       tryNote(boot)
       return true
@@ -137,7 +143,8 @@ export function createSpool(options: SpoolOptions): Spool {
       const from = current.highestSeq + 1
       const readings = drafts.map((draft, i) => roundedReading({ ...draft, seq: from + i }))
       const to = from + readings.length - 1
-      if (readings.length === 0) return { from, to, kept: true }
+      if (readings.length === 0) return { from, to, kept: true, dropped: 0 }
+      const droppedBefore = droppedSoFar
       const kept = keep(
         readings,
         readings.map((reading) => ({ kind: 'reading', reading })),
@@ -148,7 +155,7 @@ export function createSpool(options: SpoolOptions): Spool {
         tryNote(current)
       }
       while (totalBytes() > maxBytes && dropOldest());
-      return { from, to, kept }
+      return { from, to, kept, dropped: droppedSoFar - droppedBefore }
     },
     peek: (limit) => {
       for (const boot of boots) {

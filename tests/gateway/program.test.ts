@@ -4,8 +4,12 @@ import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import { createBootClock } from '@/lib/gateway/boot-clock'
 import { runCommand } from '@/lib/gateway/command'
 import { gatewayConfigSchema } from '@/lib/gateway/config'
+import { createProgramLog } from '@/lib/gateway/program-log'
+import { readConfig } from '@/lib/gateway/read-config'
+import { runGateway } from '@/lib/gateway/run-gateway'
 import { startSimulatedModule, type SimulatedModule } from '@/simulators/modbus/simulated-module'
 import { startIngestServer } from '@/tests/support/ingest-server'
 import { until } from '@/tests/support/until'
@@ -157,6 +161,33 @@ describe('the gateway program', () => {
     expect([...(boot ?? [])]).toEqual(Array.from({ length: boot?.size ?? 0 }, (_, i) => i + 1))
     expect(next?.size).toBeGreaterThan(0)
     expect(server.authorizations.length).toBeLessThan(12)
+  })
+
+  it('a clock that is set while it runs moves what is unsent and the sending alike, and is said', async () => {
+    const server = await startServer()
+    const module = await startModule()
+    writeToken()
+    let aheadMs = -50 * 365 * 86_400_000
+    const bootClock = createBootClock({ wallMs: () => Date.now() + aheadMs })
+    const lines: string[] = []
+    server.answerWith(503)
+    const config = readConfig(writeConfig(server.url, module.port))
+    const log = createProgramLog((line) => lines.push(line))
+    const gateway = await runGateway(config, log, bootClock)
+    endings.push(gateway.stop)
+    // Read while the box believes that it is half a century ago.
+    await until(() => module.requestCount() >= 5)
+    aheadMs = 0
+    await until(() => lines.some((line) => line.includes('clock was set forward by')))
+    server.answerWith(200)
+    await until(() => server.messages.flatMap((message) => message.readings).length >= 10)
+    const readings = server.messages.flatMap((message) => message.readings)
+    const times = readings.map(({ at }) => Date.parse(at))
+    expect(times).toEqual([...times].sort((a, b) => a - b))
+    expect(readings.map(({ seq }) => seq)).toEqual(readings.map((_, i) => i + 1))
+    for (const at of [...times, ...server.messages.map((message) => Date.parse(message.sentAt))]) {
+      expect(Math.abs(Date.now() - at)).toBeLessThan(60_000)
+    }
   })
 
   it('a second program does not touch the spool of the first', async () => {

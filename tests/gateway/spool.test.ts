@@ -135,7 +135,7 @@ describe('spool records', () => {
 describe('spool', () => {
   it('gives readings in order and drops what was acknowledged', () => {
     const spool = createSpool({ files: memoryFiles(), bootId: BOOTS[0], segmentBytes: 300 })
-    expect(spool.append(drafts(20))).toEqual({ from: 1, to: 20, kept: true })
+    expect(spool.append(drafts(20))).toEqual({ from: 1, to: 20, kept: true, dropped: 0 })
     expect(seqs(spool.peek(5)?.readings ?? [])).toEqual([1, 2, 3, 4, 5])
     spool.acknowledge(BOOTS[0], 18)
     expect(seqs(spool.peek(5)?.readings ?? [])).toEqual([19, 20])
@@ -230,13 +230,16 @@ describe('spool', () => {
   it('keeps within its size and declares what it had to drop', () => {
     const files = memoryFiles()
     const spool = createSpool({ files, bootId: BOOTS[0], segmentBytes: 500, maxBytes: 2_000 })
+    let dropped = 0
     for (let i = 0; i < 40; i += 1) {
-      spool.append(drafts(5, i * 5))
+      dropped += spool.append(drafts(5, i * 5)).dropped
       expect(spool.status().bytes).toBeLessThanOrEqual(2_500)
     }
     const batch = spool.peek(1_000)
     const first = batch?.readings[0]?.seq ?? 0
     expect(first).toBeGreaterThan(1)
+    expect(dropped).toBe(first - 1)
+    expect(spool.status()).toMatchObject({ waiting: 200, readings: 200 - dropped })
     expect(batch?.lost).toEqual([{ from: 1, to: first - 1, reason: FULL_REASON }])
     expect(batch?.readings.at(-1)?.seq).toBe(200)
     // The loss survives a restart.
@@ -322,7 +325,7 @@ describe('spool', () => {
     expect(seqs(spool.peek(10)?.readings ?? [])).toEqual([4, 5])
   })
 
-  it('cut at every byte of its last record, what is before comes whole and the number is declared, kept or free', () => {
+  it('cut at every byte of its last record, all that is before it comes whole and nothing is invented', () => {
     const files = memoryFiles()
     const before = createSpool({ files, bootId: BOOTS[0] })
     before.append(drafts(5))
