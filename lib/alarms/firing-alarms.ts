@@ -63,7 +63,7 @@ export type PresentAlarm = {
 export type FiringAlarms = {
   /** Once a tick; an alarm that is not among the conditions is inside its limit. */
   see: (conditions: readonly AlarmCondition[], atMs: number) => void
-  /** What is on the screen or shelved, the gravest first, unseen before seen. */
+  /** What is on the screen or shelved: the gravest first, unseen before seen, those that are over behind. */
   present: () => PresentAlarm[]
   /** The moves since the last call, in their order. */
   takeMoves: () => AlarmMove[]
@@ -230,7 +230,8 @@ function toPresent(machine: AlarmStanding): PresentAlarm {
 
 function byGravity(a: PresentAlarm, b: PresentAlarm): number {
   const shelved = Number(a.state === 'shelved') - Number(b.state === 'shelved')
+  const over = Number(a.state === 'returned unacknowledged') - Number(b.state === 'returned unacknowledged')
   const priority = alarmCatalog[a.kind].priority - alarmCatalog[b.kind].priority
   const unseen = Number(b.mayAcknowledge) - Number(a.mayAcknowledge)
-  return shelved || priority || unseen || a.sinceMs - b.sinceMs
+  return shelved || over || priority || unseen || a.sinceMs - b.sinceMs
 }

@@ -5,7 +5,9 @@ import { storeReadings } from '@/lib/ingest/store-readings'
 import { verifyDeviceToken } from '@/lib/ingest/verify-device-token'
 import { isAppError } from '@/lib/errors'
 import { events } from '@/lib/live/events'
+import { hubDoor } from '@/lib/live/hub-door'
 import { log } from '@/lib/log'
+import { nowMs } from '@/lib/runtime'
 
 /** How often the token of a gateway that is silent is looked at again. */
 const recheckMs = 2_500
@@ -19,10 +21,14 @@ export type Gateways = {
 export function attachGateways(io: Server): Gateways {
   const gateways = io.of(GATEWAY_NAMESPACE)
   const underWay = new Set<Promise<void>>()
+  const known = new WeakMap<Socket, string>()
   let isStopping = false
   gateways.use((socket, next) => {
     verifyDeviceToken(tokenOf(socket)).then(
-      () => next(),
+      ({ gatewayId }) => {
+        known.set(socket, gatewayId)
+        next()
+      },
       (error: unknown) => {
         const problem = toProblem(error)
         next(Object.assign(new Error(problem.title), { data: problem }))
@@ -32,6 +38,9 @@ export function attachGateways(io: Server): Gateways {
   gateways.on('connection', (socket) => {
     socket.on(events.readingsSend, (message: unknown, reply: unknown) => {
       if (isStopping || typeof reply !== 'function') return
+      // It spoke, even if nothing can be stored just now.
+      const gatewayId = known.get(socket)
+      if (gatewayId !== undefined) hubDoor().current?.gatewayHeard(gatewayId, nowMs(), null)
       const work: Promise<void> = receive(socket, message, (answer) => reply(answer)).finally(() => {
         underWay.delete(work)
       })

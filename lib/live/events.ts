@@ -113,7 +113,7 @@ export const firingStateSchema = z.object({
     })
     .nullable(),
   troubles: z.array(troubleSchema),
-  /** The gravest first, unseen before seen, shelved ones last. */
+  /** The gravest first, unseen before seen; behind them what is over and not seen yet, then the shelved. */
   alarms: z.array(presentAlarmSchema),
   /** The gravest of those that are on, for the room; a reminder is none. */
   alarm: z.object({ words: z.string(), level: z.enum(['amber', 'red']), sinceMs: z.number() }).nullable(),

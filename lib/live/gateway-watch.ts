@@ -2,7 +2,7 @@
 export type GatewayNow = {
   id: string
   name: string
-  /** Since its last message, s; counted from the hub's own start at the earliest, for a stopped server hears nobody. */
+  /** Since its last message, s, while this server could hear: not before its start, nor while it stood still. */
   silentS: number
   /** Server's clock minus gateway's, s: as it is applied to its readings. */
   clockOffsetS: number
@@ -14,10 +14,15 @@ type Known = { name: string; heardAtMs: number; clockOffsetMs: number }
 export type GatewayWatch = {
   /** As the table has it: another process may have heard it. */
   know: (id: string, name: string, heardAtMs: number | null, clockOffsetMs: number | null) => void
-  /** A message of it was stored. */
-  hear: (id: string, atMs: number, clockOffsetMs: number) => void
+  /** A message of it came; its offset is null until the message is stored. */
+  hear: (id: string, atMs: number, clockOffsetMs: number | null) => void
+  /** This server did nothing until then, so nobody's silence counts. */
+  wasAwayUntil: (atMs: number) => void
   at: (id: string, atMs: number) => GatewayNow | null
 }
+
+/** Gateways that lost a server look for it again at intervals of up to 10 s. */
+const comeBackMs = 15_000
 
 export function createGatewayWatch(startedAtMs: number): GatewayWatch {
   const known = new Map<string, Known>()
@@ -26,7 +31,7 @@ export function createGatewayWatch(startedAtMs: number): GatewayWatch {
       const before = known.get(id)
       known.set(id, {
         name,
-        heardAtMs: Math.max(startedAtMs, heardAtMs ?? 0, before?.heardAtMs ?? 0),
+        heardAtMs: Math.max(startedAtMs + comeBackMs, heardAtMs ?? 0, before?.heardAtMs ?? 0),
         clockOffsetMs: before?.clockOffsetMs ?? clockOffsetMs ?? 0,
       })
     },
@@ -35,8 +40,11 @@ export function createGatewayWatch(startedAtMs: number): GatewayWatch {
       known.set(id, {
         name: before?.name ?? 'the gateway',
         heardAtMs: Math.max(atMs, before?.heardAtMs ?? 0),
-        clockOffsetMs,
+        clockOffsetMs: clockOffsetMs ?? before?.clockOffsetMs ?? 0,
       })
+    },
+    wasAwayUntil: (atMs) => {
+      for (const one of known.values()) one.heardAtMs = Math.max(one.heardAtMs, atMs)
     },
     at: (id, atMs) => {
       const one = known.get(id)

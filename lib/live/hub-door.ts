@@ -16,8 +16,8 @@ export type CommittedRows = {
 /** What the hub takes from the rest of the process. All return at once and never throw. */
 export type HubDoor = {
   takeRows: (rows: CommittedRows) => void
-  /** A message of a gateway was stored, whatever was in it. */
-  gatewayHeard: (gatewayId: string, atMs: number, clockOffsetMs: number) => void
+  /** A message of a gateway came, whatever was in it; the offset of its clock is null until it is stored. */
+  gatewayHeard: (gatewayId: string, atMs: number, clockOffsetMs: number | null) => void
   firingChanged: (firingId: string, what: string) => void
   /** A hand's move of an alarm was committed. */
   alarmsChanged: (firingId: string) => void

@@ -38,6 +38,7 @@ export type HubState = {
   /** Writing them, and reading again what hands did, goes one after the other. */
   alarmsUnderWay: Promise<void>
   roomAtMs: number
+  tickedAtMs: number
   isStopped: boolean
   /** Reading goes one after the other: what is read later is newer. */
   underWay: Promise<void>
@@ -53,6 +54,7 @@ export function createHubState(output: HubOutput): HubState {
     alarmMoves: [],
     alarmsUnderWay: Promise.resolve(),
     roomAtMs: -Infinity,
+    tickedAtMs: -Infinity,
     isStopped: false,
     underWay: Promise.resolve(),
   }

@@ -9,10 +9,15 @@ import { nowMs } from '@/lib/runtime'
 export const tickMs = 200
 /** A state goes out once a second; a tick that comes a little early counts. */
 const stateMs = 1_000 - tickMs / 4
+/** Ticks further apart than this were not on time. */
+const stoodStillMs = 2_000
 
 /** Sends what has come since the last tick, at most once each; states once a second or when something changed. */
 export function tickHub(hub: HubState): void {
   const atMs = nowMs()
+  // A server that stood still heard nobody meanwhile: that is no gateway's silence.
+  if (atMs - hub.tickedAtMs > stoodStillMs) hub.gateways.wasAwayUntil(atMs)
+  hub.tickedAtMs = atMs
   for (const [firingId, one] of hub.held) {
     const isDone = one.endedAtMs !== null && one.stateAtMs >= one.endedAtMs
     if (!isDone) tickFiring(hub, firingId, one, atMs)

@@ -44,13 +44,20 @@ function signalOf(
   const last = curve.tempC(newest)
   if (Number.isNaN(last)) {
     const cause = causeOf(curve.troubleAt(newest), flag.atMs === lastAtMs ? flag.flag : 0)
-    return { role, probeName, condition: 'no reading', cause, lastAtMs, tempC: null }
+    return { role, probeName, condition: 'no reading', cause, lastAtMs: lastNumberAtMs(curve), tempC: null }
   }
   const tempC = Math.round(last * 100) / 100
   if (atMs - lastAtMs > staleAfterMs) {
     return { role, probeName, condition: 'stale', cause: 'nothing more received', lastAtMs, tempC }
   }
   return { role, probeName, condition: 'live', cause: null, lastAtMs, tempC }
+}
+
+/** When there was a reading last; null when there never was one. */
+function lastNumberAtMs(curve: CheckedCurve): number | null {
+  let i = curve.length - 1
+  while (i >= 0 && Number.isNaN(curve.tempC(i))) i -= 1
+  return i < 0 ? null : curve.atMs(i)
 }
 
 /** The newest reading; behind a jump of less than a second the one before it. */

@@ -3,7 +3,7 @@ import { forkEm, queryRows } from '@/lib/db/orm'
 import { AppError } from '@/lib/errors'
 import { shared } from '@/lib/runtime'
 import type { SiteRules } from '@/lib/science/site-rules'
-import { readStoredRules } from '@/lib/science/site-rules'
+import { siteRulesSchema } from '@/lib/science/site-rules'
 
 export type Site = {
   version: number
@@ -61,7 +61,7 @@ export async function siteOfVersion(em: EntityManager, version: number): Promise
     name: row.name,
     serialPrefix: row.serial_prefix,
     timeZone: row.time_zone,
-    rules: readStoredRules(row.rules),
+    rules: siteRulesSchema.parse(row.rules),
     isDemo: row.is_demo,
   }
 }

@@ -1,5 +1,5 @@
 import * as z from 'zod'
-import { siteRulesSchema } from '@/lib/science/site-rules'
+import { alarmRulesSchema, signalRulesSchema, siteRulesSchema } from '@/lib/science/site-rules'
 
 export const siteName = z
   .string('Write the cooperage’s name.')
@@ -31,7 +31,8 @@ export const siteSettingsBody = z.strictObject({
   name: siteName,
   serialPrefix,
   timeZone,
-  rules: siteRulesSchema,
+  // Whole: what is left out of a change is not taken for a default.
+  rules: siteRulesSchema.extend({ signals: signalRulesSchema, alarms: alarmRulesSchema }),
 })
 export type SiteSettingsBody = z.infer<typeof siteSettingsBody>
 
