@@ -21,6 +21,11 @@ import {
  * phase of each node is iterated, so what goes in is what is stored. Each node has its own moisture; it falls in proportion
  * as the node's highest temperature passes from 95 to 135 °C and never rises again, so that heat is charged once.
  *
+ * Conductivity and heat capacity are the handbook's (wood.ts) with the stave's one specific gravity and each node's
+ * moisture: k·(1 + 0.0025·(T − 24)) above 24 °C; at 25 % of moisture and more k stays what it is at 25 %, and the state
+ * says so. The capacity is stated to 420 K and carried on to the hotter face as the straight line that it is. What the
+ * water that leaves takes with it is its latent heat alone.
+ *
  * With a probe, its reading is imposed at its depth and the wood behind it is solved. The layer in front, face to
  * probe, is an inverse problem that amplifies noise without bound when it is solved step by step (it is some
  * d²/α ≈ 25 s thick at 2 mm). It is therefore estimated quasi-steadily: flux at the probe (from the solved side) and
@@ -93,7 +98,7 @@ export type StaveState = {
   /** Heat through the face and out of the cold face so far, J/m². With a probe the first is the flux at its depth. */
   heatInJPerM2: number
   heatOutJPerM2: number
-  /** Moisture above 25 % lies outside the handbook's conductivity formula. */
+  /** Moisture of 25 % or more at the start lies outside the handbook's conductivity formula, which stops there. */
   isMoistureOutsideFormula: boolean
   /** Smoothed flux, W/m², and climb, °C/s, at the probe. */
   probeFluxWPerM2: number
@@ -224,7 +229,7 @@ export function createStave(options: StaveOptions): StaveState {
     heatOutJPerM2: 0,
     isMoistureOutsideFormula:
       options.constantProperties === undefined &&
-      options.moisturePercent > CONDUCTIVITY_MOISTURE_LIMIT_PERCENT,
+      options.moisturePercent >= CONDUCTIVITY_MOISTURE_LIMIT_PERCENT,
     probeFluxWPerM2: 0,
     probeClimbCPerS: 0,
     work: {
