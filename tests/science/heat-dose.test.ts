@@ -5,7 +5,9 @@ import type { CurvePoint, DoseModel } from '../../lib/science/heat-dose'
 import {
   arrheniusEquivalentMinutes,
   arrheniusRate,
+  createArrheniusSegment,
   createDoseAccumulator,
+  createSegmentDose,
   doseRate,
   equivalentMinutes,
   log10Severity,
@@ -385,6 +387,66 @@ describe('laws of the heat dose', () => {
     const halves = [ramp.slice(0, 1).concat(middle), [middle, ...ramp.slice(1)]]
     const total = halves.reduce((all, points) => all + arrheniusEquivalentMinutes(151_700, 200, points), 0)
     expectWithin(total, dose, 1e-12 * dose)
+  })
+})
+
+describe('segments, one at a time', () => {
+  const temp = fc.double({ min: 40, max: 260, noNaN: true })
+  it('law: walked by hand they are, bit for bit, the dose and the running dose of their points', () => {
+    fc.assert(
+      fc.property(
+        fc.array(fc.tuple(fc.double({ min: 0, max: 60, noNaN: true }), temp), {
+          minLength: 1,
+          maxLength: 60,
+        }),
+        (steps) => {
+          let timeS = 0
+          const points = steps.map(([stepS, tempC]) => ({ timeS: (timeS += stepS), tempC }))
+          const model = { refTempC: 200, zC: 34, baseTempC: 120 }
+          const segment = createSegmentDose(model)
+          const running = createDoseAccumulator(model)
+          let minutes = 0
+          points.forEach((to, i) => {
+            running.add(to.timeS, to.tempC)
+            const from = points[i - 1]
+            if (from === undefined || !(to.timeS > from.timeS)) return
+            const [fromRate, toRate] = [segment.rateAt(from.tempC), segment.rateAt(to.tempC)]
+            minutes += segment.minutes(to.timeS - from.timeS, from.tempC, fromRate, to.tempC, toRate)
+          })
+          expect(minutes).toBe(equivalentMinutes(model, points))
+          expect(running.minutes).toBe(minutes)
+        },
+      ),
+      propertyRun,
+    )
+  })
+  it('law: an Arrhenius segment is the sum of its parts to 1e-9, whether by the series or by quadrature', () => {
+    fc.assert(
+      fc.property(
+        fc.constantFrom(76_000, 151_700),
+        temp,
+        fc.double({ min: -40, max: 40, noNaN: true }),
+        fc.integer({ min: 2, max: 400 }),
+        (eaJPerMol, fromC, riseC, parts) => {
+          const whole = [
+            { timeS: 0, tempC: fromC },
+            { timeS: 600, tempC: fromC + riseC },
+          ]
+          const split = Array.from({ length: parts + 1 }, (_, i) => ({
+            timeS: (600 * i) / parts,
+            tempC: fromC + (riseC * i) / parts,
+          }))
+          const minutes = arrheniusEquivalentMinutes(eaJPerMol, 200, whole)
+          expectWithin(arrheniusEquivalentMinutes(eaJPerMol, 200, split), minutes, 1e-9 * minutes)
+        },
+      ),
+      propertyRun,
+    )
+  })
+  it('an Arrhenius segment names a reference or temperature that is none', () => {
+    expectRangeError('eaJPerMol', () => createArrheniusSegment(0, 200))
+    expectRangeError('refTempC', () => createArrheniusSegment(76_000, -280))
+    expectRangeError('tempC', () => createArrheniusSegment(76_000, 200).rateAt(-280))
   })
 })
 

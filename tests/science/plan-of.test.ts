@@ -7,6 +7,8 @@ import { canonicalJson } from '@/lib/recipes/content-sha256'
 import { smallestHonestTolerance } from '@/lib/recipes/honest-tolerance'
 import { cueActions, recipeContentSchema } from '@/lib/recipes/schema'
 import { startingContent, usualToasts } from '@/lib/recipes/starting-content'
+import { ruleset1 } from '@/lib/science/score-ruleset'
+import { planLegs } from '@/lib/science/score-stages'
 import { defaultSiteRules } from '@/lib/science/site-rules'
 import { sampleContent } from '@/tests/support/recipe-content'
 
@@ -106,6 +108,16 @@ describe('the plan of a recipe', () => {
     )
   })
 
+  it('law: the band that is drawn is the band that is scored', () => {
+    fc.assert(
+      fc.property(anyPlan, (recipe) => {
+        const drawn = planOf(recipe, model).stages.map((stage) => stage.bandHalfWidthC)
+        const scored = planLegs(recipe.planStartTempC, recipe.stages, ruleset1.rampBandMin)
+        drawn.forEach((halfWidthC, i) => expect(halfWidthC).toBeCloseTo(scored[i]?.halfWidthC ?? NaN, 9))
+      }),
+      { seed, numRuns: 200 },
+    )
+  })
   it('on a ramp the band is the wider of ± °C and 2 min along time (SCIENCE §5)', () => {
     const { stages } = planOf(sampleContent(), model)
     // 90 °C in 12 min is 7.5 °C a minute, 15 °C in 2 min; 34 °C in 9 min is 7.56; a hold keeps its ± 7.
