@@ -2,204 +2,156 @@
 
 import { useRouter } from 'next/navigation'
 import { useState } from 'react'
+import { CopyDialog } from '@/components/probes/copy-dialog'
+import { TokenTable } from '@/components/probes/token-table'
+import type { Token } from '@/components/probes/token-table'
 import { Button } from '@/components/ui/button'
 import { ConfirmDialog } from '@/components/ui/confirm-dialog'
-import { Dialog } from '@/components/ui/dialog'
-import { Table } from '@/components/ui/table'
-import { TextField } from '@/components/ui/text-field'
-import { Time } from '@/components/ui/time'
-import { useToast } from '@/components/ui/toast'
+import { formatInstant } from '@/lib/format'
 import { tryApi } from '@/lib/http/api-client'
-import type { IssuedToken, TokenList } from '@/lib/ingest/schema'
+import type { EnrolmentCode, IssuedToken } from '@/lib/ingest/schema'
 
-type Token = TokenList['items'][number]
+type Asked = { what: 'code' } | { what: 'token' } | { what: 'rotate' | 'revoke'; token: Token }
+type Shown = { kind: 'code'; code: EnrolmentCode } | { kind: 'token'; token: string }
 
-/** A gateway's device tokens: make one (shown this once), revoke one. For administrators. */
+/** How a gateway proves itself: enrol by a code, make, rotate and revoke tokens. For administrators. */
 export function GatewayTokens({
   gateway,
   tokens,
   zone,
 }: {
-  gateway: { id: string; name: string }
+  gateway: { id: string; name: string; isRetired: boolean }
   tokens: readonly Token[]
   zone: string
 }) {
   const router = useRouter()
-  const [isOpen, setIsOpen] = useState(false)
-  const [isMaking, setIsMaking] = useState(false)
-  const [issued, setIssued] = useState<IssuedToken | null>(null)
-  const [revoking, setRevoking] = useState<Token | null>(null)
-  const params = { id: gateway.id }
+  const [asked, setAsked] = useState<Asked | null>(null)
+  const [shown, setShown] = useState<Shown | null>(null)
+  const close = () => setAsked(null)
 
-  async function issue() {
-    const { data, problem } = await tryApi<IssuedToken>('POST', '/api/gateways/{id}/tokens', { params })
-    if (problem !== null) return problem
-    setIsMaking(false)
-    setIssued(data)
+  async function run(work: () => Promise<Shown | null>) {
+    const made = await work()
+    setAsked(null)
+    setShown(made)
     router.refresh()
-    return null
   }
 
-  async function revoke(tokenId: string) {
-    const { problem } = await tryApi('DELETE', '/api/gateways/{id}/tokens/{tokenId}', {
-      params: { ...params, tokenId },
-    })
-    if (problem !== null) return problem
-    setRevoking(null)
-    router.refresh()
-    return null
+  async function confirm() {
+    if (asked === null) return null
+    const params = { id: gateway.id, tokenId: 'token' in asked ? asked.token.id : '' }
+    if (asked.what === 'revoke') {
+      const { problem } = await tryApi('DELETE', '/api/gateways/{id}/tokens/{tokenId}', { params })
+      if (problem === null) await run(async () => null)
+      return problem
+    }
+    if (asked.what === 'code') {
+      const { data, problem } = await tryApi<EnrolmentCode>('POST', '/api/gateways/{id}/enrolment-codes', {
+        params,
+      })
+      if (problem === null) await run(async () => ({ kind: 'code', code: data }))
+      return problem
+    }
+    const path =
+      asked.what === 'token' ? '/api/gateways/{id}/tokens' : '/api/gateways/{id}/tokens/{tokenId}/rotate'
+    const { data, problem } = await tryApi<IssuedToken>('POST', path, { params })
+    if (problem === null) await run(async () => ({ kind: 'token', token: data.token }))
+    return problem
   }
 
   return (
-    <>
-      <Button kind="quiet" onClick={() => setIsOpen(true)}>
-        Tokens<span className="sr-only"> of {gateway.name}</span>
-      </Button>
-      <Dialog
-        isOpen={isOpen}
-        onClose={() => setIsOpen(false)}
-        title={`Device tokens of ${gateway.name}`}
-        actions={
-          <>
-            <Button onClick={() => setIsOpen(false)}>Close</Button>
-            <Button kind="main" onClick={() => setIsMaking(true)}>
-              New token
+    <section>
+      <div className="mb-2 flex flex-wrap items-end justify-between gap-3">
+        <h2>Device tokens</h2>
+        {gateway.isRetired ? null : (
+          <span className="flex flex-wrap gap-2">
+            <Button onClick={() => setAsked({ what: 'token' })}>New token</Button>
+            <Button kind="main" onClick={() => setAsked({ what: 'code' })}>
+              Make a code to enrol
             </Button>
-          </>
-        }
-      >
-        <TokenTable tokens={tokens} zone={zone} onRevoke={setRevoking} />
-      </Dialog>
+          </span>
+        )}
+      </div>
+      <TokenTable
+        tokens={tokens}
+        zone={zone}
+        onRotate={(token) => setAsked({ what: 'rotate', token })}
+        onRevoke={(token) => setAsked({ what: 'revoke', token })}
+      />
       <ConfirmDialog
-        isOpen={isMaking}
-        onClose={() => setIsMaking(false)}
-        title={`New token for ${gateway.name}?`}
-        confirmLabel="Make the token"
-        onConfirm={issue}
+        isOpen={asked !== null}
+        onClose={close}
+        title={asked === null ? '' : titleOf(asked, gateway.name)}
+        confirmLabel={asked === null ? '' : labels[asked.what]}
+        isDanger={asked?.what === 'revoke'}
+        onConfirm={confirm}
       >
-        It is shown once. Tokens made before stay good until they are revoked, so that the gateway can be
-        given its new one without a break.
+        {asked === null ? null : explanations[asked.what]}
       </ConfirmDialog>
-      <ConfirmDialog
-        isOpen={revoking !== null}
-        onClose={() => setRevoking(null)}
-        title="Revoke this token?"
-        confirmLabel="Revoke"
-        isDanger
-        onConfirm={() => revoke(revoking?.id ?? '')}
-      >
-        A gateway that still sends with it is refused at its next message and keeps its readings until it has
-        another. This cannot be undone.
-      </ConfirmDialog>
-      <NewToken name={gateway.name} issued={issued} onClose={() => setIssued(null)} />
-    </>
+      {shown === null ? null : (
+        <Secret shown={shown} name={gateway.name} zone={zone} onClose={() => setShown(null)} />
+      )}
+    </section>
   )
 }
 
-function TokenTable({
-  tokens,
-  zone,
-  onRevoke,
-}: {
-  tokens: readonly Token[]
-  zone: string
-  onRevoke: (token: Token) => void
-}) {
-  return (
-    <Table
-      caption="Device tokens"
-      rows={tokens}
-      rowKey={(token) => token.id}
-      empty={
-        <p className="border-y border-line py-3 text-soft">
-          No token yet: this gateway cannot send. Make one.
-        </p>
-      }
-      columns={[
-        {
-          key: 'made',
-          head: 'Made',
-          cell: (token) => (
-            <>
-              <Time at={token.createdAt} zone={zone} />
-              <span className="block text-soft">{token.createdBy ?? 'by the set-up'}</span>
-            </>
-          ),
-        },
-        {
-          key: 'used',
-          head: 'Last used',
-          cell: (token) =>
-            token.lastUsedAt === null ? (
-              <span className="text-mute">never</span>
-            ) : (
-              <Time at={token.lastUsedAt} zone={zone} />
-            ),
-        },
-        {
-          key: 'state',
-          head: <span className="sr-only">State</span>,
-          cell: (token) =>
-            token.revokedAt === null ? (
-              <Button kind="quiet" onClick={() => onRevoke(token)}>
-                Revoke
-              </Button>
-            ) : (
-              <span className="text-mute">revoked</span>
-            ),
-        },
-      ]}
-    />
-  )
+const labels = {
+  code: 'Make the code',
+  token: 'Make the token',
+  rotate: 'Rotate',
+  revoke: 'Revoke',
+} as const
+
+const explanations = {
+  code: 'The code is shown once, serves once, and ends after 30 minutes or with a newer one. The program that enrols with it gets its token by itself. Tokens that this gateway has now serve until the new one speaks, and for 24 hours at most.',
+  token:
+    'For a program that is given its token by hand. It is shown once. Tokens made before stay good until they are revoked.',
+  rotate:
+    'You get a new token to put into the gateway. The old one serves until the new one is first used, and for 24 hours at most, so nothing is interrupted.',
+  revoke:
+    'A gateway that still sends with it is refused within five seconds and keeps its readings until it has another. This cannot be undone.',
+} as const
+
+function titleOf(asked: Asked, name: string): string {
+  if (asked.what === 'code') return `A code to enrol ${name}?`
+  if (asked.what === 'token') return `New token for ${name}?`
+  return asked.what === 'rotate' ? `Rotate a token of ${name}?` : 'Revoke this token?'
 }
 
-/** The token, this once: only its hash is kept. */
-function NewToken({
+function Secret({
+  shown,
   name,
-  issued,
+  zone,
   onClose,
 }: {
+  shown: Shown
   name: string
-  issued: IssuedToken | null
+  zone: string
   onClose: () => void
 }) {
-  const toast = useToast()
-  if (issued === null) return null
-  const { token } = issued
-
-  async function copy() {
-    try {
-      await navigator.clipboard.writeText(token)
-      toast({ words: 'Token copied.' })
-    } catch {
-      toast({ words: 'The browser would not copy. Select the token and copy it by hand.', isWrong: true })
-    }
-  }
-
-  return (
-    <Dialog
-      isOpen
-      onClose={onClose}
-      title={`The new token of ${name}`}
-      actions={
-        <>
-          <Button onClick={copy}>Copy the token</Button>
-          <Button kind="due" onClick={onClose}>
-            Done
-          </Button>
-        </>
-      }
-    >
-      <p>Put it into the gateway now. It is not shown again: only its hash is kept here.</p>
-      <TextField
-        name="token"
+  if (shown.kind === 'token') {
+    return (
+      <CopyDialog
+        title={`The new token of ${name}`}
         label="Device token"
-        className="mt-3"
-        inputClassName="font-mono"
-        readOnly
-        value={token}
-        onFocus={(event) => event.target.select()}
-      />
-    </Dialog>
+        secret={shown.token}
+        onClose={onClose}
+      >
+        <p>Put it into the gateway now. It is not shown again: only its hash is kept here.</p>
+      </CopyDialog>
+    )
+  }
+  return (
+    <CopyDialog
+      title={`Enrol ${name} with this code`}
+      label="Code"
+      secret={shown.code.code}
+      isLarge
+      onClose={onClose}
+    >
+      <p>
+        Type it into the gateway’s program before {formatInstant(shown.code.expiresAt, zone, 'time')}. It is
+        not shown again. Small letters and missing hyphens do not matter.
+      </p>
+    </CopyDialog>
   )
 }

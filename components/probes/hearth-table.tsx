@@ -4,7 +4,6 @@ import { FormDialog } from '@/components/ui/form-dialog'
 import type { FormField } from '@/components/ui/form-dialog'
 import { Table } from '@/components/ui/table'
 import type { Column } from '@/components/ui/table'
-import type { RoomPicture } from '@/lib/probes/get-room-picture'
 import type { HearthDto } from '@/lib/probes/schema'
 
 function hearthFields(hearth?: HearthDto): FormField[] {
@@ -34,8 +33,20 @@ export function NewHearth() {
   )
 }
 
+function ProbeLinks({ probes }: { probes: HearthDto['probes'] }) {
+  return probes.map((probe, index) => (
+    <span key={probe.id}>
+      {index === 0 ? '' : ', '}
+      <Link className="link" href={`/probes/${probe.id}`}>
+        {probe.name}
+      </Link>{' '}
+      <span className="text-soft">{probe.usualRole}</span>
+    </span>
+  ))
+}
+
 /** Hearths with what stands there now and the probes that usually do. */
-export function HearthTable({ room: { hearths, mayWrite } }: { room: RoomPicture }) {
+export function HearthTable({ hearths, mayWrite }: { hearths: readonly HearthDto[]; mayWrite: boolean }) {
   const columns: Column<HearthDto>[] = [
     {
       key: 'number',
@@ -67,7 +78,7 @@ export function HearthTable({ room: { hearths, mayWrite } }: { room: RoomPicture
         hearth.probes.length === 0 ? (
           <span className="text-amber">none: a firing needs its lead probe</span>
         ) : (
-          hearth.probes.map((probe) => `${probe.name} (${probe.usualRole})`).join(', ')
+          <ProbeLinks probes={hearth.probes} />
         ),
     },
   ]

@@ -1,12 +1,13 @@
 import { FormDialog } from '@/components/ui/form-dialog'
 import type { FormField } from '@/components/ui/form-dialog'
-import type { RoomPicture } from '@/lib/probes/get-room-picture'
 import { probeHeights, probeMountings, thermocoupleTypes, usualRoles } from '@/lib/probes/schema'
-import type { ProbeDto } from '@/lib/probes/schema'
+import type { GatewayDto, HearthDto, ProbeDto } from '@/lib/probes/schema'
 
 const optionsOf = (values: readonly string[]) => values.map((value) => ({ value, label: value }))
 
-function probeFields({ gateways, hearths }: RoomPicture, probe?: ProbeDto): FormField[] {
+type Choices = { gateways: readonly GatewayDto[]; hearths: readonly HearthDto[] }
+
+function probeFields({ gateways, hearths }: Choices, probe?: ProbeDto): FormField[] {
   return [
     { name: 'name', label: 'Name', kind: 'text', defaultValue: probe?.name },
     {
@@ -72,7 +73,7 @@ function probeFields({ gateways, hearths }: RoomPicture, probe?: ProbeDto): Form
   ]
 }
 
-export function NewProbe({ room }: { room: RoomPicture }) {
+export function NewProbe({ choices }: { choices: Choices }) {
   return (
     <FormDialog
       openLabel="Add a probe"
@@ -80,26 +81,35 @@ export function NewProbe({ room }: { room: RoomPicture }) {
       submitLabel="Add"
       method="POST"
       path="/api/probes"
-      fields={probeFields(room)}
+      fields={probeFields(choices)}
+      doneHref="/probes/{id}"
     >
       <p>A reading belongs to its place: half a millimetre of depth is about 5 °C late in a toast.</p>
     </FormDialog>
   )
 }
 
-export function ChangeProbe({ probe, room }: { probe: ProbeDto; room: RoomPicture }) {
+export function ChangeProbe({
+  probe,
+  choices,
+  kind = 'quiet',
+}: {
+  probe: ProbeDto
+  choices: Choices
+  kind?: 'quiet' | 'plain'
+}) {
   return (
     <FormDialog
       openLabel="Change"
-      openKind="quiet"
+      openKind={kind}
       openFor={probe.name}
       title={`Change ${probe.name}`}
       submitLabel="Save"
       method="PUT"
       path={`/api/probes/${probe.id}`}
-      fields={probeFields(room, probe)}
+      fields={probeFields(choices, probe)}
     >
-      <p>Past firings keep the place that the probe had then.</p>
+      <p>Past firings keep the place that the probe had then, and its history says who moved it when.</p>
     </FormDialog>
   )
 }

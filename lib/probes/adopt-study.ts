@@ -51,6 +51,7 @@ export async function adoptStudy(
           ...before.rules,
           errors: { ...before.rules.errors, sameMountLog10, isSameMountAssumed: false },
         },
+        room: before.room,
       },
       { repeatabilityStudy: number },
     )

@@ -2,7 +2,8 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { closeOrm, forkEm, queryRows } from '@/lib/db/orm'
 import { abandonFiring } from '@/lib/firings/abandon-firing'
 import { createGateway } from '@/lib/probes/create-gateway'
-import { getRoomPicture } from '@/lib/probes/get-room-picture'
+import { getGatewayPage } from '@/lib/probes/get-gateway-page'
+import { getProbesPage } from '@/lib/probes/get-probes-page'
 import { listProbes } from '@/lib/probes/list-probes'
 import { listWaterChecks } from '@/lib/probes/list-water-checks'
 import { recordProbeCheck } from '@/lib/probes/record-probe-check'
@@ -188,22 +189,23 @@ describe('the room’s equipment', () => {
     }
     const check = { source: 'Tank', tcaNgPerL: 0, freeChlorineMgPerL: 0, dueAt: inDays(3) }
     expect((await refusalOf(recordWaterCheck(people.chemist.actor, check))).kind).toBe('not allowed')
-    expect((await refusalOf(getRoomPicture(people.customer.actor, { limit: 50 }))).kind).toBe('not allowed')
+    expect((await refusalOf(getProbesPage(people.customer.actor, { limit: 50 }))).kind).toBe('not allowed')
   })
 
   it('shows device tokens to administrators alone, never the token itself', async () => {
     const gateway = await createGateway(people.administrator.actor, { name: 'Yard', mayReplay: false })
     const made = await issueGatewayToken(people.administrator.actor, { gatewayId: gateway.id })
-    const room = await getRoomPicture(people.administrator.actor, { limit: 50 })
-    expect(room.tokens[gateway.id]?.map((token) => [token.id, token.revokedAt])).toEqual([[made.id, null]])
-    expect(JSON.stringify(room)).not.toContain(made.token)
-    const seen = await getRoomPicture(people.masterCooper.actor, { limit: 50 })
-    expect(Object.values(seen.tokens).flat()).toEqual([])
-    expect(seen.gateways.find((one) => one.id === gateway.id)?.tokenCount).toBe(1)
-    await revokeGatewayToken(people.administrator.actor, { gatewayId: gateway.id, tokenId: made.id })
-    const after = await getRoomPicture(people.administrator.actor, { limit: 50 })
-    expect(after.gateways.find((one) => one.id === gateway.id)?.tokenCount).toBe(0)
-    expect(after.tokens[gateway.id]?.[0]?.revokedAt).not.toBeNull()
+    const { id } = gateway
+    const page = await getGatewayPage(people.administrator.actor, { id })
+    expect(page.tokens?.map((token) => [token.id, token.revokedAt])).toEqual([[made.id, null]])
+    expect(JSON.stringify(page)).not.toContain(made.token)
+    const seen = await getGatewayPage(people.masterCooper.actor, { id })
+    expect(seen.tokens).toBeNull()
+    expect(seen.gateway.tokenCount).toBe(1)
+    await revokeGatewayToken(people.administrator.actor, { gatewayId: id, tokenId: made.id })
+    const after = await getGatewayPage(people.administrator.actor, { id })
+    expect(after.gateway.tokenCount).toBe(0)
+    expect(after.tokens?.[0]?.revokedAt).not.toBeNull()
   })
 
   it('keeps a gateway’s name its own, and every change in the audit trail', async () => {

@@ -102,12 +102,17 @@ describe('a gateway’s tokens', () => {
     createdBy: 'P. Quill',
     lastUsedAt: null,
     revokedAt: null,
+    expiresAt: null,
   }
 
   function Tokens() {
     return (
       <ToastProvider>
-        <GatewayTokens gateway={{ id: 'g1', name: 'Shed' }} tokens={[token]} zone="Europe/London" />
+        <GatewayTokens
+          gateway={{ id: 'g1', name: 'Shed', isRetired: false }}
+          tokens={[token]}
+          zone="Europe/London"
+        />
       </ToastProvider>
     )
   }
@@ -115,7 +120,6 @@ describe('a gateway’s tokens', () => {
   test('a new one is shown once, after asking', async () => {
     const sent = stubServer(201, { id: 't2', token: 'emb_secret' })
     render(<Tokens />)
-    await userEvent.click(screen.getByRole('button', { name: 'Tokens of Shed' }))
     await userEvent.click(screen.getByRole('button', { name: 'New token' }))
     await userEvent.click(screen.getByRole('button', { name: 'Make the token' }))
     expect(sent.map((one) => [one.method, one.url])).toEqual([['POST', '/api/gateways/g1/tokens']])
@@ -124,10 +128,29 @@ describe('a gateway’s tokens', () => {
     expect(screen.queryByLabelText('Device token')).toBeNull()
   })
 
+  test('a code to enrol is shown once, with the time it ends', async () => {
+    const sent = stubServer(201, { code: 'K7QW-3M9X-TR4H', expiresAt: '2026-03-01T10:30:00.000Z' })
+    render(<Tokens />)
+    await userEvent.click(screen.getByRole('button', { name: 'Make a code to enrol' }))
+    await userEvent.click(screen.getByRole('button', { name: 'Make the code' }))
+    expect(sent.map((one) => [one.method, one.url])).toEqual([['POST', '/api/gateways/g1/enrolment-codes']])
+    expect(screen.getByLabelText('Code')).toHaveProperty('value', 'K7QW-3M9X-TR4H')
+    expect(screen.getByText(/before 10:30/)).toBeTruthy()
+  })
+
+  test('one is rotated after asking, and the new one shown once', async () => {
+    const sent = stubServer(201, { id: 't2', token: 'emb_next' })
+    render(<Tokens />)
+    await userEvent.click(screen.getByRole('button', { name: 'Rotate' }))
+    const asked = screen.getByRole('dialog', { name: 'Rotate a token of Shed?' })
+    await userEvent.click(within(asked).getByRole('button', { name: 'Rotate' }))
+    expect(sent.map((one) => [one.method, one.url])).toEqual([['POST', '/api/gateways/g1/tokens/t1/rotate']])
+    expect(screen.getByLabelText('Device token')).toHaveProperty('value', 'emb_next')
+  })
+
   test('one is revoked after asking', async () => {
     const sent = stubServer(204, null)
     render(<Tokens />)
-    await userEvent.click(screen.getByRole('button', { name: 'Tokens of Shed' }))
     await userEvent.click(screen.getByRole('button', { name: 'Revoke' }))
     const asked = screen.getByRole('dialog', { name: 'Revoke this token?' })
     await userEvent.click(within(asked).getByRole('button', { name: 'Revoke' }))
