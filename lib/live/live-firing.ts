@@ -21,10 +21,12 @@ import { createRunningDose } from '@/lib/live/running-dose'
 import { nextAction, stageNow } from '@/lib/live/stage-now'
 import { planDoseAt } from '@/lib/recipes/plan-of'
 import { climbRateCPerMin } from '@/lib/science/curve'
+import { gapHalfLog10 } from '@/lib/science/dose-interval'
 import { percentAboveFromLog10 } from '@/lib/science/dose-ratio'
 import { fillGaps, gapExtremes } from '@/lib/science/gaps'
 import { planTempCAt } from '@/lib/science/plan'
 import { recordSpacingS } from '@/lib/science/record-spacing'
+import { sameMountHalfLog10 } from '@/lib/science/same-mount'
 import { climbsCPerMin } from '@/lib/science/score-limits'
 
 /** What makes viewers be told at once, and not only at the next second. */
@@ -230,13 +232,16 @@ function climbOver(curve: RoleCurve, windowS: number, atMs: number): number | nu
   return Number.isNaN(climb) ? null : climb
 }
 
+/** A thousandth to a thousand times: wider says no more. */
+const WIDEST_LOG10 = 3
+
 type DoseGaps = { atMs: number; log10Half: number; isIncomplete: boolean }
 
 /** How good the dose is: the same-mount interval, widened by gaps over 30 s, and whether gaps leave it incomplete. */
 function doseGaps(facts: FiringFacts, curve: RoleCurve, doseMin: number, atMs: number): DoseGaps {
   const { rules, toastMs, restMs, plan } = facts
-  const assumed = rules.errors.sameMountLog10
-  const none = { atMs, log10Half: assumed, isIncomplete: false }
+  const sameMount = sameMountHalfLog10(rules)
+  const none = { atMs, log10Half: sameMount, isIncomplete: false }
   if (toastMs === null) return none
   const toS = ((restMs ?? atMs) - toastMs) / 1000
   if (toS <= 0) return none
@@ -255,8 +260,6 @@ function doseGaps(facts: FiringFacts, curve: RoleCurve, doseMin: number, atMs: n
   }
   const lastC = plan.points.at(-1)?.tempC ?? 0
   const extremes = gapExtremes(filled, rules.dose, (at) => planTempCAt(plan.points, at) ?? lastC)
-  const lowMin = Math.max(doseMin - extremes.joinedMin + extremes.lowMin, doseMin * 1e-3)
-  const highMin = doseMin - extremes.joinedMin + extremes.highMin
-  const gapHalf = Math.max(Math.log10(doseMin / lowMin), Math.log10(highMin / doseMin), 0)
-  return { atMs, log10Half: Math.hypot(assumed, gapHalf), isIncomplete }
+  const { low, high } = gapHalfLog10(doseMin, extremes)
+  return { atMs, log10Half: Math.hypot(sameMount, Math.min(WIDEST_LOG10, Math.max(low, high))), isIncomplete }
 }

@@ -1,15 +1,5 @@
-import { log10FromOffset } from '@/lib/science/dose-ratio'
+import { sameMountHalfLog10 } from '@/lib/science/same-mount'
 import type { SiteRules } from '@/lib/science/site-rules'
-
-/**
- * Half-width of the site's same-mount interval, log10 of dose, k = 2 (SCIENCE §2): the repeatability of placing the
- * probe, and, once that is measured, the drift between two checks as a dose (drift ÷ z), as squares. The assumed
- * figure covers drift.
- */
-export function sameMountHalfLog10(rules: Pick<SiteRules, 'errors' | 'dose'>): number {
-  const { sameMountLog10, isSameMountAssumed, driftC } = rules.errors
-  return isSameMountAssumed ? sameMountLog10 : Math.hypot(sameMountLog10, log10FromOffset(rules.dose, driftC))
-}
 
 /** The smallest tolerance that the site can honestly ask: twice its same-mount interval, rounded up to 0.001. */
 export function smallestHonestTolerance(rules: Pick<SiteRules, 'errors' | 'dose'>): number {

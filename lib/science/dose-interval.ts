@@ -118,7 +118,7 @@ function addSegment(
 }
 
 /** Half-widths in log10 below and above; Infinity below when the low end is no dose at all. */
-type Half = { low: number; high: number }
+export type Half = { low: number; high: number }
 
 function combine(halves: readonly Half[]): Half {
   return {
@@ -173,7 +173,7 @@ export function doseInterval(input: DoseIntervalInput): DoseResult {
       high: Math.log10((shifted[1 + i] ?? NaN) / unshifted),
     }))
   }
-  const gapHalf = gaps === null ? [] : [gapHalfOf(doseMin, gaps)]
+  const gapHalf = gaps === null ? [] : [gapHalfLog10(doseMin, gaps)]
   const sameMount = { low: errors.sameMountLog10, high: errors.sameMountLog10 }
   return {
     doseMin,
@@ -185,7 +185,13 @@ export function doseInterval(input: DoseIntervalInput): DoseResult {
   }
 }
 
-function gapHalfOf(doseMin: number, gaps: GapExtremes): Half {
+/**
+ * What gaps that widen do to a dose, log10 below and above, k = 2: its gaps at their lower and upper extreme in place of
+ * as they were joined. Infinity below when nothing but the gaps counted.
+ *
+ * @param doseMin above 0, gaps joined
+ */
+export function gapHalfLog10(doseMin: number, gaps: GapExtremes): Half {
   const lowMin = doseMin - gaps.joinedMin + gaps.lowMin
   const highMin = doseMin - gaps.joinedMin + gaps.highMin
   return {

@@ -1,4 +1,5 @@
 import { requireNumbers, requirePositive, requireProbability } from './domain'
+import { ratioFromLog10 } from './dose-ratio'
 import type { Estimate } from './estimate'
 import { USUAL_CONFIDENCE } from './estimate'
 import { chiSquareQuantile, mean, sampleSd, tQuantile } from './statistics'
@@ -36,7 +37,7 @@ export function logDoseSummary(
   const logs = dosesMin.map((doseMin, i) => Math.log10(requirePositive(`dosesMin[${i}]`, doseMin)))
   const n = logs.length
   const meanLog10 = mean(logs)
-  const one = { n, meanLog10, geometricMeanMin: 10 ** meanLog10 }
+  const one = { n, meanLog10, geometricMeanMin: ratioFromLog10(meanLog10) }
   if (n === 1)
     return { ...one, sdLog10: null, geometricMeanIntervalMin: null, spreadPercent: null, cvPercent: null }
   const sdLog10 = sampleSd(logs)
@@ -50,7 +51,10 @@ export function logDoseSummary(
   return {
     ...one,
     sdLog10,
-    geometricMeanIntervalMin: { low: 10 ** (meanLog10 - reach), high: 10 ** (meanLog10 + reach) },
+    geometricMeanIntervalMin: {
+      low: ratioFromLog10(meanLog10 - reach),
+      high: ratioFromLog10(meanLog10 + reach),
+    },
     spreadPercent: mapEstimate(sd, (value) => 100 * Math.expm1(value * Math.LN10)),
     cvPercent: mapEstimate(sd, (value) => 100 * Math.sqrt(Math.expm1((value * Math.LN10) ** 2))),
   }
