@@ -10,6 +10,7 @@ export const SiteSettingsEntity = defineEntity({
     serialPrefix: p.text(),
     timeZone: p.text(),
     rules: p.json<unknown>(),
+    room: p.json<unknown>(),
     isDemo: p.boolean().default(false),
     createdAt: p.datetime(),
     createdBy: p.uuid().nullable(),

@@ -15,6 +15,7 @@ import { describeChanges } from '@/lib/audit/describe-changes'
 import { callApi, isApiProblem } from '@/lib/http/api-client'
 import type { SiteSettingsDto } from '@/lib/site/schema'
 import { ruleGroups } from './rule-fields'
+import { RoomSettingsFields } from './room-settings-fields'
 import { RuleInput } from './rule-input'
 import type { Bounds } from './rule-values'
 import { readAt, writeAt } from './rule-values'
@@ -23,6 +24,13 @@ const labels: Record<string, string> = {
   name: 'Name',
   serialPrefix: 'Serial prefix',
   timeZone: 'Time zone',
+  'room.words.colour': 'Words for colour',
+  'room.words.smell': 'Words for smell',
+  'room.conditions.nearestWithinH': 'A reading of the air belongs to a firing within',
+  'room.exposure.carbonMonoxideLimits': 'Limits for carbon monoxide',
+  'room.exposure.metabolicRateW': 'Metabolic rate of the work',
+  'room.exposure.heatSource': 'Where the heat limits stand',
+  'room.exposure.readingHoldsMin': 'A reading stands until the next, at most',
   ...Object.fromEntries(
     ruleGroups.flatMap((group) => group.fields.map((field) => [`rules.${field.path}`, field.label])),
   ),
@@ -47,8 +55,8 @@ export function SettingsForm({ settings, bounds, timeZones, unit, isReadOnly }: 
 
   async function save(event: FormEvent) {
     event.preventDefault()
-    const { name, serialPrefix, timeZone, rules } = draft
-    const body = { version: (theirs ?? settings).version, name, serialPrefix, timeZone, rules }
+    const { name, serialPrefix, timeZone, rules, room } = draft
+    const body = { version: (theirs ?? settings).version, name, serialPrefix, timeZone, rules, room }
     const isSaved = await send(async () => {
       try {
         const saved = await callApi<SiteSettingsDto>('PUT', '/api/site-settings', { body })
@@ -94,6 +102,12 @@ export function SettingsForm({ settings, bounds, timeZones, unit, isReadOnly }: 
           </div>
         </fieldset>
       ))}
+      <RoomSettingsFields
+        room={draft.room}
+        onChange={(room) => change({ room })}
+        fields={problem?.fields ?? {}}
+        isReadOnly={isReadOnly}
+      />
       {isReadOnly ? null : (
         <div className="mt-8 flex flex-wrap items-center gap-4">
           <Button type="submit" kind="main" isBusy={isBusy}>
@@ -106,17 +120,22 @@ export function SettingsForm({ settings, bounds, timeZones, unit, isReadOnly }: 
   )
 }
 
+function said(value: unknown): string {
+  return typeof value === 'object' && value !== null ? JSON.stringify(value) : String(value)
+}
+
 function readSettings(): Promise<SiteSettingsDto> {
   return callApi<SiteSettingsDto>('GET', '/api/site-settings')
 }
 
 /** After a stale edit: where the version in force differs from what is typed here. */
 function BothSides({ theirs, mine }: { theirs: SiteSettingsDto; mine: SiteSettingsDto }) {
-  const pick = ({ name, serialPrefix, timeZone, rules }: SiteSettingsDto) => ({
+  const pick = ({ name, serialPrefix, timeZone, rules, room }: SiteSettingsDto) => ({
     name,
     serialPrefix,
     timeZone,
     rules,
+    room,
   })
   const changes = Object.entries(describeChanges(pick(theirs), pick(mine)))
   return (
@@ -128,7 +147,7 @@ function BothSides({ theirs, mine }: { theirs: SiteSettingsDto; mine: SiteSettin
       <ul className="mt-1">
         {changes.map(([path, { from, to }]) => (
           <li key={path}>
-            {labels[path] ?? path}: {String(from)} there, {String(to)} here
+            {labels[path] ?? path}: {said(from)} there, {said(to)} here
           </li>
         ))}
       </ul>

@@ -5,6 +5,8 @@ import { AppError } from '@/lib/errors'
 import { now } from '@/lib/runtime'
 import type { SiteRules } from '@/lib/science/site-rules'
 import { defaultSiteRules } from '@/lib/science/site-rules'
+import type { RoomSettings } from '@/lib/site/room-settings'
+import { defaultRoomSettings } from '@/lib/site/room-settings'
 
 /** A site that nobody has named yet; the administrator gives it its name on the settings page. */
 export const unnamedSite = {
@@ -19,18 +21,26 @@ export const unnamedSite = {
  */
 export async function createSite(
   actor: SystemActor,
-  input: { name: string; serialPrefix: string; timeZone: string; isDemo: boolean; rules?: SiteRules },
+  input: {
+    name: string
+    serialPrefix: string
+    timeZone: string
+    isDemo: boolean
+    rules?: SiteRules
+    room?: RoomSettings
+  },
 ): Promise<void> {
   await inTransaction(async (em) => {
     const written = await queryRows<{ version: number }>(
       em,
-      `insert into site_settings (version, name, serial_prefix, time_zone, rules, is_demo, created_at)
-       values (1, ?, ?, ?, ?::jsonb, ?, ?) on conflict (version) do nothing returning version`,
+      `insert into site_settings (version, name, serial_prefix, time_zone, rules, room, is_demo, created_at)
+       values (1, ?, ?, ?, ?::jsonb, ?::jsonb, ?, ?) on conflict (version) do nothing returning version`,
       [
         input.name,
         input.serialPrefix,
         input.timeZone,
         JSON.stringify(input.rules ?? defaultSiteRules),
+        JSON.stringify(input.room ?? defaultRoomSettings),
         input.isDemo,
         now(),
       ],

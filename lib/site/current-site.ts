@@ -4,6 +4,8 @@ import { AppError } from '@/lib/errors'
 import { shared } from '@/lib/runtime'
 import type { SiteRules } from '@/lib/science/site-rules'
 import { siteRulesSchema } from '@/lib/science/site-rules'
+import type { RoomSettings } from '@/lib/site/room-settings'
+import { readStoredRoom } from '@/lib/site/room-settings'
 
 export type Site = {
   version: number
@@ -12,6 +14,7 @@ export type Site = {
   /** IANA name. */
   timeZone: string
   rules: SiteRules
+  room: RoomSettings
   isDemo: boolean
 }
 
@@ -21,6 +24,7 @@ type SiteRow = {
   serial_prefix: string
   time_zone: string
   rules: unknown
+  room: unknown
   is_demo: boolean
 }
 
@@ -52,7 +56,7 @@ export async function currentSite(em?: EntityManager): Promise<Site> {
 export async function siteOfVersion(em: EntityManager, version: number): Promise<Site> {
   const [row] = await queryRows<SiteRow>(
     em,
-    'select version, name, serial_prefix, time_zone, rules, is_demo from site_settings where version = ?',
+    'select version, name, serial_prefix, time_zone, rules, room, is_demo from site_settings where version = ?',
     [version],
   )
   if (row === undefined) throw new AppError('not found', `There are no site settings of version ${version}.`)
@@ -62,6 +66,7 @@ export async function siteOfVersion(em: EntityManager, version: number): Promise
     serialPrefix: row.serial_prefix,
     timeZone: row.time_zone,
     rules: siteRulesSchema.parse(row.rules),
+    room: readStoredRoom(row.room),
     isDemo: row.is_demo,
   }
 }

@@ -12,7 +12,7 @@ export async function getSiteSettings(actor: Actor): Promise<SiteSettingsDto> {
 }
 
 export async function readSiteSettings(em: EntityManager): Promise<SiteSettingsDto> {
-  const { version, name, serialPrefix, timeZone, rules, isDemo } = await currentSite(em)
+  const { version, name, serialPrefix, timeZone, rules, room, isDemo } = await currentSite(em)
   const [row] = await queryRows<{ created_at: Date | string; changed_by: string | null }>(
     em,
     `select s.created_at, a.name as changed_by
@@ -26,6 +26,7 @@ export async function readSiteSettings(em: EntityManager): Promise<SiteSettingsD
     serialPrefix,
     timeZone,
     rules,
+    room,
     isDemo,
     changedAt: new Date(row.created_at).toISOString(),
     changedBy: row.changed_by,

@@ -1,5 +1,6 @@
 import * as z from 'zod'
 import { alarmRulesSchema, signalRulesSchema, siteRulesSchema } from '@/lib/science/site-rules'
+import { roomSettingsSchema } from '@/lib/site/room-settings'
 
 export const siteName = z
   .string('Write the cooperage’s name.')
@@ -33,6 +34,7 @@ export const siteSettingsBody = z.strictObject({
   timeZone,
   // Whole: what is left out of a change is not taken for a default.
   rules: siteRulesSchema.extend({ signals: signalRulesSchema, alarms: alarmRulesSchema }),
+  room: roomSettingsSchema,
 })
 export type SiteSettingsBody = z.infer<typeof siteSettingsBody>
 
@@ -42,6 +44,7 @@ export const siteSettingsSchema = z.object({
   serialPrefix: z.string(),
   timeZone: z.string(),
   rules: siteRulesSchema,
+  room: roomSettingsSchema,
   isDemo: z.boolean(),
   changedAt: z.iso.datetime(),
   /** Null for the version that set-up wrote. */

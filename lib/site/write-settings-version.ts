@@ -33,8 +33,8 @@ export async function writeSettingsVersion(
   return readSiteSettings(em)
 }
 
-function settingsOf({ name, serialPrefix, timeZone, rules }: Omit<SiteSettingsBody, 'version'>) {
-  return { name, serialPrefix, timeZone, rules }
+function settingsOf({ name, serialPrefix, timeZone, rules, room }: Omit<SiteSettingsBody, 'version'>) {
+  return { name, serialPrefix, timeZone, rules, room }
 }
 
 async function insertVersion(
@@ -47,14 +47,15 @@ async function insertVersion(
   await queryRows(
     em,
     `insert into site_settings
-       (version, name, serial_prefix, time_zone, rules, is_demo, created_at, created_by)
-     values (?, ?, ?, ?, ?::jsonb, ?, ?, ?)`,
+       (version, name, serial_prefix, time_zone, rules, room, is_demo, created_at, created_by)
+     values (?, ?, ?, ?, ?::jsonb, ?::jsonb, ?, ?, ?)`,
     [
       version,
       input.name,
       input.serialPrefix,
       input.timeZone,
       JSON.stringify(input.rules),
+      JSON.stringify(input.room),
       isDemo,
       now(),
       accountId,

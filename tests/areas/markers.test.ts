@@ -377,7 +377,9 @@ describe('a fit', () => {
     )
     const deeper = { ...content(164), leadPlace: { ...content(164).leadPlace, depthMm: 4 } }
     expect(await refusalFor('Read deeper', deeper)).toContain('rests on doses read at bilge A, 2 mm, wedge')
-    const { version, name, serialPrefix, timeZone, rules } = await getSiteSettings(people.administrator.actor)
+    const { version, name, serialPrefix, timeZone, rules, room } = await getSiteSettings(
+      people.administrator.actor,
+    )
     const otherRules = { ...rules, dose: { ...rules.dose, zC: 30 } }
     await updateSiteSettings(people.administrator.actor, {
       version,
@@ -385,6 +387,7 @@ describe('a fit', () => {
       serialPrefix,
       timeZone,
       rules: otherRules,
+      room,
     })
     const { predictions } = await predictMarkers(people.chemist.actor, { id: versionId })
     expect(predictions.find((one) => one.marker.key === 'vanillin')?.refusal).toContain('other site rules')

@@ -29,10 +29,10 @@ async function read(): Promise<SiteSettingsDto> {
 }
 
 async function put(change: object) {
-  const { version, name, serialPrefix, timeZone, rules } = await read()
+  const { version, name, serialPrefix, timeZone, rules, room } = await read()
   return callRoute('PUT', '/api/site-settings', {
     cookie: people.administrator.cookie,
-    body: { version, name, serialPrefix, timeZone, rules, ...change },
+    body: { version, name, serialPrefix, timeZone, rules, room, ...change },
   })
 }
 
