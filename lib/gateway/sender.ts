@@ -56,8 +56,8 @@ const STOP_WITHIN_MS = 2_000
 /**
  * Sends what the spool holds, one message at a time and in order, and drops what the server acknowledges. Whatever
  * was not acknowledged is sent again: after exponential backoff with jitter when the server cannot be reached or
- * has trouble of its own, every `slowRetryMs` when it refuses the token or the message. Nothing is ever thrown
- * away because the server refused it whole.
+ * has trouble of its own, sooner when a way opens; every `slowRetryMs` when it refuses the token or the message.
+ * Nothing is ever thrown away because the server refused it whole.
  */
 export function createSender(options: SenderOptions): Sender {
   const { spool, transports, clock = systemClock, random = Math.random } = options
@@ -173,6 +173,13 @@ export function createSender(options: SenderOptions): Sender {
     })
   }
 
+  for (const transport of transports) {
+    transport.onOpened?.(() => {
+      if (state !== 'backing off') return
+      cancelWait()
+      proceed()
+    })
+  }
   return {
     wake: () => {
       if (state === 'idle') proceed()

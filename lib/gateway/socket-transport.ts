@@ -22,8 +22,9 @@ export function createSocketTransport(options: SocketTransportOptions): Transpor
     auth: (give) => give({ token: typeof token === 'string' ? token : token() }),
     transports: ['websocket'],
     reconnectionDelay: 500,
-    reconnectionDelayMax: 15_000,
-    randomizationFactor: 0.5,
+    // A fire waits for nobody: the server is looked for every second or two.
+    reconnectionDelayMax: 1_500,
+    randomizationFactor: 0.3,
     timeout: timeoutMs,
     forceNew: true,
   })
@@ -54,6 +55,7 @@ export function createSocketTransport(options: SocketTransportOptions): Transpor
       refusal = null
       if (!socket.connected && !socket.active) socket.connect()
     },
+    onOpened: (then) => void socket.on('connect', then),
     close: () => {
       socket.off('disconnect', connectLater)
       clearTimeout(retry)

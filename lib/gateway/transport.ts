@@ -15,6 +15,8 @@ export type Transport = {
   send: (message: IngestMessage) => Promise<SendOutcome>
   /** Tries again after a refusal or a loss, when the transport does not do so by itself. */
   reconnect: () => void
+  /** Calls back whenever the way has opened, for a transport that notices. */
+  onOpened?: (then: () => void) => void
   close: () => Promise<void>
 }
 

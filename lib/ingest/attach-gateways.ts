@@ -7,7 +7,7 @@ import { isAppError } from '@/lib/errors'
 import { events } from '@/lib/live/events'
 import { hubDoor } from '@/lib/live/hub-door'
 import { log } from '@/lib/log'
-import { nowMs } from '@/lib/runtime'
+import { now, nowMs } from '@/lib/runtime'
 
 /** How often the token of a gateway that is silent is looked at again. */
 const recheckMs = 2_500
@@ -63,9 +63,10 @@ function tokenOf(socket: Socket): string | null {
 }
 
 async function receive(socket: Socket, message: unknown, reply: (answer: object) => void): Promise<void> {
+  const receivedAt = now()
   try {
     const gateway = await verifyDeviceToken(tokenOf(socket))
-    reply(await storeReadings(gateway, message))
+    reply(await storeReadings(gateway, message, receivedAt))
   } catch (error) {
     reply(toProblem(error))
     if (isTokenRefusal(error)) socket.disconnect(true)

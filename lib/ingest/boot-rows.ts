@@ -7,6 +7,7 @@ import type { Boot } from '@/lib/ingest/ingest-pool'
 import { rememberedProbes } from '@/lib/ingest/ingest-pool'
 import type { SeqRanges } from '@/lib/ingest/seq-ranges'
 import { parseSeqRanges, printSeqRanges } from '@/lib/ingest/seq-ranges'
+import type { CommittedRows } from '@/lib/live/hub-door'
 import type { KnownProbe, RefusedReading, SortedReadings } from '@/lib/ingest/sort-readings'
 
 /** A boot's row, its gateway's probes and the statements that write; named, so that a connection parses each once. */
@@ -94,6 +95,46 @@ async function readProbes(
 
 function toKnownProbe(row: ProbeRow): KnownProbe {
   return { no: row.no, isOwn: row.is_own, isRetired: row.is_retired }
+}
+
+type CommittedRow = {
+  probe_no: number
+  at_ms: string
+  emf_tenth_uv: number | null
+  cold_centi_c: number | null
+  temp_centi_c: number | null
+  flag: number
+}
+
+/** Readings of a boot by their numbers, as they are stored; those that were refused, lost or sealed away are left out. */
+export async function readRows(
+  client: Queryable,
+  bootNo: number,
+  seqs: readonly number[],
+): Promise<CommittedRows> {
+  const { rows } = await client.query<CommittedRow>({
+    name: 'read-rows',
+    text: `select probe_no, at_ms, emf_tenth_uv, cold_centi_c, temp_centi_c, flag
+             from readings where boot_no = $1 and seq = any($2::int8[]) order by seq`,
+    values: [bootNo, int8Array(seqs)],
+  })
+  return {
+    probeNo: rows.map((row) => row.probe_no),
+    atMs: rows.map((row) => Number(row.at_ms)),
+    emfTenthUv: rows.map((row) => row.emf_tenth_uv),
+    coldCentiC: rows.map((row) => row.cold_centi_c),
+    tempCentiC: rows.map((row) => row.temp_centi_c),
+    flag: rows.map((row) => row.flag),
+  }
+}
+
+/** Instant of the reading of a boot with the highest number, as it is stored; null when none is in the table. */
+export async function newestAtMs(client: Queryable, bootNo: number): Promise<number | null> {
+  const { rows } = await client.query<{ at_ms: string }>(
+    'select at_ms from readings where boot_no = $1 order by seq desc limit 1',
+    [bootNo],
+  )
+  return rows[0] === undefined ? null : Number(rows[0].at_ms)
 }
 
 export type BootChange = {

@@ -1,6 +1,7 @@
 import { Pool } from 'pg'
 import { env } from '@/lib/env'
 import { log } from '@/lib/log'
+import type { ClockWatch } from '@/lib/ingest/clock-offset'
 import type { SeqRanges } from '@/lib/ingest/seq-ranges'
 import type { KnownProbe } from '@/lib/ingest/sort-readings'
 import { shared } from '@/lib/runtime'
@@ -18,6 +19,7 @@ type Held = {
   pool: Pool | null
   knownDays: Set<number>
   boots: Map<string, Boot>
+  clocks: Map<string, ClockWatch>
   probes: Map<string, ProbesOfGateway>
 }
 
@@ -26,6 +28,7 @@ function held(): Held {
     pool: null,
     knownDays: new Set(),
     boots: new Map(),
+    clocks: new Map(),
     probes: new Map(),
   }))
 }
@@ -55,6 +58,11 @@ export function rememberedBoots(): Map<string, Boot> {
   return held().boots
 }
 
+/** What was seen of boots' clocks, by gateway and boot id. */
+export function rememberedClocks(): Map<string, ClockWatch> {
+  return held().clocks
+}
+
 /** Probes by gateway. */
 export function rememberedProbes(): Map<string, ProbesOfGateway> {
   return held().probes
@@ -64,6 +72,6 @@ export async function closeIngestPool(): Promise<void> {
   const holder = held()
   const pool = holder.pool
   holder.pool = null
-  for (const known of [holder.knownDays, holder.boots, holder.probes]) known.clear()
+  for (const known of [holder.knownDays, holder.boots, holder.clocks, holder.probes]) known.clear()
   await pool?.end()
 }

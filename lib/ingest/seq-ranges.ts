@@ -31,6 +31,11 @@ export function hasSeq(ranges: SeqRanges, seq: number): boolean {
   return low % 2 === 1
 }
 
+/** The highest number in the set; -1 for an empty one. */
+export function highestSeqOf(ranges: SeqRanges): number {
+  return (ranges.at(-1) ?? 0) - 1
+}
+
 /** Both sets together; `added` are ranges in any order, overlapping as they like. */
 export function uniteSeqRanges(ranges: SeqRanges, added: readonly (readonly [number, number])[]): number[] {
   if (added.length === 0) return [...ranges]

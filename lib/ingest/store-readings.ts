@@ -2,23 +2,32 @@ import type { PoolClient } from 'pg'
 import { databaseErrorCode } from '@/lib/db/database-errors'
 import { AppError } from '@/lib/errors'
 import type { IngestAnswer, Loss } from '@/lib/gateway/protocol'
-import { insertLosses, insertRefused, probesOf, readBoot, writeReadings } from '@/lib/ingest/boot-rows'
+import {
+  insertLosses,
+  insertRefused,
+  newestAtMs,
+  probesOf,
+  readBoot,
+  readRows,
+  writeReadings,
+} from '@/lib/ingest/boot-rows'
+import type { ClockOffset, ClockWatch } from '@/lib/ingest/clock-offset'
+import { nextClockOffset } from '@/lib/ingest/clock-offset'
 import { ensurePartitions, forgetPartitions } from '@/lib/ingest/ensure-partitions'
 import type { Boot } from '@/lib/ingest/ingest-pool'
-import { ingestPool, rememberedBoots } from '@/lib/ingest/ingest-pool'
+import { ingestPool, rememberedBoots, rememberedClocks } from '@/lib/ingest/ingest-pool'
 import { noteLateRows } from '@/lib/ingest/late-rows'
 import { noteGatewayStatus } from '@/lib/ingest/note-gateway-status'
 import type { Envelope } from '@/lib/ingest/read-envelope'
 import { readEnvelope } from '@/lib/ingest/read-envelope'
-import { ackedSeqOf, printSeqRanges, runsOf, uniteSeqRanges } from '@/lib/ingest/seq-ranges'
+import { ackedSeqOf, highestSeqOf, printSeqRanges, runsOf, uniteSeqRanges } from '@/lib/ingest/seq-ranges'
 import type { SortedReadings } from '@/lib/ingest/sort-readings'
 import { sortReadings } from '@/lib/ingest/sort-readings'
 import type { GatewayIdentity } from '@/lib/ingest/verify-device-token'
+import type { CommittedRows } from '@/lib/live/hub-door'
 import { hubDoor } from '@/lib/live/hub-door'
 import { now } from '@/lib/runtime'
 
-/** A boot's clock offset is taken again only when it has moved by more than this (decision 4). */
-const offsetStepMs = 1_000
 /** `clock_offset_ms` is a 32-bit integer: 24 days. */
 const largestOffsetMs = 2_147_483_647
 /** A boot whose numbers lie in more pieces than this is not counting; it would make every message dear. */
@@ -28,31 +37,49 @@ const noPartition = '23514'
 /** Boots that this process remembers; a gateway has one at a time. */
 const mostBoots = 500
 
+type Queryable = Pick<PoolClient, 'query'>
 type Message = { gateway: GatewayIdentity; envelope: Envelope; offsetMs: number; at: Date }
-type Stored = { answer: IngestAnswer; sorted: SortedReadings; clockOffsetMs: number }
+type Stored = { answer: IngestAnswer; bootNo: number; sorted: SortedReadings; clockOffsetMs: number }
 
 /**
  * Stores one message of a gateway and answers how far its boot is acknowledged; returns only after the commit.
  * Readings that cannot be measurements are refused by number and kept with their reason; the others are stored. A
- * repeat changes nothing. The rows that were new go to the live hub.
+ * repeat changes nothing. The rows that were new go to the live hub; so do repeats, as they are stored, since whoever
+ * committed them may not have lived to tell the hub: a row that it has is no news to it.
  *
  * What was received is remembered in this process and compared again by the statement that writes, so the usual
  * message is one statement. When another sender was faster, the boot's row is locked and read first.
  *
+ * @param receivedAt when the message came in, before its token was looked at: the gateway's clock is told by it
  * @throws AppError 'invalid' (422) when the message as a whole does not fit
  */
-export async function storeReadings(gateway: GatewayIdentity, message: unknown): Promise<IngestAnswer> {
-  const at = now()
+export async function storeReadings(
+  gateway: GatewayIdentity,
+  message: unknown,
+  receivedAt: Date = now(),
+): Promise<IngestAnswer> {
+  const at = receivedAt
   const envelope = readEnvelope(message)
   const work: Message = { gateway, envelope, offsetMs: clockOffsetOf(gateway, envelope, at.getTime()), at }
   const stored = await storeWithPartitions(work)
   hubDoor().current?.gatewayHeard(gateway.gatewayId, at.getTime(), stored.clockOffsetMs)
-  if (stored.sorted.seqs.length > 0) {
-    noteLateRows(stored.sorted.rows, at.getTime())
-    hubDoor().current?.takeRows(stored.sorted.rows)
-  }
+  if (stored.sorted.seqs.length > 0) tellOfRows(stored.sorted.rows, at)
+  await tellOfRepeats(stored, envelope, at)
   noteGatewayStatus(gateway.gatewayId, envelope.status, work.offsetMs, at)
   return stored.answer
+}
+
+function tellOfRows(rows: CommittedRows, at: Date): void {
+  noteLateRows(rows, at.getTime())
+  hubDoor().current?.takeRows(rows)
+}
+
+/** Repeats are few: what was on its way when a connection or a process went. */
+async function tellOfRepeats({ bootNo, sorted }: Stored, { readings }: Envelope, at: Date): Promise<void> {
+  if (hubDoor().current === null || readings.length === sorted.seqs.length + sorted.refused.length) return
+  const isNew = new Set([...sorted.seqs, ...sorted.refused.map(({ seq }) => seq)])
+  const repeats = [...new Set(readings.map(({ seq }) => seq).filter((seq) => !isNew.has(seq)))]
+  if (repeats.length > 0) tellOfRows(await readRows(ingestPool(), bootNo, repeats), at)
 }
 
 /** Server's clock minus gateway's, ms; a gateway that replays speaks of its own past and has none. */
@@ -109,9 +136,9 @@ async function storeLocked(work: Message): Promise<Stored> {
 
 type Plan = Awaited<ReturnType<typeof planChange>>
 
-async function planChange(client: Pick<PoolClient, 'query'>, work: Message, boot: Boot) {
+async function planChange(client: Queryable, work: Message, boot: Boot) {
   const { gateway, envelope, at } = work
-  const clockOffsetMs = offsetFor(boot, work.offsetMs)
+  const { offsetMs: clockOffsetMs, watch } = await offsetFor(client, work, boot)
   const sorted = sortReadings(envelope.readings, {
     received: boot.received,
     probes: await probesOf(client, gateway.gatewayId, envelope.readings, at.getTime()),
@@ -126,25 +153,29 @@ async function planChange(client: Pick<PoolClient, 'query'>, work: Message, boot
     throw new AppError('invalid', sentence)
   }
   const ackedSeq = ackedSeqOf(received)
-  return { boot, gatewayId: gateway.gatewayId, received, ackedSeq, clockOffsetMs, sorted, at }
+  return { boot, gatewayId: gateway.gatewayId, received, ackedSeq, clockOffsetMs, watch, sorted, at }
 }
 
-function toStored({ ackedSeq, sorted, clockOffsetMs }: Plan): Stored {
+function toStored({ boot, ackedSeq, sorted, clockOffsetMs }: Plan): Stored {
   const refused = sorted.refused.map(({ seq, reason }) => ({ seq, reason }))
-  return { answer: { ackedSeq, refused }, sorted, clockOffsetMs }
+  return { answer: { ackedSeq, refused }, bootNo: boot.no, sorted, clockOffsetMs }
 }
 
 function bootKey(work: Message): string {
   return `${work.gateway.gatewayId} ${work.envelope.bootId}`
 }
 
-function remember(key: string, { boot, received, clockOffsetMs }: Plan): void {
+function remember(key: string, { boot, received, clockOffsetMs, watch }: Plan): void {
   const boots = rememberedBoots()
+  const clocks = rememberedClocks()
+  if (watch !== null) clocks.set(key, watch)
   // Set anew, so that the one used longest ago stands first.
   boots.delete(key)
   boots.set(key, { no: boot.no, received, receivedText: printSeqRanges(received), clockOffsetMs })
   const [oldest] = boots.keys()
-  if (boots.size > mostBoots && oldest !== undefined) boots.delete(oldest)
+  if (boots.size <= mostBoots || oldest === undefined) return
+  boots.delete(oldest)
+  clocks.delete(oldest)
 }
 
 async function inIngestTransaction<T>(work: (client: PoolClient) => Promise<T>): Promise<T> {
@@ -163,10 +194,25 @@ async function inIngestTransaction<T>(work: (client: PoolClient) => Promise<T>):
   }
 }
 
-/** The first batch sets the offset; later ones only move it when it is off by more than a second. */
-function offsetFor(boot: Boot, offsetMs: number): number {
-  const hasMoved = boot.received.length === 0 || Math.abs(offsetMs - boot.clockOffsetMs) > offsetStepMs
-  return hasMoved ? offsetMs : boot.clockOffsetMs
+/** A gateway that replays has none; see `nextClockOffset`. */
+async function offsetFor(client: Queryable, work: Message, boot: Boot): Promise<ClockOffset> {
+  if (work.gateway.mayReplay) return { offsetMs: 0, watch: null }
+  const settled = highestSeqOf(boot.received)
+  return nextClockOffset(
+    settled < 0 ? null : boot.clockOffsetMs,
+    rememberedClocks().get(bootKey(work)) ?? (await watchFromTable(client, boot)),
+    {
+      receivedAtMs: work.at.getTime(),
+      sentAtMs: work.envelope.sentAtMs,
+      doNumbersGoOn: work.envelope.readings.some(({ seq }) => seq > settled),
+    },
+  )
+}
+
+/** After a start: the newest reading was sent no earlier than it was read. */
+async function watchFromTable(client: Queryable, boot: Boot): Promise<ClockWatch | null> {
+  const atMs = boot.received.length === 0 ? null : await newestAtMs(client, boot.no)
+  return atMs === null ? null : { sentAtMs: atMs - boot.clockOffsetMs, doubt: null }
 }
 
 function newRanges(sorted: SortedReadings, lost: readonly Loss[]): (readonly [number, number])[] {

@@ -1,8 +1,10 @@
-export type ClusterName = 'main' | 'test' | 'bench'
+export type ClusterName = 'main' | 'test' | 'bench' | 'faults'
 
 export type Cluster = {
   name: ClusterName
   folder: string
+  /** Whom it runs as; empty for this very user. */
+  user: { uid?: number; gid?: number }
   bin: string
   port: number
   passwords: { superuser: string; owner: string; app: string }

@@ -22,7 +22,7 @@ export const APP_ROLE = 'emberstave_app'
 const ROLES = { superuser: 'postgres', owner: OWNER_ROLE, app: APP_ROLE }
 
 /**
- * @typedef {'main' | 'test' | 'bench'} ClusterName `main` keeps the demo; the others are for the tests alone
+ * @typedef {'main' | 'test' | 'bench' | 'faults'} ClusterName `main` keeps the demo; the others are for the tests alone
  * @typedef {{ name: ClusterName, folder: string, user: { uid?: number, gid?: number }, bin: string, port: number,
  *   passwords: { superuser: string, owner: string, app: string } }} Cluster
  */

@@ -167,7 +167,7 @@ describe('sender', () => {
     for (let attempt = 0; attempt < 40; attempt += 1) {
       const low = backoffMs(attempt, () => 0)
       const high = backoffMs(attempt, () => 0.999_999)
-      expect(low).toBe(Math.min(30_000, 500 * 2 ** attempt) / 2)
+      expect(low).toBe(Math.min(4_000, 500 * 2 ** attempt) / 2)
       expect(high).toBeLessThanOrEqual(2 * low)
     }
     const { clock, run } = handClock()
@@ -181,8 +181,40 @@ describe('sender', () => {
     const sender = createSender({ spool, transports: [transport], clock, random: () => 1 })
     sender.wake()
     const waits = await run(() => tries === 9)
-    expect(waits.map(Math.round)).toEqual([500, 1_000, 2_000, 4_000, 8_000, 16_000, 30_000, 30_000])
+    expect(waits.map(Math.round)).toEqual([500, 1_000, 2_000, 4_000, 4_000, 4_000, 4_000, 4_000])
     await sender.stop()
+  })
+
+  it('a way that opens ends the wait after a failure, and no other wait', async () => {
+    const { clock, run } = handClock()
+    const spool = createSpool({ files: memoryFiles(), bootId: BOOT })
+    spool.append(drafts(1))
+    const server = fakeServer()
+    let isCut = true
+    let open = () => {}
+    let tries = 0
+    const transport: Transport = {
+      ...transportOf((message) => {
+        tries += 1
+        return isCut ? { kind: 'unreachable', detail: 'cut' } : server.take(message)
+      }),
+      onOpened: (then) => {
+        open = then
+      },
+    }
+    const sender = createSender({ spool, transports: [transport], clock, random: () => 1 })
+    open()
+    expect(tries).toBe(0)
+    sender.wake()
+    await run(() => tries === 5)
+    isCut = false
+    open()
+    await run(() => spool.peek(1) === null)
+    expect(tries).toBe(6)
+    expect(server.arrivals).toEqual([1])
+    open()
+    await sender.stop()
+    expect(tries).toBe(6)
   })
 
   it('with a token that is refused it says so once, keeps everything, tries slowly, and goes on when it is good', async () => {

@@ -201,7 +201,7 @@ it.each([
   await expect(storeReadings(gateway, message)).rejects.toMatchObject({ kind: 'invalid' })
 })
 
-it('new rows go to the hub once each, after the commit', async () => {
+it('new rows go to the hub after the commit, and a repeat as it is stored', async () => {
   const bootId = randomUUID()
   const taken: number[] = []
   const seen: Promise<number[]>[] = []
@@ -217,8 +217,10 @@ it('new rows go to the hub once each, after the commit', async () => {
   try {
     await send(bootId, [reading(1), reading(2)])
     expect(await seen[0]).toEqual([1, 2])
-    await send(bootId, [reading(1), reading(2), reading(3)])
-    expect(taken).toHaveLength(3)
+    const again = [reading(1), reading(2, {}, Date.now()), reading(3)]
+    await send(bootId, again)
+    const [first, second] = taken
+    expect(taken).toEqual([first, second, Date.parse(again[2]?.at ?? ''), first, second])
   } finally {
     hubDoor().current = null
   }
