@@ -50,7 +50,7 @@ export function FitPanelView(props: FitPanelViewProps) {
             rows={9}
             spellCheck={false}
             autoComplete="off"
-            className="font-mono"
+            className="[&_textarea]:font-mono"
             hint="Paste two columns from a spreadsheet: barrel serial, or a dose in minutes read at the place above; then the result. Write <0.5 for one below a limit of 0.5."
             value={draft.rows}
             onChange={(event) => onChange({ rows: event.target.value })}

@@ -70,7 +70,7 @@ export function FormulaEditorView(props: FormulaEditorViewProps) {
             maxLength={400}
             spellCheck={false}
             autoComplete="off"
-            className="font-mono"
+            className="[&_textarea]:font-mono"
             value={formula}
             onChange={(event) => props.onFormula(event.target.value.replaceAll('\n', ' '))}
             error={fault === null ? undefined : `Letter ${fault.index + 1}: ${fault.message}`}

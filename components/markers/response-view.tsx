@@ -49,6 +49,7 @@ export function ResponseView({
         <ResultTable
           results={picture.results}
           residuals={picture.fit.residuals}
+          residualSd={picture.fit.residualSd}
           keys={markerFamilies[picture.fit.family].predictors}
           unit={response.unit}
         />

@@ -1,24 +1,31 @@
 import Link from 'next/link'
 import type { Column } from '@/components/ui/table'
 import { Table } from '@/components/ui/table'
-import { formatDoseFigure } from '@/lib/format'
+import { formatDoseFigure, formatNumber } from '@/lib/format'
 import type { FitResult } from '@/lib/markers/schema'
 import { predictors } from '@/lib/science/marker-families'
 import type { PredictorKey } from '@/lib/science/marker-families'
-import { threeDigits } from '@/lib/science/three-digits'
+
+/** As many decimals as show the spread with two digits: more would be noise. */
+function decimalsOf(residualSd: number): number {
+  return residualSd > 0 ? Math.min(6, Math.max(0, 1 - Math.floor(Math.log10(residualSd)))) : 2
+}
 
 /** The results that a fit rests on, as they were typed, each with its barrel's firing. */
 export function ResultTable({
   results,
   residuals,
+  residualSd,
   keys,
   unit,
 }: {
   results: readonly FitResult[]
   residuals: readonly { fitted: number; residual: number | null }[]
+  residualSd: number
   keys: readonly PredictorKey[]
   unit: string
 }) {
+  const decimals = decimalsOf(residualSd)
   const rows = results.map((result, i) => ({ ...result, ...residuals[i] }))
   const columns: Column<(typeof rows)[number]>[] = [
     {
@@ -51,7 +58,7 @@ export function ResultTable({
       head: 'By the fit',
       unit,
       isNumeric: true,
-      cell: (row) => (row.fitted === undefined ? '' : threeDigits(row.fitted)),
+      cell: (row) => (row.fitted === undefined ? '' : formatNumber(row.fitted, decimals)),
     },
     {
       key: 'residual',
@@ -62,7 +69,7 @@ export function ResultTable({
         row.residual === null || row.residual === undefined ? (
           <span className="text-soft">below the limit</span>
         ) : (
-          threeDigits(row.residual)
+          formatNumber(row.residual, decimals)
         ),
     },
   ]

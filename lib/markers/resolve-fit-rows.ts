@@ -10,14 +10,14 @@ import type { LeadPlace } from '@/lib/recipes/schema'
 import type { FamilyId, PredictorKey } from '@/lib/science/marker-families'
 import { markerFamilies, predictors } from '@/lib/science/marker-families'
 import type { SiteRules } from '@/lib/science/site-rules'
-import { siteRulesSchema } from '@/lib/science/site-rules'
+import { siteOfVersion } from '@/lib/site/current-site'
 
 type ToastRow = {
   serial: string
   firing_id: string | null
   verdict: string | null
   result: unknown
-  rules: unknown
+  site_settings_version: number | null
   height: string | null
   side: string | null
   depth_mm: number | null
@@ -39,7 +39,21 @@ export async function resolveFitRows(
     em,
     rows.flatMap((row) => (row.error === null && 'serial' in row.source ? [row.source.serial] : [])),
   )
-  return rows.map((row) => resolveRow(row, toasts, terms))
+  const scoredBy = await readRules(em, toasts)
+  return rows.map((row) => resolveRow(row, toasts, scoredBy, terms))
+}
+
+/** The rules that these firings were scored by, by the version of the settings. */
+async function readRules(
+  em: EntityManager,
+  toasts: ReadonlyMap<string, ToastRow[]>,
+): Promise<Map<number, SiteRules>> {
+  const rules = new Map<number, SiteRules>()
+  for (const { site_settings_version: version } of [...toasts.values()].flat()) {
+    if (version === null || rules.has(version)) continue
+    rules.set(version, (await siteOfVersion(em, version)).rules)
+  }
+  return rules
 }
 
 /** Finished firings of these pieces with their newest score and the place of the lead probe, by plain serial. */
@@ -48,11 +62,10 @@ async function readToasts(em: EntityManager, serials: readonly string[]): Promis
   if (serials.length === 0) return bySerial
   const rows = await queryRows<ToastRow>(
     em,
-    `select p.serial, f.id as firing_id, s.verdict, s.result, w.rules, l.height, l.side, l.depth_mm, l.mounting
+    `select p.serial, f.id as firing_id, s.verdict, s.result, s.site_settings_version, l.height, l.side, l.depth_mm, l.mounting
        from pieces p
        left join firings f on f.piece_id = p.id and f.state = 'finished'
        left join lateral (select * from scores where firing_id = f.id order by number desc limit 1) s on true
-       left join site_settings w on w.version = s.site_settings_version
        left join lateral (select * from firing_probes where firing_id = f.id and role = 'lead'
                            order by from_at limit 1) l on true
       where replace(p.serial, '-', '') in (?)
@@ -66,14 +79,19 @@ async function readToasts(em: EntityManager, serials: readonly string[]): Promis
   return bySerial
 }
 
-function resolveRow(row: TypedRow, toasts: ReadonlyMap<string, ToastRow[]>, terms: FitTerms): PreviewRow {
+function resolveRow(
+  row: TypedRow,
+  toasts: ReadonlyMap<string, ToastRow[]>,
+  scoredBy: ReadonlyMap<number, SiteRules>,
+  terms: FitTerms,
+): PreviewRow {
   const { line, typedSource, typedValue } = row
   const typed = { line, typedSource, typedValue }
   const wrong = (error: string): PreviewRow => ({ ...typed, result: null, error })
   if (row.error !== null) return wrong(row.error)
   const found =
     'serial' in row.source
-      ? toastOfBarrel(row.source.serial, toasts, terms)
+      ? toastOfBarrel(row.source.serial, toasts, scoredBy, terms)
       : { serial: null, firingId: null, toast: typedDose(row.source.doseMin) }
   if ('error' in found) return wrong(found.error)
   const family = markerFamilies[terms.family]
@@ -101,6 +119,7 @@ type Found = { serial: string; firingId: string; toast: Toast }
 function toastOfBarrel(
   key: string,
   toasts: ReadonlyMap<string, ToastRow[]>,
+  scoredBy: ReadonlyMap<number, SiteRules>,
   terms: FitTerms,
 ): Found | { error: string } {
   const [row, another] = toasts.get(key) ?? []
@@ -116,7 +135,8 @@ function toastOfBarrel(
   }
   const placeError = errorOfPlace(row, terms.place)
   if (placeError !== null) return { error: placeError }
-  if (!isSameRules(terms.family, siteRulesSchema.parse(row.rules), terms.rules)) {
+  const rules = scoredBy.get(row.site_settings_version ?? 0)
+  if (rules === undefined || !isSameRules(terms.family, rules, terms.rules)) {
     return {
       error: `${serial} was scored by other site rules than those in force: its figures do not compare.`,
     }

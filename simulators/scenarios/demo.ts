@@ -14,6 +14,7 @@ import type { SeededBatch } from '@/simulators/scenarios/seed-batches'
 import { seedBatch } from '@/simulators/scenarios/seed-batches'
 import type { SeedPerson } from '@/simulators/scenarios/seed-people'
 import { demoPassword, demoPeople, seedCustomers, seedPerson } from '@/simulators/scenarios/seed-people'
+import { seedMarkers } from '@/simulators/scenarios/seed-markers'
 import { recipeHistory } from '@/simulators/scenarios/seed-recipes'
 import type { SeedRoom } from '@/simulators/scenarios/seed-room'
 import { endReplay, seedProbeChecks, seedRoom, seedWaterCheck } from '@/simulators/scenarios/seed-room'
@@ -68,6 +69,8 @@ export async function seedDemo(shape: DemoShape, say: (line: string) => void): P
   }
   await recipes.advanceTo(startedAt)
   say(`${demoRecipes.length} recipes with ${recipes.versions.length} versions are there`)
+  await seedMarkers(people.chemist, random.fork('markers'))
+  say('markers with a formula and fits are there')
   setClock(null)
   await retainReadings()
   await seedLive(shape, people, room, batches)
