@@ -55,35 +55,37 @@ describe('the nearest of many curves', () => {
       ['whole degrees with ties', curve],
       ['curves like firings', firingLike],
     ] as const) {
-      it(`are those that comparing all of them gives: ${distance}, ${name}`, () => {
-        fc.assert(
-          fc.property(
-            anyCurve,
-            fc.array(anyCurve, { minLength: 1, maxLength: 25 }),
-            fc.integer({ min: 1, max: 8 }),
-            fc.integer({ min: 0, max: 6 }),
-            (wanted, curves, k, bandPoints) => {
-              const among = createCurveSet(curves, stages, pointsPerStage)
-              const request = { wanted, among, k, stageWeights: weights, distance, bandPoints }
-              const { nearest, comparedCount } = nearestCurves(request)
-              const wantedAnswer = byBruteForce(request, curves)
-              expect(comparedCount).toBeLessThanOrEqual(curves.length)
-              expect(nearest).toHaveLength(Math.min(k, curves.length))
-              nearest.forEach((found, i) => {
-                expectWithin(found.distanceC, wantedAnswer[i]?.distanceC ?? NaN, 1e-9)
-              })
-              // Places agree wherever the distances are told apart by more than the rounding of two ways to add.
-              const isClear = nearest.every((_, i) => {
-                const nextC = wantedAnswer[i + 1]?.distanceC ?? Infinity
-                return nextC - (wantedAnswer[i]?.distanceC ?? NaN) > 1e-9
-              })
-              if (!isClear) return
-              const places = wantedAnswer.slice(0, k).map(({ index }) => index)
-              expect(nearest.map((found) => found.index)).toEqual(places)
-            },
-          ),
-          propertyRun,
-        )
+      describe(`${distance}, ${name}`, () => {
+        it('law: are those that comparing all of them gives', () => {
+          fc.assert(
+            fc.property(
+              anyCurve,
+              fc.array(anyCurve, { minLength: 1, maxLength: 25 }),
+              fc.integer({ min: 1, max: 8 }),
+              fc.integer({ min: 0, max: 6 }),
+              (wanted, curves, k, bandPoints) => {
+                const among = createCurveSet(curves, stages, pointsPerStage)
+                const request = { wanted, among, k, stageWeights: weights, distance, bandPoints }
+                const { nearest, comparedCount } = nearestCurves(request)
+                const wantedAnswer = byBruteForce(request, curves)
+                expect(comparedCount).toBeLessThanOrEqual(curves.length)
+                expect(nearest).toHaveLength(Math.min(k, curves.length))
+                nearest.forEach((found, i) => {
+                  expectWithin(found.distanceC, wantedAnswer[i]?.distanceC ?? NaN, 1e-9)
+                })
+                // Places agree wherever the distances are told apart by more than the rounding of two ways to add.
+                const isClear = nearest.every((_, i) => {
+                  const nextC = wantedAnswer[i + 1]?.distanceC ?? Infinity
+                  return nextC - (wantedAnswer[i]?.distanceC ?? NaN) > 1e-9
+                })
+                if (!isClear) return
+                const places = wantedAnswer.slice(0, k).map(({ index }) => index)
+                expect(nearest.map((found) => found.index)).toEqual(places)
+              },
+            ),
+            propertyRun,
+          )
+        })
       })
     }
   }
