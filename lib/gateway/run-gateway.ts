@@ -144,7 +144,7 @@ function printStatusLine(gateway: Gateway, modules: readonly ModbusModule[], cou
   const silent = modules.filter((module) => module.state() !== 'answers').map((module) => module.name)
   return [
     `${counts.readings} readings in the last minute`,
-    counts.faults > 0 ? `${counts.faults} of them faults` : null,
+    counts.faults > 0 ? `${counts.faults} of them without a value` : null,
     counts.missedPolls > 0 ? `${counts.missedPolls} polls came too late and were left out` : null,
     `spool ${readings} readings, ${Math.ceil(bytes / 1024)} KiB`,
     lost.length > 0 ? `${lost.reduce((sum, { from, to }) => sum + to - from + 1, 0)} lost` : null,
