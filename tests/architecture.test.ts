@@ -110,6 +110,16 @@ describe('the checker finds what is planted', () => {
     expect(offences.every((offence) => offence.startsWith(path))).toBe(true)
   })
 
+  it('mathjs, which a page never needs, however a component comes by it', () => {
+    const sources = new Map([
+      ['components/markers/a.tsx', `import { b } from '@/lib/science/b'`],
+      ['lib/science/b.ts', `import { create } from 'mathjs/number'`],
+    ])
+    expect(architectureOffences(sources)).toEqual([
+      'components/markers/a.tsx drags in mathjs/number through lib/science/b.ts',
+    ])
+  })
+
   it('database code that a component reaches by two steps', () => {
     const sources = new Map([
       ['components/fireside/a.tsx', `import { b } from '@/lib/firings/b'`],
