@@ -44,5 +44,6 @@ export async function readMarker(em: EntityManager, id: string): Promise<MarkerD
 
 /** The symbols that formulas have for lot assays: one for each marker of the list. */
 export async function readLotSymbols(em: EntityManager): Promise<FormulaSymbol[]> {
-  return (await readMarkers(em)).map(lotAssaySymbol)
+  const rows = await queryRows<MarkerRow>(em, `${markerSelect} order by position`)
+  return rows.map((row) => lotAssaySymbol(toMarker(row, null)))
 }

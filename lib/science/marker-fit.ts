@@ -246,6 +246,21 @@ function varianceAt(
   )
 }
 
+const tFactors = new Map<string, number>()
+
+/** The t quantile of a fit's intervals, kept: a curve asks for it at every point, and there are few different ones. */
+function tFactor({
+  confidence,
+  degreesOfFreedom,
+}: Pick<MarkerFit, 'confidence' | 'degreesOfFreedom'>): number {
+  const key = `${confidence} ${degreesOfFreedom}`
+  const kept = tFactors.get(key)
+  if (kept !== undefined) return kept
+  const t = tQuantile((1 + confidence) / 2, degreesOfFreedom)
+  tFactors.set(key, t)
+  return t
+}
+
 /** A prediction: where a further result would lie, `low` to `high`, and where the mean of many would. */
 export type MarkerPrediction =
   | { ok: true; value: number; low: number; high: number; meanLow: number; meanHigh: number }
@@ -281,7 +296,7 @@ export function predictMarker(fit: MarkerFit, x: readonly number[]): MarkerPredi
     }
   }
   const value = family.value(parameters, x)
-  const t = tQuantile((1 + fit.confidence) / 2, fit.degreesOfFreedom)
+  const t = tFactor(fit)
   const half = t * Math.sqrt(variance + fit.residualSd ** 2)
   const meanHalf = t * Math.sqrt(variance)
   return {
