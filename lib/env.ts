@@ -12,6 +12,12 @@ const envSchema = z.object({
   SMTP_URL: z.string().optional(),
   MAIL_FROM: z.string().default('Emberstave <emberstave@localhost>'),
   MAIL_PAGE_URL: z.string().optional(),
+  /** Object storage for photos, as S3 speaks; left out, photos are refused in words. */
+  S3_ENDPOINT: z.string().optional(),
+  S3_REGION: z.string().default('us-east-1'),
+  S3_BUCKET: z.string().optional(),
+  S3_ACCESS_KEY_ID: z.string().optional(),
+  S3_SECRET_ACCESS_KEY: z.string().optional(),
   DATA_DIR: z.string().default('.data'),
   LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'silent']).default('info'),
 })

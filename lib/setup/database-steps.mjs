@@ -1,5 +1,5 @@
 import { rmSync } from 'node:fs'
-import { DATABASE, SPOOL_DIR, withOwner } from './environment.mjs'
+import { DATABASE, FILES_DIR, SPOOL_DIR, withOwner } from './environment.mjs'
 import { keep, readKept } from './kept.mjs'
 import { typescript } from './processes.mjs'
 import { dropDatabase, ensureDatabase } from './postgres.mjs'
@@ -44,8 +44,8 @@ async function loadScenario(cluster, environment, name) {
   const isNew = await ensureDatabase(cluster, DATABASE)
   await migrate(owner)
   if (isNew) {
-    // Readings that wait for a database that is gone belong to nobody.
-    rmSync(SPOOL_DIR, { recursive: true, force: true })
+    // Readings that wait for a database that is gone belong to nobody, and so do its photos.
+    for (const folder of [SPOOL_DIR, FILES_DIR]) rmSync(folder, { recursive: true, force: true })
     keep(RECORD, { name, finished: false })
     say(`loading the scenario “${name}” (once; up to two minutes)`)
   }

@@ -8,6 +8,9 @@ export const DATABASE = 'emberstave'
 /** What the ports of the mail simulator are remembered by. */
 export const MAIL_SMTP = 'mail-smtp'
 export const MAIL_PAGE = 'mail-page'
+/** The same of the files simulator, and where it keeps what was put there. */
+export const FILES = 'files'
+export const FILES_DIR = join(dataDir, 'files')
 export const DEMO_FILE = join(dataDir, 'demo.json')
 export const SPOOL_DIR = join(dataDir, 'spool')
 
@@ -18,9 +21,10 @@ export const SPOOL_DIR = join(dataDir, 'spool')
  * @param {{ cluster: import('./postgres.mjs').Cluster, port: number, mode: 'demo' | 'dev' }} known
  */
 export async function localEnvironment({ cluster, port, mode }) {
-  const { sessionSecret } = await secrets(['sessionSecret'])
+  const { sessionSecret, filesSecret } = await secrets(['sessionSecret', 'filesSecret'])
   const smtpPort = lastPort(MAIL_SMTP)
   const pagePort = lastPort(MAIL_PAGE)
+  const filesPort = lastPort(FILES)
   return {
     ...process.env,
     NODE_ENV: mode === 'dev' ? 'development' : 'production',
@@ -34,6 +38,12 @@ export async function localEnvironment({ cluster, port, mode }) {
     MAIL_PAGE_URL: `http://localhost:${pagePort}`,
     MAIL_SMTP_PORT: String(smtpPort),
     MAIL_PAGE_PORT: String(pagePort),
+    FILES_PORT: String(filesPort),
+    S3_ENDPOINT: `http://127.0.0.1:${filesPort}`,
+    S3_REGION: 'us-east-1',
+    S3_BUCKET: 'emberstave',
+    S3_ACCESS_KEY_ID: 'emberstave',
+    S3_SECRET_ACCESS_KEY: filesSecret,
     DATA_DIR: dataDir,
     DEMO_FILE,
     SPOOL_DIR,

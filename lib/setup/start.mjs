@@ -3,7 +3,7 @@ import { setTimeout as sleep } from 'node:timers/promises'
 import { ensureBuild } from './build.mjs'
 import { prepareDatabase } from './database-steps.mjs'
 import { endingIsSuccess, isEnding } from './ending.mjs'
-import { DEMO_FILE, localEnvironment, MAIL_PAGE, MAIL_SMTP } from './environment.mjs'
+import { DEMO_FILE, FILES, localEnvironment, MAIL_PAGE, MAIL_SMTP } from './environment.mjs'
 import { holdLock } from './lock.mjs'
 import { ensurePackages } from './packages.mjs'
 import { keptPort, serverPort } from './ports.mjs'
@@ -20,7 +20,7 @@ await main(async () => {
   const port = await serverPort(command)
   await ensurePackages()
   await withCluster('main', { own: true }, async (cluster) => {
-    for (const purpose of [MAIL_SMTP, MAIL_PAGE]) await keptPort(purpose)
+    for (const purpose of [MAIL_SMTP, MAIL_PAGE, FILES]) await keptPort(purpose)
     const environment = await localEnvironment({ cluster, port, mode: isDev ? 'dev' : 'demo' })
     if (!isDev) await ensureBuild(command)
     await prepareDatabase(cluster, environment)
@@ -39,6 +39,7 @@ await main(async () => {
 async function startAll(processes, environment) {
   say(`starting the server on port ${environment.PORT}`)
   processes.start('mail', 'simulators/mail/main.ts', environment)
+  processes.start('files', 'simulators/files/main.ts', environment)
   processes.start('server', 'server.ts', environment)
   await untilReady(processes, environment.SERVER_URL)
   processes.start('hearth', 'simulators/hearth/main.ts', environment)

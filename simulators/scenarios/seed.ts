@@ -3,6 +3,7 @@ import { closeIngestPool } from '@/lib/ingest/ingest-pool'
 import { isSiteThere } from '@/lib/site/create-site'
 import { busyShape, demoShape, seedDemo } from '@/simulators/scenarios/demo'
 import { seedEmpty } from '@/simulators/scenarios/empty'
+import { startOwnFiles } from '@/simulators/scenarios/own-files'
 
 /** Loads one scenario into an empty, migrated database; does nothing when a site is there already. */
 const scenarios: Record<string, (say: (line: string) => void) => Promise<void>> = {
@@ -14,6 +15,8 @@ const scenarios: Record<string, (say: (line: string) => void) => Promise<void>> 
 // The people of a scenario are invented: nothing is mailed to them, and invitations are taken up by their links.
 process.env['SMTP_URL'] = ''
 process.env['LOG_LEVEL'] = 'fatal'
+// Photos of the demo go where the files simulator will find them; it runs in here while the seed does.
+const files = await startOwnFiles()
 
 const say = (line: string) => process.stdout.write(`  ${line}\n`)
 const name = process.argv[2] ?? 'demo'
@@ -35,4 +38,6 @@ try {
 } finally {
   await closeIngestPool()
   await closeOrm()
+  files.closeAllConnections()
+  files.close()
 }

@@ -7,6 +7,10 @@ const complete = {
   SESSION_SECRET: 'a'.repeat(32),
   APP_ORIGIN: 'https://toast.example',
   SMTP_URL: 'smtps://mail.example:465',
+  S3_ENDPOINT: 'https://storage.example',
+  S3_BUCKET: 'toast-photos',
+  S3_ACCESS_KEY_ID: 'toast',
+  S3_SECRET_ACCESS_KEY: 'b'.repeat(32),
 }
 
 describe('production refuses an environment that is not complete', () => {
@@ -36,6 +40,9 @@ describe('production refuses an environment that is not complete', () => {
     ['APP_ORIGIN', 'https://toast.example/path', 'is no origin'],
     ['APP_ORIGIN', 'toast.example', 'is no origin'],
     ['SMTP_URL', 'mail.example', 'is no address'],
+    ['S3_ENDPOINT', 'storage.example', 'is no address'],
+    ['S3_BUCKET', 'Toast Photos', 'is no name of a bucket'],
+    ['S3_SECRET_ACCESS_KEY', 'short', 'fewer than 16'],
   ])('%s = %s', (name, value, sentence) => {
     const troubles = serveTroubles({ ...complete, [name]: value })
     expect(troubles).toHaveLength(1)
