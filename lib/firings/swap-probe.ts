@@ -55,7 +55,10 @@ async function requireFree(em: EntityManager, probe: Probe): Promise<void> {
   if (live !== null) throw invalidField('probeId', `${probe.name} reads a live firing. Choose another.`)
 }
 
-function placeOf({ height, side, depthMm, mounting }: Place): Place {
+/** A place as it is stored: doubles may come as text. */
+type StoredPlace = Omit<Place, 'depthMm'> & { depthMm: number | string }
+
+function placeOf({ height, side, depthMm, mounting }: StoredPlace): Place {
   return { height, side, depthMm: Number(depthMm), mounting }
 }
 
