@@ -64,8 +64,9 @@ export const lossSchema = z
   .refine((loss) => loss.to >= loss.from, { error: 'The end is before the start', path: ['to'] })
 
 /**
- * How the gateway program stands, for its page. Counts are of what no server has acknowledged; `oldestUnsentAt` is the
- * instant of the oldest such reading, by the gateway's own clock, and null when none waits.
+ * How the gateway program stands, for its page. `spooledReadings` are those that no server has acknowledged;
+ * `spooledBytes` is what the spool takes of the disk, which falls only by whole files; `oldestUnsentAt` is the instant
+ * of the oldest unacknowledged reading, by the gateway's own clock, and null when none waits.
  */
 export const gatewayStatusSchema = z.strictObject({
   spooledReadings: z.int().min(0),
