@@ -1,10 +1,13 @@
 import { AccountLinkEntity } from './account-link'
+import { AccountPinEntity } from './account-pin'
 import { AccountEntity } from './account'
 import { AlarmEventEntity } from './alarm-event'
 import { AuditEntryEntity } from './audit-entry'
 import { BatchEntity } from './batch'
 import { CueEntity } from './cue'
 import { CustomerEntity } from './customer'
+import { DeviceEnrolmentEntity } from './device-enrolment'
+import { DeviceEntity } from './device'
 import { FiringPlacementEntity } from './firing-placement'
 import { FiringProbeEntity } from './firing-probe'
 import { FiringEntity } from './firing'
@@ -39,12 +42,15 @@ import { WaterCheckEntity } from './water-check'
 /** Every entity, for the ORM's discovery. */
 export const entities = [
   AccountLinkEntity,
+  AccountPinEntity,
   AccountEntity,
   AlarmEventEntity,
   AuditEntryEntity,
   BatchEntity,
   CueEntity,
   CustomerEntity,
+  DeviceEnrolmentEntity,
+  DeviceEntity,
   FiringPlacementEntity,
   FiringProbeEntity,
   FiringEntity,

@@ -11,6 +11,9 @@ export const SessionEntity = defineEntity({
       .primary()
       .onCreate(() => randomUUID()),
     accountId: p.uuid(),
+    /** 'device': opened by a PIN, good at that device alone. */
+    kind: p.enum(['person', 'device']).default('person'),
+    deviceId: p.uuid().nullable(),
     createdAt: p.datetime(),
     lastSeenAt: p.datetime(),
     expiresAt: p.datetime(),

@@ -9,6 +9,7 @@ import { M0008Markers } from './m0008-markers'
 import { M0009GatewayEnrolmentProbeHistory } from './m0009-gateway-enrolment-probe-history'
 import { M0010Alarms } from './m0010-alarms'
 import { M0011PhotosLossesConditions } from './m0011-photos-losses-conditions'
+import { M0012DevicesPins } from './m0012-devices-pins'
 
 /** In the order in which they run; a landed migration is never edited. */
 export const migrationsList = [
@@ -23,4 +24,5 @@ export const migrationsList = [
   { name: 'm0009-gateway-enrolment-probe-history', class: M0009GatewayEnrolmentProbeHistory },
   { name: 'm0010-alarms', class: M0010Alarms },
   { name: 'm0011-photos-losses-conditions', class: M0011PhotosLossesConditions },
+  { name: 'm0012-devices-pins', class: M0012DevicesPins },
 ]

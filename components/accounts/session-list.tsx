@@ -36,7 +36,7 @@ export function SessionList({ sessions, timeZone }: { sessions: readonly Session
           >
             <div className="min-w-0">
               <p>
-                {deviceWords(one.userAgent)}
+                {one.byPinAt === null ? deviceWords(one.userAgent) : `By PIN at ${one.byPinAt}`}
                 <span className="text-soft">, {one.address ?? 'address not known'}</span>
               </p>
               <p className="text-small text-soft">

@@ -11,6 +11,7 @@ const places: readonly (Place & { roles: readonly Role[] })[] = [
   { href: '/barrels', label: 'Barrels', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
   { href: '/probes', label: 'Probes', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
   { href: '/alarms', label: 'Alarms', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
+  { href: '/devices', label: 'Devices', roles: ['administrator', 'master cooper'] },
   { href: '/accounts', label: 'Accounts', roles: ['administrator'] },
   { href: '/audit', label: 'Audit', roles: ['administrator', 'master cooper'] },
   { href: '/settings', label: 'Settings', roles: ['administrator'] },

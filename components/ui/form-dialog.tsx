@@ -54,6 +54,8 @@ export type FormDialogProps = {
   children?: React.ReactNode
   /** Where to go when done; `{id}` is the answer's. Left out: this page again. */
   doneHref?: string
+  /** Takes the answer: something to show this once. */
+  onAnswer?: (answer: unknown) => void
 }
 
 function bodyOf(
@@ -137,6 +139,7 @@ export function FormDialog(props: FormDialogProps) {
       setProblem(null)
       setIsOpen(false)
       setIsTouched(false)
+      props.onAnswer?.(answer)
       if (props.doneHref === undefined) router.refresh()
       else router.push(props.doneHref.replace('{id}', answer?.id ?? ''))
     } catch (error) {

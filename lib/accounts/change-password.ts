@@ -7,6 +7,7 @@ import { storePassword } from '@/lib/accounts/store-password'
 import { writeAuditEntry } from '@/lib/audit/write-entry'
 import type { PersonActor } from '@/lib/auth/actor'
 import { hashPassword } from '@/lib/auth/password'
+import { requirePasswordSession } from '@/lib/auth/permissions'
 import { provePassword } from '@/lib/auth/sign'
 import { forkEm, inTransaction } from '@/lib/db/orm'
 import { invalidField } from '@/lib/errors'
@@ -16,6 +17,7 @@ import { invalidField } from '@/lib/errors'
  * @throws AppError 'invalid' naming `currentPassword` or `newPassword`, 'too many'.
  */
 export async function changePassword(actor: PersonActor, input: ChangePasswordBody): Promise<void> {
+  requirePasswordSession(actor)
   const em = await forkEm()
   await provePassword(em, actor.accountId, input.currentPassword, 'currentPassword')
   const me = await readMe(em, actor.accountId)

@@ -55,6 +55,12 @@ export const signInBody = z.strictObject({
 })
 export type SignInBody = z.infer<typeof signInBody>
 
+export const signOutQuery = z.strictObject({
+  /** Left out: by hand. */
+  why: z.enum(['idle'], 'Leave it out, or say idle.').optional(),
+})
+export type SignOutQuery = z.infer<typeof signOutQuery>
+
 export const preferencesBody = z.strictObject({
   name: personName.optional(),
   temperatureUnit: temperatureUnit.optional(),
@@ -63,6 +69,12 @@ export type PreferencesBody = z.infer<typeof preferencesBody>
 
 export const changePasswordBody = z.strictObject({ currentPassword: knownPassword, newPassword })
 export type ChangePasswordBody = z.infer<typeof changePasswordBody>
+
+/** 4 to 6 figures: short enough for gloves, and good at one device alone. */
+export const pin = z.string('Type a PIN.').regex(/^\d{4,6}$/, 'A PIN has 4 to 6 figures.')
+
+export const setPinBody = z.strictObject({ password: knownPassword, pin })
+export type SetPinBody = z.infer<typeof setPinBody>
 
 export const accountListQuery = z.strictObject({
   ...pageQuery,
@@ -199,9 +211,19 @@ export const sessionSchema = z.object({
   /** What the browser said it is, and where it came from, as far as known. */
   userAgent: z.string().nullable(),
   address: z.string().nullable(),
+  /** The enrolled device at which a PIN opened it; null for a sign-in by password. */
+  byPinAt: z.string().nullable(),
 })
 export type SessionDto = z.infer<typeof sessionSchema>
 export const sessionListSchema = z.object({ items: z.array(sessionSchema) })
+
+export const pinSchema = z.object({
+  /** Null when there is none. */
+  setAt: instant.nullable(),
+  /** After ten wrong tries in a row; signing in by password opens it again. */
+  isLocked: z.boolean(),
+})
+export type PinDto = z.infer<typeof pinSchema>
 
 export const linkSchema = z.object({
   purpose: z.enum(['invitation', 'password reset', 'first administrator']),

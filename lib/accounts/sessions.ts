@@ -1,6 +1,6 @@
 import { randomUUID } from 'node:crypto'
 import type { EntityManager } from '@mikro-orm/postgresql'
-import { sealSessionCookie, sessionMaximumS } from '@/lib/auth/session-cookie'
+import { pinSessionMaximumS, sealSessionCookie, sessionMaximumS } from '@/lib/auth/session-cookie'
 import { queryRows } from '@/lib/db/orm'
 import { now } from '@/lib/runtime'
 
@@ -15,18 +15,39 @@ export async function startSession(
   accountId: string,
   device: Device,
 ): Promise<StartedSession> {
+  return insertSession(em, accountId, device, { deviceId: null, lengthS: sessionMaximumS })
+}
+
+/** Opens a session by PIN: short, and good only beside the cookie of the enrolled device. */
+export async function startDeviceSession(
+  em: EntityManager,
+  accountId: string,
+  device: Device,
+  deviceId: string,
+): Promise<StartedSession> {
+  return insertSession(em, accountId, device, { deviceId, lengthS: pinSessionMaximumS })
+}
+
+async function insertSession(
+  em: EntityManager,
+  accountId: string,
+  device: Device,
+  { deviceId, lengthS }: { deviceId: string | null; lengthS: number },
+): Promise<StartedSession> {
   const sessionId = randomUUID()
   const at = now()
   await queryRows(
     em,
-    `insert into sessions (id, account_id, created_at, last_seen_at, expires_at, user_agent, address)
-     values (?, ?, ?, ?, ?, ?, ?)`,
+    `insert into sessions (id, account_id, kind, device_id, created_at, last_seen_at, expires_at, user_agent, address)
+     values (?, ?, ?, ?, ?, ?, ?, ?, ?)`,
     [
       sessionId,
       accountId,
+      deviceId === null ? 'person' : 'device',
+      deviceId,
       at,
       at,
-      new Date(at.getTime() + sessionMaximumS * 1000),
+      new Date(at.getTime() + lengthS * 1000),
       device.userAgent?.slice(0, 400) ?? null,
       device.address,
     ],

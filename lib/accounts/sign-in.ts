@@ -1,3 +1,4 @@
+import { forgiveWrongPins } from '@/lib/accounts/pin-tries'
 import type { SignInBody } from '@/lib/accounts/schema'
 import type { Device, StartedSession } from '@/lib/accounts/sessions'
 import { startSession } from '@/lib/accounts/sessions'
@@ -47,6 +48,7 @@ export async function signIn(
     )
   }
   await forgiveTry(tried)
+  await forgiveWrongPins(row.id)
   void forgetOldTries().catch((error: unknown) => log().warn({ err: error }, 'old tries were not cleared'))
   return openSession(row, device, await unsealSessionId(cookieHeader))
 }

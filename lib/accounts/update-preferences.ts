@@ -3,11 +3,16 @@ import type { MeDto, PreferencesBody } from '@/lib/accounts/schema'
 import { describeChanges } from '@/lib/audit/describe-changes'
 import { writeAuditEntry } from '@/lib/audit/write-entry'
 import type { PersonActor } from '@/lib/auth/actor'
+import { requirePasswordSession } from '@/lib/auth/permissions'
 import { inTransaction, queryRows } from '@/lib/db/orm'
 import { now } from '@/lib/runtime'
 
-/** Changes one's own name or unit of temperature. The name goes into signatures, so its change is kept. */
+/**
+ * Changes one's own name or unit of temperature. The name goes into signatures, so its change is kept.
+ * @throws AppError 'not allowed' by PIN
+ */
 export async function updatePreferences(actor: PersonActor, input: PreferencesBody): Promise<MeDto> {
+  requirePasswordSession(actor)
   return inTransaction(async (em) => {
     const before = await readMe(em, actor.accountId)
     const name = input.name ?? before.name

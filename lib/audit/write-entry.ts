@@ -28,7 +28,13 @@ export async function writeAuditEntry(
       action,
       subject.type,
       subject.id,
-      JSON.stringify(detail),
+      JSON.stringify(withDevice(actor, detail)),
     ],
   )
+}
+
+/** What was done by PIN says at which device. */
+function withDevice(actor: Actor, detail: Record<string, unknown>): Record<string, unknown> {
+  if (actor.kind !== 'person' || actor.byPinAt === undefined) return detail
+  return { ...detail, byPinAt: actor.byPinAt.deviceName }
 }

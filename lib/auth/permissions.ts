@@ -31,22 +31,54 @@ const permissions = {
   'batches:write': ['master cooper'],
   'customers:read': ['administrator', 'master cooper', 'chemist', 'toaster'],
   'customers:write': ['administrator', 'master cooper'],
+  'devices:read': ['administrator', 'master cooper'],
+  'devices:write': ['administrator'],
   'audit:read': ['administrator', 'master cooper'],
 } as const satisfies Record<string, readonly Role[]>
 
 export type Permission = keyof typeof permissions
+
+/** What a session that a PIN opened may use of its role: the fireside's work. What is not here needs the password. */
+const byPin: ReadonlySet<Permission> = new Set<Permission>([
+  'room:read',
+  'site:read',
+  'checks:read',
+  'recipes:read',
+  'firings:run',
+  'firings:run trial',
+  'firings:follow',
+  'alarms:read',
+  'alarms:shelve',
+  'batches:read',
+  'batches:read all',
+])
+
+/** What an enrolled device may read with nobody signed in: what stands over the fires, and what waits for them. */
+const byDevice: ReadonlySet<Permission> = new Set<Permission>([
+  'room:read',
+  'firings:follow',
+  'batches:read',
+  'batches:read all',
+])
 
 export function rolesWith(permission: Permission): readonly Role[] {
   return permissions[permission]
 }
 
 export function isAllowed(actor: Actor, permission: Permission): boolean {
-  return actor.kind === 'system' || rolesWith(permission).includes(actor.role)
+  if (actor.kind === 'system') return true
+  if (actor.kind === 'device') return byDevice.has(permission)
+  return rolesWith(permission).includes(actor.role) && (actor.byPinAt === undefined || byPin.has(permission))
 }
 
-/** @throws AppError 'not allowed' when the actor's role lacks the permission. */
+/**
+ * @throws AppError 'not allowed' when the actor's role lacks the permission or a PIN does not open it, 'not signed in'
+ *   for a device with nobody at it
+ */
 export function requirePermission(actor: Actor, permission: Permission): void {
   if (isAllowed(actor, permission)) return
+  if (actor.kind === 'device') throw nobodyAtTheDevice()
+  if (actor.kind === 'person' && rolesWith(permission).includes(actor.role)) throw notByPin()
   const who = rolesWith(permission).join(' or ')
   throw new AppError(
     'not allowed',
@@ -57,5 +89,19 @@ export function requirePermission(actor: Actor, permission: Permission): void {
 /** The actor as a person. @throws AppError 'not allowed' for the system: some things a person must do. */
 export function requirePerson(actor: Actor): PersonActor {
   if (actor.kind === 'person') return actor
+  if (actor.kind === 'device') throw nobodyAtTheDevice()
   throw new AppError('not allowed', 'A person has to do this, signed in.')
+}
+
+/** For what a PIN never opens: one's own account. @throws AppError 'not allowed' */
+export function requirePasswordSession(actor: PersonActor): void {
+  if (actor.byPinAt !== undefined) throw notByPin()
+}
+
+export function notByPin(): AppError {
+  return new AppError('not allowed', 'A PIN opens the fireside alone. Sign in with your password for this.')
+}
+
+function nobodyAtTheDevice(): AppError {
+  return new AppError('not signed in', 'Nobody is signed in here. Choose your name and type your PIN.')
 }

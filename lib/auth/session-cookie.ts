@@ -6,6 +6,10 @@ export const sessionCookieName = 'emberstave_session'
 /** A session ends after this long without use, and after `sessionMaximumS` in any case. */
 export const sessionIdleS = 12 * 3600
 export const sessionMaximumS = 14 * 24 * 3600
+/** One that a PIN opened ends with the shift, … */
+export const pinSessionMaximumS = 12 * 3600
+/** … and when its device has not been heard for its idle minutes and this long: a firing may pass without a network. */
+export const pinGraceS = 2 * 3600
 
 const sealedSchema = z.object({ sessionId: z.uuid() })
 

@@ -19,6 +19,8 @@ type Rule = { freeFailures: number; firstBlockS: number; longestBlockS: number }
 const pairRule: Rule = { freeFailures: 5, firstBlockS: 30, longestBlockS: 900 }
 const accountRule: Rule = { freeFailures: 10, firstBlockS: 5, longestBlockS: 5 }
 const addressRule: Rule = { freeFailures: 30, firstBlockS: 2, longestBlockS: 2 }
+/** A tablet has several people: twice as many wrong PINs as one person before it waits. */
+const deviceRule: Rule = { freeFailures: 10, firstBlockS: 30, longestBlockS: 900 }
 
 /** A counter begins anew when nothing failed, and nothing was blocked, for this long. */
 const forgetAfterS = 3600
@@ -65,6 +67,28 @@ export async function countEnrolmentTry(address: string): Promise<CountedTry> {
   return inTransaction(async (em) => {
     await countAll(em, [counter])
     return { resetKeys: [counter.key], undoKeys: [] }
+  })
+}
+
+/** Counts a try to enrol a tablet or screen by its code. @throws AppError 'too many' */
+export async function countDeviceEnrolmentTry(address: string): Promise<CountedTry> {
+  const counter = { key: keyOf('enrol device', address), rule: pairRule }
+  return inTransaction(async (em) => {
+    await countAll(em, [counter])
+    return { resetKeys: [counter.key], undoKeys: [] }
+  })
+}
+
+/**
+ * Counts a PIN typed at a device: for this person there as for a sign-in, and for the device whoever is chosen, so
+ * that going through the names gains nothing. @throws AppError 'too many'
+ */
+export async function countPinTry(deviceId: string, accountId: string): Promise<CountedTry> {
+  const pair = { key: keyOf('pin', `${accountId} ${deviceId}`), rule: pairRule }
+  const device = { key: keyOf('pin device', deviceId), rule: deviceRule }
+  return inTransaction(async (em) => {
+    await countAll(em, [pair, device])
+    return { resetKeys: [pair.key], undoKeys: [device.key] }
   })
 }
 

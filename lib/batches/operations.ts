@@ -52,6 +52,7 @@ export const operations = {
     summary: 'Barrels and heads; show=waiting is the queue of roses in its order',
     tag: 'batches',
     access: rolesWith('batches:read'),
+    atDevice: 'alone',
     query: listPiecesQuery,
     response: piecePageSchema,
   }),

@@ -52,6 +52,12 @@ export function toCustomerPiece(row: PieceRow): PieceDto {
   })
 }
 
+/** A piece as an enrolled device with nobody signed in sees it: what comes next, and not whose it is. */
+export function toDevicePiece(row: PieceRow): PieceDto {
+  const piece = toCustomerPiece(row)
+  return { ...piece, customer: { ...piece.customer, name: '' }, batch: { ...piece.batch, woodLot: '' } }
+}
+
 export function toPiece(row: PieceRow): PieceDto {
   return {
     id: row.id,

@@ -30,6 +30,12 @@ type Input = z.infer<typeof addMarkSchema> & { firingId: string }
 export async function addMark(actor: Actor, input: Input): Promise<MarkDto> {
   requirePermission(actor, 'firings:run trial')
   const person = requirePerson(actor)
+  if (input.authorId !== undefined && input.authorId !== person.accountId) {
+    throw new AppError(
+      'not signed in',
+      'Somebody else made this mark. It waits until they are signed in here.',
+    )
+  }
   const { mark, isNew } = await inTransaction(async (em) => {
     const firing = await lockFiring(em, input.firingId)
     if (!firing.isTrial) requirePermission(actor, 'firings:run')

@@ -5,10 +5,10 @@ import { requireReadableFiring } from '@/lib/firings/may-read-firing'
 import { readFiring } from '@/lib/firings/read-firing'
 import type { FiringDto } from '@/lib/firings/schema'
 
-/** One firing with its recipe copy, probes and marks. */
+/** One firing with its recipe copy, probes and marks. A device with nobody signed in does not learn whose barrel it is. */
 export async function getFiring(actor: Actor, input: { id: string }): Promise<FiringDto> {
   requirePermission(actor, 'firings:follow')
   const firing = await readFiring(await forkEm(), input.id)
   requireReadableFiring(actor, firing)
-  return firing
+  return actor.kind === 'device' ? { ...firing, batch: { ...firing.batch, customerName: '' } } : firing
 }

@@ -5,7 +5,8 @@ import { isLive } from '@/lib/firings/firing-states'
 import type { FiringSummary } from '@/lib/firings/schema'
 
 /**
- * Staff who compare read every firing; a toaster reads what stands in the room, what waits, and their own.
+ * Staff who compare read every firing; a toaster reads what stands in the room, what waits, and their own; an enrolled
+ * device with nobody signed in what stands in the room and what waits.
  * @throws AppError 'not allowed' without the permission, 'not found' for another toaster's finished firing
  */
 export function requireReadableFiring(actor: Actor, firing: Pick<FiringSummary, 'state' | 'toaster'>): void {

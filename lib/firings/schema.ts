@@ -78,6 +78,8 @@ export const addMarkSchema = z.strictObject({
   probeId: z.uuid('Choose a probe.').optional(),
   isAtSamePlace: z.boolean().optional(),
   replacesId: z.uuid().optional(),
+  /** Who made it, as the tablet knows it; it waits there while somebody else is signed in. */
+  authorId: z.uuid().optional(),
 })
 
 export const finishFiringSchema = z.strictObject({

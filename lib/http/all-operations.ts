@@ -2,6 +2,7 @@ import { operations as accounts } from '@/lib/accounts/operations'
 import { operations as alarms } from '@/lib/alarms/operations'
 import { operations as audit } from '@/lib/audit/operations'
 import { operations as batches } from '@/lib/batches/operations'
+import { operations as devices } from '@/lib/devices/operations'
 import { operations as firings } from '@/lib/firings/operations'
 import { operations as http } from '@/lib/http/operations'
 import { operations as ingest } from '@/lib/ingest/operations'
@@ -21,6 +22,7 @@ const areas: readonly Readonly<Record<string, AnyOperation>>[] = [
   alarms,
   audit,
   batches,
+  devices,
   firings,
   http,
   ingest,

@@ -3,8 +3,17 @@ import type { Role } from '@/lib/auth/actor'
 
 export type Method = 'GET' | 'POST' | 'PUT' | 'DELETE'
 
-/** Who may call: 'public' (no session), 'gateway' (device token), or the roles that can ever succeed. */
-export type Access = 'public' | 'gateway' | readonly Role[]
+/**
+ * Who may call: 'public' (no session), 'gateway' (device token), 'device' (an enrolled tablet's cookie), or the roles
+ * that can ever succeed.
+ */
+export type Access = 'public' | 'gateway' | 'device' | readonly Role[]
+
+/**
+ * At an enrolled device: 'by pin' lets in those of the roles that are signed in there by PIN; 'alone' the device with
+ * nobody signed in as well. Left out, neither.
+ */
+export type AtDevice = 'by pin' | 'alone'
 
 /** One route as data: the source of its validation, its line in the OpenAPI document and its row in the access test. */
 export type Operation<Params, Query, Body> = {
@@ -15,6 +24,7 @@ export type Operation<Params, Query, Body> = {
   summary: string
   tag: string
   access: Access
+  atDevice?: AtDevice
   params?: z.ZodType<Params>
   query?: z.ZodType<Query>
   body?: z.ZodType<Body>

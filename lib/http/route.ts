@@ -1,10 +1,12 @@
 import type * as z from 'zod'
-import type { PersonActor } from '@/lib/auth/actor'
+import type { DeviceActor, PersonActor } from '@/lib/auth/actor'
 import { checkOrigin } from '@/lib/auth/check-origin'
+import { notByPin } from '@/lib/auth/permissions'
+import { readDeviceActor } from '@/lib/auth/read-device-actor'
 import { readSessionActor } from '@/lib/auth/read-session-actor'
 import type { FieldErrors } from '@/lib/errors'
 import { AppError } from '@/lib/errors'
-import type { Access, Operation } from '@/lib/http/operation'
+import type { AnyOperation, Operation } from '@/lib/http/operation'
 import { problemResponse } from '@/lib/http/problem'
 import { readJsonBody } from '@/lib/http/read-json-body'
 
@@ -94,9 +96,8 @@ export function route<Params, Query, Body>(
     try {
       checkOrigin(request)
       const actor = await readSessionActor(request.headers.get('cookie'))
-      if (actor === null)
-        throw new AppError('not signed in', 'Your session has ended. Sign in and try again.')
-      requireAccess(operation.access, actor)
+      if (actor === null) throw sessionEnded()
+      requireAccess(operation, actor)
       return toResponse(await handle(actor, await readCall(operation, request, context)), operation.status)
     } catch (error) {
       return problemResponse(error)
@@ -104,9 +105,62 @@ export function route<Params, Query, Body>(
   }
 }
 
-/** Turns away a role that can never succeed before anything of the request is read; the verb authorises as well. */
-function requireAccess(access: Access, actor: PersonActor): void {
-  if (typeof access !== 'string' && access.includes(actor.role)) return
+/**
+ * A route of the room: a person's session as above, and without one an enrolled device, where the operation says that
+ * it may be alone.
+ */
+export function roomRoute<Params, Query, Body>(
+  operation: Operation<Params, Query, Body>,
+  handle: (actor: PersonActor | DeviceActor, call: Call<Params, Query, Body>) => Promise<Answer>,
+) {
+  return async (request: Request, context?: RouteContext): Promise<Response> => {
+    try {
+      checkOrigin(request)
+      const cookie = request.headers.get('cookie')
+      const person = await readSessionActor(cookie)
+      if (person !== null) requireAccess(operation, person)
+      const actor = person ?? (operation.atDevice === 'alone' ? await readDeviceActor(cookie) : null)
+      if (actor === null) throw sessionEnded()
+      return toResponse(await handle(actor, await readCall(operation, request, context)), operation.status)
+    } catch (error) {
+      return problemResponse(error)
+    }
+  }
+}
+
+/** A route for an enrolled device itself, whoever is signed in at it. */
+export function deviceRoute<Params, Query, Body>(
+  operation: Operation<Params, Query, Body>,
+  handle: (device: DeviceActor, call: Call<Params, Query, Body>) => Promise<Answer>,
+) {
+  return async (request: Request, context?: RouteContext): Promise<Response> => {
+    try {
+      checkOrigin(request)
+      const device = await readDeviceActor(request.headers.get('cookie'))
+      if (device === null) {
+        throw new AppError(
+          'not signed in',
+          'This device is not enrolled here. An administrator makes a code.',
+        )
+      }
+      return toResponse(await handle(device, await readCall(operation, request, context)), operation.status)
+    } catch (error) {
+      return problemResponse(error)
+    }
+  }
+}
+
+function sessionEnded(): AppError {
+  return new AppError('not signed in', 'Your session has ended. Sign in and try again.')
+}
+
+/** Turns away whoever can never succeed before anything of the request is read; the verb authorises as well. */
+function requireAccess(operation: Pick<AnyOperation, 'access' | 'atDevice'>, actor: PersonActor): void {
+  const { access, atDevice } = operation
+  if (typeof access !== 'string' && access.includes(actor.role)) {
+    if (actor.byPinAt !== undefined && atDevice === undefined) throw notByPin()
+    return
+  }
   throw new AppError(
     'not allowed',
     'This is not for your role. Ask your administrator if it should be yours.',

@@ -1,7 +1,8 @@
 import type { Server, Socket } from 'socket.io'
 import type * as z from 'zod'
-import type { PersonActor } from '@/lib/auth/actor'
+import type { DeviceActor, PersonActor } from '@/lib/auth/actor'
 import { requirePermission } from '@/lib/auth/permissions'
+import { readDeviceActor, readDeviceById } from '@/lib/auth/read-device-actor'
 import { readActorOfSession, readSessionActor } from '@/lib/auth/read-session-actor'
 import { env } from '@/lib/env'
 import { AppError } from '@/lib/errors'
@@ -13,13 +14,14 @@ import type { Hub } from '@/lib/live/hub'
 import type { HubOutput } from '@/lib/live/hub-state'
 import { log } from '@/lib/log'
 
-/** How often each session is looked at again: sign-out and a change of role end a socket within 5 s. */
+/** How often each viewer is looked at again: sign-out, a change of role and revoking end a socket within 5 s. */
 export const recheckMs = 2_500
 
 const overviewRoom = 'room'
 const roomOf = (firingId: string) => `firing:${firingId}`
 
-type Viewer = { actor: PersonActor }
+type ViewerActor = PersonActor | DeviceActor
+type Viewer = { actor: ViewerActor }
 
 /** The rooms of the namespace for people, as the hub speaks to them. */
 export function liveOutput(io: Server): HubOutput {
@@ -30,12 +32,12 @@ export function liveOutput(io: Server): HubOutput {
   }
 }
 
-/** Opens the namespace `/live`: session cookie, own origin, rooms by permission. Answers how to stop. */
+/** Opens the namespace `/live`: own origin, session or device cookie, rooms by permission. Answers how to stop. */
 export function attachLive(io: Server, hub: Hub): () => void {
   const live = io.of('/live')
   const viewers = new Map<Socket, Viewer>()
   // A socket that goes before it is connected leaves nothing behind.
-  const admitted = new WeakMap<Socket, PersonActor>()
+  const admitted = new WeakMap<Socket, ViewerActor>()
   live.use((socket, next) => {
     admit(socket).then(
       (actor) => {
@@ -54,14 +56,17 @@ export function attachLive(io: Server, hub: Hub): () => void {
   return startRechecking(viewers)
 }
 
-/** @throws AppError 'not allowed' for another site's page or a role that may not follow, 'not signed in' */
-async function admit(socket: Socket): Promise<PersonActor> {
+/**
+ * An enrolled device is let in as itself, whoever is signed in at it: the picture does not end when people change.
+ * @throws AppError 'not allowed' for another site's page or a role that may not follow, 'not signed in'
+ */
+async function admit(socket: Socket): Promise<ViewerActor> {
   const { origin, cookie } = socket.handshake.headers
   const own = new URL(env().APP_ORIGIN).origin
   if (origin !== undefined && origin !== own) {
     throw new AppError('not allowed', `Live pictures are for pages of ${own} only.`)
   }
-  const actor = await readSessionActor(cookie)
+  const actor = (await readDeviceActor(cookie)) ?? (await readSessionActor(cookie))
   if (actor === null) throw new AppError('not signed in', 'Your session has ended. Sign in and try again.')
   requirePermission(actor, 'firings:follow')
   return actor
@@ -124,23 +129,33 @@ function untouched<T>(input: unknown): T {
   return input as T
 }
 
-/** Reads every session again; one that has ended, changed its role or lost the permission loses its sockets. */
+function keyOf(actor: ViewerActor): string {
+  return actor.kind === 'device' ? `device ${actor.deviceId}` : `session ${actor.sessionId}`
+}
+
+async function readAgain(actor: ViewerActor): Promise<ViewerActor | null> {
+  return actor.kind === 'device' ? readDeviceById(actor.deviceId) : readActorOfSession(actor.sessionId)
+}
+
+function isSameRole(before: ViewerActor, after: ViewerActor): boolean {
+  if (before.kind === 'device' || after.kind === 'device') return before.kind === after.kind
+  return before.role === after.role && before.customerId === after.customerId
+}
+
+/** Reads every viewer again; who has ended, was revoked, changed role or lost the permission loses the sockets. */
 function startRechecking(viewers: Map<Socket, Viewer>): () => void {
   let isRunning = false
   const recheck = async () => {
-    const bySession = new Map<string, [Socket, Viewer][]>()
+    const byKey = new Map<string, [Socket, Viewer][]>()
     for (const entry of viewers) {
-      const { sessionId } = entry[1].actor
-      bySession.set(sessionId, [...(bySession.get(sessionId) ?? []), entry])
+      const key = keyOf(entry[1].actor)
+      byKey.set(key, [...(byKey.get(key) ?? []), entry])
     }
-    for (const [sessionId, entries] of bySession) {
-      const actor = await readActorOfSession(sessionId)
+    for (const entries of byKey.values()) {
+      const [first] = entries
+      const actor = first === undefined ? null : await readAgain(first[1].actor)
       for (const [socket, viewer] of entries) {
-        if (
-          actor !== null &&
-          actor.role === viewer.actor.role &&
-          actor.customerId === viewer.actor.customerId
-        ) {
+        if (actor !== null && isSameRole(viewer.actor, actor)) {
           viewer.actor = actor
           continue
         }

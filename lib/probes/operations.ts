@@ -39,6 +39,7 @@ export const operations = {
     summary: 'Hearths with what stands there now',
     tag,
     access: rolesWith('room:read'),
+    atDevice: 'alone',
     response: hearthListSchema,
   }),
   createHearth: defineOperation({

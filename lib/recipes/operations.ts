@@ -72,6 +72,7 @@ export const operations = {
     summary: 'One recipe version with its stages, cues and signatures',
     tag,
     access: rolesWith('recipes:read'),
+    atDevice: 'by pin',
     params: idParams,
     response: recipeVersionSchema,
   }),

@@ -2,26 +2,30 @@ import { randomUUID } from 'node:crypto'
 import { afterAll, beforeAll, describe, expect, test } from 'vitest'
 import type { Role } from '@/lib/auth/actor'
 import { roles } from '@/lib/auth/actor'
-import { closeOrm } from '@/lib/db/orm'
+import { closeOrm, forkEm, queryRows } from '@/lib/db/orm'
 import { allOperations } from '@/lib/http/all-operations'
 import type { AnyOperation, Method } from '@/lib/http/operation'
 import { callRoute, listRouteFiles } from '@/tests/support/api'
 import type { TestDatabase } from '@/tests/support/database'
 import { createTestDatabase } from '@/tests/support/database'
+import type { TestDevice } from '@/tests/support/devices'
+import { createTestDevice, createTestPinSession } from '@/tests/support/devices'
 import type { TestPeople } from '@/tests/support/people'
 import { createPeople, createTestSession } from '@/tests/support/people'
 
 /**
- * Every route against every role, no session, and a second customer. The bodies are empty and the ids are of nothing,
+ * Every route against every role, no session, a second customer, and an enrolled device with and without a person. The bodies are empty and the ids are of nothing,
  * so that nobody gets far; what is held is who is turned away, and that those who may are not.
  */
 
 let database: TestDatabase
 let people: TestPeople
+let device: TestDevice
 
 beforeAll(async () => {
   database = await createTestDatabase()
   people = await createPeople(database)
+  device = await createTestDevice(people)
 })
 
 afterAll(async () => {
@@ -45,8 +49,11 @@ async function freshCookie(accountId: string): Promise<string> {
   return (await createTestSession(accountId)).cookie
 }
 
+/** What an enrolled device may ask of a list that it sees a part of. */
+const queryOf: Readonly<Record<string, string>> = { listPieces: '?show=waiting' }
+
 function call(operation: AnyOperation, cookie: string | undefined, headers: Record<string, string> = {}) {
-  const path = operation.path.replaceAll(/\{\w+\}/g, () => randomUUID())
+  const path = operation.path.replaceAll(/\{\w+\}/g, () => randomUUID()) + (queryOf[operation.id] ?? '')
   const body = operation.body === undefined ? undefined : {}
   return callRoute(operation.method, path, { cookie, body, headers })
 }
@@ -54,6 +61,7 @@ function call(operation: AnyOperation, cookie: string | undefined, headers: Reco
 const rows = allOperations.map((operation) => [`${operation.method} ${operation.path}`, operation] as const)
 const guarded = rows.filter(([, operation]) => Array.isArray(operation.access))
 const open = rows.filter(([, operation]) => operation.access === 'public')
+const ofDevices = rows.filter(([, operation]) => operation.access === 'device')
 const ofGateways = rows.filter(([, operation]) => operation.access === 'gateway')
 
 function allowedRoles(operation: AnyOperation): readonly Role[] {
@@ -102,6 +110,62 @@ describe.each(ofGateways)('%s', (_name, operation) => {
     const cookie = await freshCookie(people.administrator.accountId)
     expect((await call(operation, cookie)).status).toBe(401)
     expect((await call(operation, undefined, { authorization: 'Bearer nothing' })).status).toBe(401)
+  })
+})
+
+describe.each(ofDevices)('%s', (_name, operation) => {
+  test('takes an enrolled device’s cookie, and neither a session nor nothing nor a revoked one', async () => {
+    expect((await call(operation, undefined)).status).toBe(401)
+    const cookie = await freshCookie(people.administrator.accountId)
+    expect((await call(operation, cookie)).status).toBe(401)
+    const { status, text } = await call(operation, device.cookie)
+    expect([200, 204, 422], text.slice(0, 200)).toContain(status)
+    const gone = await createTestDevice(people)
+    await queryRows(
+      await forkEm(),
+      'update devices set revoked_at = now(), revoked_by = created_by where id = ?',
+      [gone.id],
+    )
+    expect((await call(operation, gone.cookie)).status).toBe(401)
+  })
+
+  test('from another origin is refused when it writes', async () => {
+    if (operation.method === 'GET') return
+    expect((await call(operation, device.cookie, { origin: 'https://elsewhere.example' })).status).toBe(403)
+  })
+})
+
+describe.each(guarded)('at an enrolled device, %s', (_name, operation) => {
+  test('opens to a PIN only where that is said, and to no role besides', async () => {
+    for (const role of ['toaster', 'master cooper', 'chemist'] as const) {
+      const { cookie } = await createTestPinSession(device, personOf(role).accountId)
+      const { status, text } = await call(operation, cookie)
+      const what = `${role}: ${status} ${text.slice(0, 200)}`
+      if (operation.atDevice === undefined || !allowedRoles(operation).includes(role)) {
+        expect(status, what).toBe(403)
+      } else {
+        expect([200, 201, 202, 204, 404, 409, 422], what).toContain(status)
+      }
+    }
+  })
+
+  test('a PIN’s session without the device’s cookie, or beside another’s, is no session', async () => {
+    const { sessionCookie } = await createTestPinSession(device, people.toaster.accountId)
+    const other = await createTestDevice(people)
+    expect((await call(operation, sessionCookie)).status).toBe(401)
+    expect((await call(operation, `${other.cookie}; ${sessionCookie}`)).status).toBe(
+      operation.atDevice === 'alone' ? (await call(operation, other.cookie)).status : 401,
+    )
+  })
+
+  test('with nobody signed in it reads what stands in the room, and nothing else', async () => {
+    const { status, text } = await call(operation, device.cookie)
+    if (operation.atDevice === 'alone') {
+      expect(operation.method).toBe('GET')
+      expect([200, 404], text.slice(0, 200)).toContain(status)
+    } else {
+      expect(status, text.slice(0, 200)).toBe(401)
+    }
   })
 })
 

@@ -6,9 +6,11 @@ import { createLiveFiringClient } from '@/components/live/live-firing-client'
 import { closeOrm, forkEm, queryRows } from '@/lib/db/orm'
 import { closeIngestPool } from '@/lib/ingest/ingest-pool'
 import { ingestAnswerSchema } from '@/lib/gateway/protocol'
+import { recheckMs } from '@/lib/live/attach-live'
 import { roomStateSchema } from '@/lib/live/events'
 import type { TestDatabase } from '@/tests/support/database'
 import { createTestDatabase } from '@/tests/support/database'
+import { createTestDevice, createTestPinSession } from '@/tests/support/devices'
 import type { Fire } from '@/tests/support/fire'
 import { makeFire } from '@/tests/support/fire'
 import type { LiveServer } from '@/tests/support/live-server'
@@ -149,6 +151,50 @@ it('signing out and a change of role end the socket within 5 s; another session 
   await Promise.all([ended, changed])
   await until(() => !socket.connected && !changing.connected, 1_000)
   expect(other.connected).toBe(true)
+})
+
+it('an enrolled device follows with nobody signed in, and goes on while people change at it', async () => {
+  const device = await createTestDevice(people)
+  const alone = await connect(server.viewer(device.cookie))
+  expect(await ask(alone, 'firing:join', { firingId: fire.firing.id })).toMatchObject({ isFresh: true })
+  const session = await createTestPinSession(device, people.toaster.accountId)
+  const marking = await connect(server.viewer(session.cookie))
+  await queryRows(await forkEm(), 'update sessions set ended_at = now() where id = ?', [session.sessionId])
+  await new Promise((resolve) => setTimeout(resolve, 2 * recheckMs + 500))
+  expect([alone.connected, marking.connected]).toEqual([true, true])
+})
+
+it('a revoked device loses its sockets within 5 s, and cannot come back', async () => {
+  const device = await createTestDevice(people)
+  const session = await createTestPinSession(device, people.toaster.accountId)
+  const sockets = [await connect(server.viewer(device.cookie)), await connect(server.viewer(session.cookie))]
+  const ended = sockets.map((socket) => nextEvent(socket, 'session:ended', 5_000))
+  await queryRows(
+    await forkEm(),
+    'update devices set revoked_at = now(), revoked_by = created_by where id = ?',
+    [device.id],
+  )
+  await Promise.all(ended)
+  await until(() => sockets.every((socket) => !socket.connected), 1_000)
+  for (const cookie of [device.cookie, session.cookie]) {
+    const socket = server.viewer(cookie)
+    const refused = nextEvent<Error & { data?: unknown }>(socket, 'connect_error')
+    socket.connect()
+    expect((await refused).data).toMatchObject({ status: 401 })
+    socket.close()
+  }
+})
+
+it('a PIN’s session beside no device’s cookie does not even connect', async () => {
+  const { sessionCookie } = await createTestPinSession(
+    await createTestDevice(people),
+    people.toaster.accountId,
+  )
+  const socket = server.viewer(sessionCookie)
+  const refused = nextEvent<Error & { data?: unknown }>(socket, 'connect_error')
+  socket.connect()
+  expect((await refused).data).toMatchObject({ status: 401 })
+  socket.close()
 })
 
 it('two viewers of one firing agree on every point and on the state', async () => {

@@ -1,5 +1,5 @@
 import { listPieces } from '@/lib/batches/list-pieces'
 import { operations } from '@/lib/batches/operations'
-import { route } from '@/lib/http/route'
+import { roomRoute } from '@/lib/http/route'
 
-export const GET = route(operations.listPieces, (actor, { query }) => listPieces(actor, query))
+export const GET = roomRoute(operations.listPieces, (actor, { query }) => listPieces(actor, query))

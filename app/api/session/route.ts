@@ -10,7 +10,7 @@ export const POST = openRoute(operations.signIn, async ({ body, request }) => {
   return cookieAnswer(started.setCookie)
 })
 
-export const DELETE = route(operations.signOut, async (actor) => {
-  await signOut(actor)
+export const DELETE = route(operations.signOut, async (actor, { query }) => {
+  await signOut(actor, query)
   return cookieAnswer(clearedSessionCookie())
 })

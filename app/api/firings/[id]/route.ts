@@ -1,5 +1,5 @@
 import { getFiring } from '@/lib/firings/get-firing'
 import { operations } from '@/lib/firings/operations'
-import { route } from '@/lib/http/route'
+import { roomRoute } from '@/lib/http/route'
 
-export const GET = route(operations.getFiring, (actor, { params }) => getFiring(actor, params))
+export const GET = roomRoute(operations.getFiring, (actor, { params }) => getFiring(actor, params))

@@ -1,7 +1,7 @@
 import { getReadings } from '@/lib/firings/get-readings'
 import { operations } from '@/lib/firings/operations'
-import { route } from '@/lib/http/route'
+import { roomRoute } from '@/lib/http/route'
 
-export const GET = route(operations.getReadings, (actor, { params, query }) =>
+export const GET = roomRoute(operations.getReadings, (actor, { params, query }) =>
   getReadings(actor, { ...query, id: params.id }),
 )

@@ -1,0 +1,92 @@
+import { rolesWith } from '@/lib/auth/permissions'
+import * as s from '@/lib/devices/schema'
+import { defineOperation } from '@/lib/http/operation'
+
+const tag = 'Devices'
+
+export const operations = {
+  listDevices: defineOperation({
+    id: 'listDevices',
+    method: 'GET',
+    path: '/api/devices',
+    summary: 'Tablets and wall screens by name, with search and state',
+    tag,
+    access: rolesWith('devices:read'),
+    query: s.deviceListQuery,
+    response: s.devicePageSchema,
+  }),
+  makeDevice: defineOperation({
+    id: 'makeDevice',
+    method: 'POST',
+    path: '/api/devices',
+    summary: 'Make a place for a tablet or wall screen, with the one-time code that is typed at it',
+    tag,
+    access: rolesWith('devices:write'),
+    body: s.makeDeviceBody,
+    response: s.deviceCodeSchema,
+    status: 201,
+  }),
+  updateDevice: defineOperation({
+    id: 'updateDevice',
+    method: 'PUT',
+    path: '/api/devices/{id}',
+    summary: 'Rename a device or move it to another hearth; it counts from its next request on',
+    tag,
+    access: rolesWith('devices:write'),
+    params: s.idParams,
+    body: s.updateDeviceBody,
+    response: s.deviceSchema,
+  }),
+  makeDeviceCode: defineOperation({
+    id: 'makeDeviceCode',
+    method: 'POST',
+    path: '/api/devices/{id}/codes',
+    summary: 'A new code for a device; the former tablet serves until it is typed at the next',
+    tag,
+    access: rolesWith('devices:write'),
+    params: s.idParams,
+    response: s.deviceCodeSchema,
+    status: 201,
+  }),
+  revokeDevice: defineOperation({
+    id: 'revokeDevice',
+    method: 'POST',
+    path: '/api/devices/{id}/revoke',
+    summary: 'Revoke a device for good, with what a PIN opened at it',
+    tag,
+    access: rolesWith('devices:write'),
+    params: s.idParams,
+    response: s.deviceSchema,
+  }),
+  enrolDevice: defineOperation({
+    id: 'enrolDevice',
+    method: 'POST',
+    path: '/api/devices/enrol',
+    summary:
+      'Make this browser the device of a one-time code; sets the device’s cookie; tries are counted by address',
+    tag,
+    access: 'public',
+    body: s.enrolDeviceBody,
+    bodyLimit: 8 * 1024,
+    response: s.enrolledDeviceSchema,
+  }),
+  listPinPeople: defineOperation({
+    id: 'listPinPeople',
+    method: 'GET',
+    path: '/api/device/people',
+    summary: 'Who may sign in at this device by PIN',
+    tag,
+    access: 'device',
+    response: s.pinPeopleSchema,
+  }),
+  signInByPin: defineOperation({
+    id: 'signInByPin',
+    method: 'POST',
+    path: '/api/device/session',
+    summary: 'Sign in at this device by PIN; the answer sets the session cookie. Good for the fireside alone',
+    tag,
+    access: 'device',
+    body: s.pinSignInBody,
+    bodyLimit: 8 * 1024,
+  }),
+}
