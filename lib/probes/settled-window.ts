@@ -1,6 +1,7 @@
 import type { EntityManager } from '@mikro-orm/postgresql'
 import { invalidField } from '@/lib/errors'
 import { readRawReadings } from '@/lib/probes/read-raw-readings'
+import { settlingRule } from '@/lib/probes/settling-rule'
 import { nowMs } from '@/lib/runtime'
 import type { SiteRules } from '@/lib/science/site-rules'
 import type { SettlingState } from '@/lib/science/stability'
@@ -17,11 +18,6 @@ const whyNot: Record<Exclude<SettlingState, 'settled'>, string> = {
   'too few': 'It has not given readings for long enough.',
   scattered: 'It still scatters too much.',
   drifting: 'It still drifts too fast.',
-}
-
-/** The site's rule of settling, as `settlingOf` takes it. */
-export function settlingRule({ settleWindowS, settleSdC, settleSlopeCPerMin }: SiteRules['checks']) {
-  return { windowS: settleWindowS, sdMaxC: settleSdC, slopeMaxCPerMin: settleSlopeCPerMin }
 }
 
 /**

@@ -1,5 +1,6 @@
 import { leadCheckFaults } from '@/lib/probes/lead-check-faults'
 import type { ProbeCheckDto, ProbeDto } from '@/lib/probes/schema'
+import { toCheckRow } from '@/lib/probes/to-check-row'
 import { nowMs } from '@/lib/runtime'
 
 type CheckRow = {
@@ -91,14 +92,7 @@ export function checksOf(row: ProbeRow): ProbeCheckDto[] {
 export function toProbe(row: ProbeRow, dueSoonDays: number): ProbeDto {
   const all = checksOf(row)
   const atMs = nowMs()
-  const facts = all.map((check) => ({
-    kind: check.kind,
-    referenceTempC: check.referenceTempC,
-    measuredTempC: check.measuredTempC,
-    uncertaintyC: check.uncertaintyC,
-    checkedAtMs: Date.parse(check.checkedAt),
-    dueAtMs: Date.parse(check.dueAt),
-  }))
+  const facts = all.map(toCheckRow)
   const newest = all.filter((check, index) => all.findIndex((one) => one.kind === check.kind) === index)
   const checks = newest.sort((a, b) => a.referenceTempC - b.referenceTempC)
   const dueAt = checks.map((check) => check.dueAt).sort()[0] ?? null
