@@ -112,5 +112,7 @@ function statusWords({ preview, isPreviewBehind, isBusy }: FitPanelViewProps): s
   if (isPreviewBehind) return 'Changed since the preview: look again.'
   const wrong = preview.rows.filter((row) => row.error !== null).length
   if (wrong > 0) return `${wrong === 1 ? 'One row' : `${wrong} rows`} to mend or take out.`
-  return preview.outcome?.ok === true ? `${preview.rows.length} rows, all used.` : ''
+  return preview.outcome?.ok === true
+    ? `${preview.rows.length} rows, all used.`
+    : 'These results do not support this fit: why stands below.'
 }

@@ -27,6 +27,7 @@ export function PreviewTable({
           key: 'source',
           head: 'Barrel or dose',
           isRowHead: true,
+          className: 'whitespace-nowrap',
           cell: (row) => row.result?.serial ?? row.typedSource,
         },
         ...keys.map((key) => ({
