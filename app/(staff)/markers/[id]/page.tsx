@@ -1,6 +1,8 @@
 import type { Metadata } from 'next'
+import { forbidden } from 'next/navigation'
 import { MarkerView } from '@/components/markers/marker-view'
 import { requirePageActor } from '@/lib/auth/page-actor'
+import { isAllowed } from '@/lib/auth/permissions'
 import { orNotFound } from '@/lib/http/or-not-found'
 import type { SearchParams } from '@/lib/http/page-query'
 import { readPageQuery } from '@/lib/http/page-query'
@@ -17,6 +19,7 @@ export default async function MarkerPage({
   searchParams: SearchParams
 }) {
   const actor = await requirePageActor()
+  if (!isAllowed(actor, 'markers:read')) forbidden()
   const { id } = await params
   const { query } = await readPageQuery(markerPageQuery, searchParams)
   const desk = await orNotFound(getMarkerDesk(actor, { id }), id)
