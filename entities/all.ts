@@ -4,10 +4,15 @@ import { AccountEntity } from './account'
 import { AlarmEventEntity } from './alarm-event'
 import { AuditEntryEntity } from './audit-entry'
 import { BatchEntity } from './batch'
+import { ConditionReadingEntity } from './condition-reading'
 import { CueEntity } from './cue'
 import { CustomerEntity } from './customer'
+import { ExposureReadingEntity } from './exposure-reading'
+import { ExposureUploadEntity } from './exposure-upload'
+import { FiringPhotoEntity } from './firing-photo'
 import { DeviceEnrolmentEntity } from './device-enrolment'
 import { DeviceEntity } from './device'
+import { ForecastOutcomeEntity } from './forecast-outcome'
 import { FiringPlacementEntity } from './firing-placement'
 import { FiringProbeEntity } from './firing-probe'
 import { FiringEntity } from './firing'
@@ -17,6 +22,7 @@ import { GatewayLossEntity } from './gateway-loss'
 import { GatewayTokenEntity } from './gateway-token'
 import { GatewayEntity } from './gateway'
 import { HearthEntity } from './hearth'
+import { LossEntity } from './loss'
 import { MarkEntity } from './mark'
 import { MarkerResponseEntity } from './marker-response'
 import { MarkerEntity } from './marker'
@@ -47,19 +53,25 @@ export const entities = [
   AlarmEventEntity,
   AuditEntryEntity,
   BatchEntity,
+  ConditionReadingEntity,
   CueEntity,
   CustomerEntity,
+  ExposureReadingEntity,
+  ExposureUploadEntity,
+  FiringPhotoEntity,
   DeviceEnrolmentEntity,
   DeviceEntity,
   FiringPlacementEntity,
   FiringProbeEntity,
   FiringEntity,
+  ForecastOutcomeEntity,
   GatewayBootEntity,
   GatewayEnrolmentEntity,
   GatewayLossEntity,
   GatewayTokenEntity,
   GatewayEntity,
   HearthEntity,
+  LossEntity,
   MarkEntity,
   MarkerResponseEntity,
   MarkerEntity,

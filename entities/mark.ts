@@ -22,6 +22,9 @@ export const MarkEntity = defineEntity({
       'note',
       'swap',
       'undone',
+      'reason',
+      'advice',
+      'move',
     ]),
     at: p.datetime(),
     recordedAt: p.datetime(),
@@ -34,6 +37,10 @@ export const MarkEntity = defineEntity({
     swapRole: p.enum(['lead', 'opposite', 'coals']).nullable(),
     fromProbeId: p.uuid().nullable(),
     toProbeId: p.uuid().nullable(),
+    step: p.enum(['preheat', 'bend', 'stage', 'rest']).nullable(),
+    answer: p.enum(['taken', 'not now']).nullable(),
+    fromHearthId: p.uuid().nullable(),
+    toHearthId: p.uuid().nullable(),
   },
 })
 

@@ -10,6 +10,7 @@ import { M0009GatewayEnrolmentProbeHistory } from './m0009-gateway-enrolment-pro
 import { M0010Alarms } from './m0010-alarms'
 import { M0011PhotosLossesConditions } from './m0011-photos-losses-conditions'
 import { M0012DevicesPins } from './m0012-devices-pins'
+import { M0013Sequence } from './m0013-sequence'
 
 /** In the order in which they run; a landed migration is never edited. */
 export const migrationsList = [
@@ -25,4 +26,5 @@ export const migrationsList = [
   { name: 'm0010-alarms', class: M0010Alarms },
   { name: 'm0011-photos-losses-conditions', class: M0011PhotosLossesConditions },
   { name: 'm0012-devices-pins', class: M0012DevicesPins },
+  { name: 'm0013-sequence', class: M0013Sequence },
 ]

@@ -7,11 +7,15 @@ export function pictureWords(mark: MarkDto): string | null {
     case 'stage':
     case 'note':
     case 'undone':
+    case 'reason':
+    case 'advice':
       return null
     case 'turn':
       return 'turned'
     case 'turn over':
       return 'turned over'
+    case 'move':
+      return 'moved'
     case 'swap':
       return 'probe swapped'
     case 'call':
@@ -43,6 +47,9 @@ const kindWords: Record<MarkDto['kind'], string> = {
   'turn over': 'Turned over',
   swap: 'Probe swapped',
   undone: 'Taken back',
+  reason: 'Reason',
+  advice: 'Advice',
+  move: 'Moved',
 }
 
 function stageName(firing: FiringDto, position: number | null): string {
@@ -50,10 +57,17 @@ function stageName(firing: FiringDto, position: number | null): string {
   return stage?.name ?? 'the stage'
 }
 
+function stepName(firing: FiringDto, { step, stagePosition }: MarkDto): string {
+  if (step === 'stage') return stageName(firing, stagePosition)
+  return step === 'bend' ? 'the pull' : `the ${step ?? 'step'}`
+}
+
 function mainWords(firing: FiringDto, mark: MarkDto): string {
   if (mark.kind === 'phase' && mark.phase !== null) return phaseWords[mark.phase]
   if (mark.kind === 'stage') return `End of ${stageName(firing, mark.stagePosition)}`
   if (mark.kind === 'call') return `${stageName(firing, mark.stagePosition)} called ${mark.call ?? ''}`
+  if (mark.kind === 'reason') return `Why ${stepName(firing, mark)} was short`
+  if (mark.kind === 'advice') return mark.answer === 'taken' ? 'Advice taken' : 'Advice not taken now'
   return kindWords[mark.kind]
 }
 

@@ -1,7 +1,8 @@
 import { StaveGauge } from '@/components/ui/stave-gauge'
 import { classNames } from '@/components/ui/class-names'
-import { formatInstant, formatNumber, formatPercent } from '@/lib/format'
+import { formatInstant, formatNumber } from '@/lib/format'
 import type { FiringState } from '@/lib/live/events'
+import { roundPercent } from './fireside-figures'
 import { firesideType } from './fireside-type'
 
 export type DoseFigureProps = {
@@ -70,9 +71,4 @@ function Gauge({ dose, toleranceLog10 }: Pick<DoseFigureProps, 'dose' | 'toleran
       width={fraction < THREE_FIGURES_FROM ? GAUGE_PX : GAUGE_NARROW_PX}
     />
   )
-}
-
-/** Whole per cent; from far off "under 1 %" would not be read. */
-export function roundPercent(fraction: number): string {
-  return formatPercent(Math.round(fraction * 100) / 100)
 }

@@ -1,6 +1,5 @@
 import { formatAge } from '@/lib/format'
 import type { FiringState } from '@/lib/live/events'
-import type { Plan } from '@/lib/recipes/plan-of'
 
 /** A state older than this is not now: the hub sends one a second. */
 export const CUT_AFTER_MS = 3_000
@@ -9,7 +8,7 @@ export const NO_READING_AFTER_MS = 8_000
 
 type Role = FiringState['signals'][number]['role']
 /** The part of a state that the room's rows have as well. */
-type Known = Pick<FiringState, 'atMs' | 'signals' | 'woodTempC' | 'planTempC' | 'toastS'>
+type Known = Pick<FiringState, 'atMs' | 'signals'>
 
 /**
  * What may be shown of a probe. `live` is now; `old` is the last value with its age, drawn as such; `none` is NO
@@ -55,17 +54,4 @@ export function readingNote(reading: ProbeReading): string | null {
     return reading.ageS === null ? reading.cause : `${reading.cause}, ${formatAge(reading.ageS)}`
   }
   return null
-}
-
-/** The plan's band about a moment, half its width in °C; null outside the plan. */
-export function bandHalfAt(plan: Pick<Plan, 'stages'>, timeS: number): number | null {
-  const stage = plan.stages.find((one) => timeS >= one.startS && timeS <= one.endS)
-  return stage?.bandHalfWidthC ?? null
-}
-
-/** A reading twice the band away from the plan takes the colour; less is said in words alone. */
-export function isFarFromPlan(state: Known, plan: Pick<Plan, 'stages'>): boolean {
-  if (state.woodTempC === null || state.planTempC === null || state.toastS === null) return false
-  const halfC = bandHalfAt(plan, state.toastS)
-  return halfC !== null && Math.abs(state.woodTempC - state.planTempC) > 2 * halfC
 }

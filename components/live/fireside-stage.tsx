@@ -1,6 +1,6 @@
 import { classNames } from '@/components/ui/class-names'
 import { PressButton } from './fireside-press-button'
-import { clockFigures } from './fireside-step'
+import { clockFigures } from './fireside-figures'
 import type { MainStep, StepClock } from './fireside-step'
 import { firesideType } from './fireside-type'
 

@@ -1,6 +1,7 @@
 import { stageNow } from '@/lib/live/stage-now'
 import type { FiresideFacts } from './fireside-facts'
 import { pullOf } from './fireside-facts'
+import { inSentence } from './fireside-figures'
 import type { MarkDraft } from './fireside-mark-queue'
 
 /** What the one large control does now, and whether its time has come. */
@@ -63,11 +64,6 @@ function stageStep(facts: FiresideFacts, nowMs: number): MainStep | null {
   }
 }
 
-/** A stage's name inside a sentence: "Hold" becomes "hold", an abbreviation stays. */
-export function inSentence(name: string): string {
-  return /^[A-Z][a-z]/.test(name) ? name.charAt(0).toLowerCase() + name.slice(1) : name
-}
-
 export function stepClock(facts: FiresideFacts, nowMs: number): StepClock | null {
   const { content } = facts
   if (facts.state === 'preheating') {
@@ -91,15 +87,4 @@ function countDown(name: string, endMs: number, nowMs: number): StepClock {
   const leftS = (endMs - nowMs) / 1000
   if (leftS >= 0) return { words: `${name}, time left`, seconds: leftS }
   return { words: `${name}, over by`, seconds: -leftS }
-}
-
-/**
- * The clock's figures: minutes go on past 60 ("65:00"), since hours would not fit at this size. From 100 minutes on
- * whole minutes.
- */
-export function clockFigures(seconds: number): string {
-  // A countdown reads 0:00 only when nothing is left, so the last part of a second still counts as one.
-  const whole = Math.max(0, Math.ceil(seconds - 1e-6))
-  const minutes = Math.floor(whole / 60)
-  return minutes >= 100 ? String(minutes) : `${minutes}:${String(whole % 60).padStart(2, '0')}`
 }

@@ -21,12 +21,19 @@ export const firesideType = {
   small: { px: 18, className: 'text-[18px] leading-[1.2]' },
 } as const
 
-/** The room is read from 4 m by those who stand at another hearth. */
+/**
+ * The room is read from 4 m by those who stand at another hearth: its figures fill at least 10 arc-minutes there, twice
+ * what normal sight resolves (5 arc-minutes a letter, Snellen's 20/20). On a wall screen 12 and more. Words are for
+ * whoever comes nearer.
+ */
 export const roomType = {
-  numeral: { px: 72, className: 'text-[72px] leading-none font-[640]' },
+  numeral: { px: 92, className: 'text-[92px] leading-[0.85] font-[640]' },
   /** With five or six hearths on the screen. */
-  numeralTight: { px: 62, className: 'text-[62px] leading-none font-[640]' },
-  words: { px: 24, className: 'text-[24px] leading-[1.15]' },
+  numeralTight: { px: 80, className: 'text-[80px] leading-[0.85] font-[640]' },
+  wall: { px: 116, className: 'text-[116px] leading-[0.85] font-[640]' },
+  wallTight: { px: 96, className: 'text-[96px] leading-[0.8] font-[640]' },
+  words: { px: 26, className: 'text-[26px] leading-[1.1]' },
+  wallWords: { px: 30, className: 'text-[30px] leading-[1.05]' },
   label: { px: 20, className: 'text-[20px] leading-[1.2]' },
 } as const
 

@@ -1,16 +1,17 @@
 import Link from 'next/link'
-import { memo } from 'react'
-import { Pair } from '@/components/chart/pair'
-import type { PairProps } from '@/components/chart/pair-types'
+import type { ReactNode } from 'react'
 import { classNames } from '@/components/ui/class-names'
 import { shownAlarmWords, splitAlarmWords } from '@/lib/alarms/alarm-words'
+import type { Sketch } from '@/lib/firings/sketch'
 import { formatAge, formatFromPlan, formatNumber, toShownTemp } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
 import type { RoomFiring } from '@/lib/live/events'
-import { roundPercent } from './fireside-dose-figure'
+import { clockFigures, roundPercent } from './fireside-figures'
 import type { ProbeReading } from './fireside-reading'
-import { clockFigures } from './fireside-step'
 import { roomType } from './fireside-type'
+import { RoomPicture } from './room-picture'
+import type { RoomSize } from './room-size'
+import { roomColumns, roomNumeral, roomWords } from './room-size'
 import type { RoomTime } from './room-view'
 
 export type RoomRowProps = {
@@ -18,27 +19,22 @@ export type RoomRowProps = {
   firingId: string
   serial: string
   recipeName: string
-  pair: PairProps | null
+  sketch: Sketch | null
   firing: RoomFiring | null
   lead: ProbeReading
   isFar: boolean
   edge: 'red' | 'amber' | null
   time: RoomTime | null
-  isTight: boolean
+  size: RoomSize
   unit: TemperatureUnit
 }
 
-/** One hearth with a barrel over its fire; the whole row opens the fireside. */
+/** One hearth with a barrel over its fire; the whole row opens the fireside, except on a wall screen. */
 export function RoomRow(props: RoomRowProps) {
-  const { hearthNumber, firing, edge, time } = props
-  const numeral = props.isTight ? roomType.numeralTight.className : roomType.numeral.className
+  const { hearthNumber, edge, size } = props
+  const numeral = roomNumeral(size).className
   return (
-    <Link
-      href={`/fireside/${props.firingId}`}
-      className={classNames(
-        'relative grid min-h-0 grid-cols-[176px_minmax(0,1fr)_175px_190px_262px] items-center border-b border-line px-6 active:bg-wash',
-      )}
-    >
+    <RowFrame {...props}>
       {edge === null ? null : (
         <span
           aria-hidden="true"
@@ -51,50 +47,80 @@ export function RoomRow(props: RoomRowProps) {
           {hearthNumber}
         </p>
         <p className={classNames(roomType.label.className, 'mt-1 truncate text-soft')}>{props.serial}</p>
-        {props.isTight ? null : (
+        {size.isTight ? null : (
           <p className={classNames(roomType.label.className, 'truncate text-soft')}>{props.recipeName}</p>
         )}
       </div>
-      <div className="flex h-full min-h-0 min-w-0 items-center py-3 pr-9">
-        {props.pair === null ? null : <RoomPicture pair={props.pair} isTight={props.isTight} />}
+      <div className="flex h-full min-h-0 min-w-0 items-center py-3 pr-8">
+        {props.sketch === null ? null : (
+          <RoomPicture sketch={props.sketch} serial={props.serial} unit={props.unit} isLow={size.isTight} />
+        )}
       </div>
       <WoodCell {...props} numeral={numeral} />
-      <div>
-        <p className={classNames(numeral, 'whitespace-nowrap')}>
-          {firing === null ? (
-            '–'
-          ) : (
-            <Percent text={roundPercent(firing.dose.minutes / firing.dose.targetMinutes)} />
-          )}
-        </p>
-        <p className={classNames(roomType.label.className, 'mt-1 text-soft')}>{doseWords(firing)}</p>
-      </div>
-      <div className="min-w-0">
-        <p className={numeral}>{time === null || time.leftS === null ? '–' : clockFigures(time.leftS)}</p>
-        <p
-          className={classNames(roomType.words.className, 'mt-1 line-clamp-2', edge !== null && 'font-[560]')}
-        >
-          {firing === null || firing.alarm === null
-            ? timeWords(time)
-            : splitAlarmWords(shownAlarmWords(firing.alarm.words, props.unit)).headline}
-        </p>
-      </div>
+      <DoseCell {...props} numeral={numeral} />
+      <TimeCell {...props} numeral={numeral} />
+    </RowFrame>
+  )
+}
+
+function RowFrame({ firingId, size, children }: RoomRowProps & { children: ReactNode }) {
+  const className = classNames(
+    'relative grid min-h-0 items-center overflow-hidden border-b border-line px-6',
+    roomColumns(size),
+  )
+  if (size.isWall) return <div className={className}>{children}</div>
+  return (
+    <Link href={`/fireside/${firingId}`} className={classNames(className, 'active:bg-wash')}>
+      {children}
     </Link>
   )
 }
 
-/** Drawn again only when the curve is, not with every tick of the clock. */
-const RoomPicture = memo(function RoomPicture({ pair, isTight }: { pair: PairProps; isTight: boolean }) {
+type CellProps = RoomRowProps & { numeral: string }
+
+function DoseCell({ firing, numeral }: CellProps) {
   return (
-    <Pair {...pair} widthPx={392} heightPx={isTight ? 96 : 152} woodShare={0.3} className="h-full w-full" />
+    <div>
+      <p className={classNames(numeral, 'whitespace-nowrap')}>
+        {firing === null ? (
+          '–'
+        ) : (
+          <Percent text={roundPercent(firing.dose.minutes / firing.dose.targetMinutes)} />
+        )}
+      </p>
+      <p className={classNames(roomType.label.className, 'mt-1 whitespace-nowrap text-soft')}>
+        {doseWords(firing)}
+      </p>
+    </div>
   )
-})
+}
+
+/** What the worst alarm says stands in the place of what comes next. */
+function TimeCell({ firing, time, edge, size, unit, numeral }: CellProps) {
+  return (
+    <div className="min-w-0">
+      <p className={numeral}>{time === null || time.leftS === null ? '–' : clockFigures(time.leftS)}</p>
+      <p
+        className={classNames(
+          roomWords(size).className,
+          'mt-1',
+          size.isTight ? 'line-clamp-1' : 'line-clamp-2',
+          edge !== null && 'font-[560]',
+        )}
+      >
+        {firing === null || firing.alarm === null
+          ? timeWords(time)
+          : splitAlarmWords(shownAlarmWords(firing.alarm.words, unit)).headline}
+      </p>
+    </div>
+  )
+}
 
 function Percent({ text }: { text: string }) {
   return (
     <>
       {text.replace(/\D*$/, '')}
-      <span className="ml-2 text-[42px]">%</span>
+      <span className="ml-1 text-[42px]">%</span>
     </>
   )
 }
@@ -110,10 +136,10 @@ function timeWords(time: RoomTime | null): string {
   return time.isOver ? `over: ${time.words}` : time.words
 }
 
-function WoodCell({ lead, firing, isFar, unit, numeral }: RoomRowProps & { numeral: string }) {
+function WoodCell({ lead, firing, isFar, unit, numeral }: CellProps) {
   if (lead.kind === 'none') {
     return (
-      <p className="text-[40px] leading-[1] font-[640] text-amber">
+      <p className="text-[44px] leading-[1] font-[640] text-amber">
         NO
         <br />
         READING

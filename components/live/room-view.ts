@@ -1,5 +1,5 @@
 import type { RoomFiring } from '@/lib/live/events'
-import { inSentence } from './fireside-step'
+import { inSentence } from './fireside-figures'
 
 /** What a row says of the time: the stage's or phase's seconds left, and what comes next. */
 export type RoomTime = { leftS: number | null; isOver: boolean; words: string }

@@ -66,11 +66,11 @@ function changeOf(kind: Input['kind']): FiringChange {
 }
 
 async function insertMark(em: EntityManager, firing: Firing, input: Input, accountId: string): Promise<void> {
-  const isCorrection = input.replacesId !== undefined
-  if (!isLive(firing.state) && !(firing.state === 'finished' && (isCorrection || input.kind === 'note'))) {
+  const isLateKind = input.replacesId !== undefined || input.kind === 'note' || input.kind === 'reason'
+  if (!isLive(firing.state) && !(firing.state === 'finished' && isLateKind)) {
     throw new AppError(
       'conflict',
-      `This firing is ${firing.state}. Only notes and corrections are added to it now.`,
+      `This firing is ${firing.state}. Only notes, reasons and corrections are added to it now.`,
     )
   }
   const at = markInstant(input.at, { notBefore: firing.preheatAt })
@@ -91,6 +91,8 @@ async function insertMark(em: EntityManager, firing: Firing, input: Input, accou
     swapRole: swap === null ? null : (input.role ?? null),
     fromProbeId: swap?.fromProbeId ?? null,
     toProbeId: swap?.toProbeId ?? null,
+    step: input.kind === 'reason' ? (input.step ?? null) : null,
+    answer: input.kind === 'advice' ? (input.answer ?? null) : null,
     replacesId: input.replacesId ?? null,
   })
   if (input.kind === 'phase' && input.phase !== undefined) movePhase(firing, input.phase, at, replaced)
@@ -127,6 +129,9 @@ async function findReplaced(em: EntityManager, firing: Firing, input: Input): Pr
   if (replaced.kind === 'swap' || input.kind === 'swap') {
     throw invalidField('kind', 'A swap is not undone or moved: what was read since stands. Swap again.')
   }
+  if (replaced.kind === 'move') {
+    throw invalidField('kind', 'A move to another hearth is not undone. Move the firing again.')
+  }
   if (replaced.kind === 'phase' && !(input.kind === 'phase' && input.phase === replaced.phase)) {
     throw invalidField(
       'kind',
@@ -141,12 +146,24 @@ function requireWhatKindNeeds(firing: Firing, input: Input): void {
     throw invalidField('phase', 'Say which phase begins.')
   if (input.kind === 'call' && input.call === undefined)
     throw invalidField('call', 'Choose early, right or late.')
-  if (input.kind !== 'stage' && input.kind !== 'call') return
+  if (input.kind === 'reason') requireReason(input)
+  if (input.kind === 'advice' && input.answer === undefined)
+    throw invalidField('answer', 'Say whether the advice was taken.')
+  if (input.kind === 'advice' && input.words === '')
+    throw invalidField('words', 'Keep the advice as it stood.')
+  if (input.kind !== 'stage' && input.kind !== 'call' && input.step !== 'stage') return
   if (input.stagePosition === undefined)
     throw invalidField('stagePosition', 'Say which stage; the first is 1.')
   const count = recipeCopySchema.parse(firing.recipeCopy).content.stages.length
   if (input.stagePosition > count) throw invalidField('stagePosition', `The recipe has ${count} stages.`)
   if (firing.toastAt === null) throw invalidField('kind', 'Stages are marked once the toast has started.')
+}
+
+function requireReason(input: Input): void {
+  if (input.step === undefined) throw invalidField('step', 'Say which step was skipped or short.')
+  if (input.words === '') throw invalidField('words', 'Say why in a few words.')
+  if (input.step !== 'stage' && input.stagePosition !== undefined)
+    throw invalidField('stagePosition', 'Only a stage has a position.')
 }
 
 const columnOf = {

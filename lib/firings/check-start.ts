@@ -99,7 +99,7 @@ export async function findOutOfDate(
   const water = await newestWater(em, at, waterSource)
   const { checks } = (await currentSite(em)).rules
   const faults = water === undefined ? ['The water was never checked.'] : waterFaults(water, at, checks)
-  faults.push(...leadCheckFaults(lead.name, await readChecks(em, lead.id), at.getTime()))
+  faults.push(...(await findLeadFaults(em, lead, at)))
   return { waterCheckId: water?.id ?? null, faults }
 }
 
@@ -139,6 +139,11 @@ function waterFaults(water: Water, at: Date, checks: SiteRules['checks']): strin
   )
   if (over !== null) faults.push(`The water of ${water.source} is not to be used: ${over}`)
   return faults
+}
+
+/** What speaks against a lead probe alone: a firing that moves brings its water along. */
+export async function findLeadFaults(em: EntityManager, lead: StartProbe, at: Date): Promise<string[]> {
+  return leadCheckFaults(lead.name, await readChecks(em, lead.id), at.getTime())
 }
 
 async function readChecks(em: EntityManager, probeId: string): Promise<CheckRow[]> {

@@ -5,14 +5,18 @@ import {
   addMarkSchema,
   finishFiringSchema,
   firingPageSchema,
+  forecastRecordSchema,
   firingReadingsSchema,
   firingSchema,
   listFiringsQuery,
   markSchema,
+  moveFiringSchema,
+  nextPieceLineSchema,
   readingsQuery,
   scoreSchema,
   startFiringSchema,
 } from '@/lib/firings/schema'
+import { sketchSchema } from '@/lib/firings/sketch'
 import { defineOperation } from '@/lib/http/operation'
 
 const idParams = z.object({ id: z.uuid() })
@@ -79,6 +83,18 @@ export const operations = {
     body: finishFiringSchema,
     response: firingSchema,
   }),
+  moveFiring: defineOperation({
+    id: 'moveFiring',
+    method: 'POST',
+    path: '/api/firings/{id}/move',
+    summary: 'Move a rose to another hearth before its toast; that hearth’s probes take the roles',
+    tag,
+    access: run,
+    atDevice: 'by pin',
+    params: idParams,
+    body: moveFiringSchema,
+    response: firingSchema,
+  }),
   abandonFiring: defineOperation({
     id: 'abandonFiring',
     method: 'POST',
@@ -90,6 +106,39 @@ export const operations = {
     params: idParams,
     body: abandonFiringSchema,
     response: firingSchema,
+  }),
+  getRoomPicture: defineOperation({
+    id: 'getRoomPicture',
+    method: 'GET',
+    path: '/api/firings/{id}/sketch',
+    summary: 'The small pair of a live firing as far as it is; null before it has begun',
+    tag,
+    access: follow,
+    atDevice: 'alone',
+    params: idParams,
+    response: z.object({ sketch: sketchSchema.nullable() }),
+  }),
+  getForecastRecord: defineOperation({
+    id: 'getForecastRecord',
+    method: 'GET',
+    path: '/api/forecast-record',
+    summary: 'How often the forecast at half of the toast was right lately; null while too few can be told',
+    tag,
+    access: follow,
+    atDevice: 'alone',
+    response: z.object({ record: forecastRecordSchema.nullable() }),
+  }),
+  getNextPieceLine: defineOperation({
+    id: 'getNextPieceLine',
+    method: 'GET',
+    path: '/api/barrels/{id}/next-line',
+    summary:
+      'What the last firings like this piece’s next one had in common; null when there is nothing to say',
+    tag,
+    access: follow,
+    atDevice: 'alone',
+    params: idParams,
+    response: z.object({ line: nextPieceLineSchema.nullable() }),
   }),
   getReadings: defineOperation({
     id: 'getReadings',

@@ -18,8 +18,18 @@ export const markKinds = [
   'note',
   'swap',
   'undone',
+  'reason',
+  'advice',
+  'move',
 ] as const
 export type MarkKind = (typeof markKinds)[number]
+/** Marks that hands make; a move is made by moving the firing. */
+export type HandMarkKind = Exclude<MarkKind, 'move'>
+export const handMarkKinds = markKinds.filter((kind) => kind !== 'move')
+/** What a reason is given for: a step that was skipped or short. */
+export const shortStepKinds = ['preheat', 'bend', 'stage', 'rest'] as const
+/** What a person did with a piece of advice; the app itself does nothing with it. */
+export const adviceAnswers = ['taken', 'not now'] as const
 export const phases = ['preheating', 'bending', 'toasting', 'resting'] as const
 export const calls = ['early', 'right', 'late'] as const
 export const verdicts = [
@@ -66,7 +76,7 @@ export const startFiringSchema = z.strictObject({
 export const addMarkSchema = z.strictObject({
   /** The client's own uuid: sending the mark again changes nothing. */
   id: z.uuid(),
-  kind: z.enum(markKinds, `Choose one of ${markKinds.join(', ')}.`),
+  kind: z.enum(handMarkKinds, `Choose one of ${handMarkKinds.join(', ')}.`),
   at: instant,
   phase: z.enum(phases, `Choose one of ${phases.join(', ')}.`).optional(),
   /** The stage that ended (kind stage) or that the call is about; counts from 1. */
@@ -77,9 +87,23 @@ export const addMarkSchema = z.strictObject({
   role: z.enum(probeRoles, 'Choose lead, opposite or coals.').optional(),
   probeId: z.uuid('Choose a probe.').optional(),
   isAtSamePlace: z.boolean().optional(),
+  /** For a reason: the step that was skipped or short; a stage with its position. The words are the reason. */
+  step: z.enum(shortStepKinds, `Choose one of ${shortStepKinds.join(', ')}.`).optional(),
+  /** For advice: what was done with it. The words are the advice as it stood. */
+  answer: z.enum(adviceAnswers, 'Choose taken or not now.').optional(),
   replacesId: z.uuid().optional(),
   /** Who made it, as the tablet knows it; it waits there while somebody else is signed in. */
   authorId: z.uuid().optional(),
+})
+
+export const moveFiringSchema = z.strictObject({
+  hearthId: z.uuid('Choose a hearth.'),
+  /** Left out: the new hearth's usual probes. */
+  probes: startFiringSchema.shape.probes,
+  /** A signed override of checks of the new lead probe that are out of date. */
+  override: overrideSchema.optional(),
+  /** Left out: now. */
+  at: instant.optional(),
 })
 
 export const finishFiringSchema = z.strictObject({
@@ -105,6 +129,8 @@ export const markSchema = z.object({
   stagePosition: z.number().int().nullable(),
   call: z.enum(calls).nullable(),
   words: z.string(),
+  step: z.enum(shortStepKinds).nullable(),
+  answer: z.enum(adviceAnswers).nullable(),
   replacesId: z.uuid().nullable(),
   /** False when a later mark replaced or undid it. */
   isInForce: z.boolean(),
@@ -223,6 +249,33 @@ export const firingReadingsSchema = z.object({
     }),
   ),
 })
+
+/** What the last firings like the next one had in common. */
+export const nextPieceLineSchema = z.object({
+  what: z.enum(['minutes to temperature', 'dose log10']),
+  n: z.number().int(),
+  /** Median with its interval: minutes late (above 0) or early, or log10 of dose against the target. */
+  value: z.number(),
+  low: z.number(),
+  high: z.number(),
+  /** For minutes: to this temperature, °C. */
+  tempC: z.number().nullable(),
+  /** Of this lot only; of first fires only, or of later ones. */
+  isSameLot: z.boolean(),
+  isSameFirst: z.boolean(),
+  isFirstOfDay: z.boolean(),
+})
+export type NextPieceLine = z.infer<typeof nextPieceLineSchema>
+
+export const forecastRecordSchema = z.object({
+  n: z.number().int(),
+  rightCount: z.number().int(),
+  withinMinutes: z.number(),
+  /** Exact 95 % interval of the share. */
+  shareLow: z.number(),
+  shareHigh: z.number(),
+})
+export type ForecastRecordDto = z.infer<typeof forecastRecordSchema>
 
 export const scoreSchema = z.object({
   firingId: z.uuid(),

@@ -1,4 +1,5 @@
 import type { EntityManager } from '@mikro-orm/postgresql'
+import { ForecastOutcomeEntity } from '@/entities/forecast-outcome'
 import { ScoreEntity } from '@/entities/score'
 import { writeAuditEntry } from '@/lib/audit/write-entry'
 import type { Actor } from '@/lib/auth/actor'
@@ -6,6 +7,7 @@ import { requirePermission } from '@/lib/auth/permissions'
 import { inTransaction, queryRows } from '@/lib/db/orm'
 import { AppError } from '@/lib/errors'
 import { firingStaveHistory } from '@/lib/firings/firing-stave'
+import { forecastOutcomeOf } from '@/lib/firings/forecast-outcome'
 import { readFiring } from '@/lib/firings/read-firing'
 import type { FiringDto } from '@/lib/firings/schema'
 import { scoreInputOf } from '@/lib/firings/score-input'
@@ -54,6 +56,11 @@ export async function scoreFiring(
     }
     em.create(ScoreEntity, saved)
     await em.flush()
+    const outcome = forecastOutcomeOf(scoreInput, plan, firing.recipeCopy.content)
+    if (outcome !== null) {
+      em.create(ForecastOutcomeEntity, { firingId: firing.id, scoreNumber: saved.number, ...outcome })
+      await em.flush()
+    }
     await writeAuditEntry(
       em,
       actor,

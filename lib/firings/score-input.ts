@@ -44,10 +44,15 @@ function pullMinutes(firing: FiringDto): number | null {
   return minutesBetween(firing.bendAt, pull?.at ?? firing.toastAt)
 }
 
-/** Changes of the lead probe, and whether the new one sits at the same place. */
-function leadSwaps(lead: FiringSeries, toastAtMs: number): ScoreInput['firing']['leadSwaps'] {
-  return lead.assignments.slice(1).map((assignment, index) => {
-    const before = lead.assignments[index]?.place
+/** The lead probes that read the toast; one from before a move to another hearth did not. */
+function toastLeads(lead: FiringSeries | undefined, toastAtMs: number): FiringSeries['assignments'] {
+  return lead?.assignments.filter((assignment) => assignment.untilMs > toastAtMs) ?? []
+}
+
+/** Changes of the lead probe in the toast, and whether the new one sits at the same place. */
+function leadSwaps(leads: FiringSeries['assignments'], toastAtMs: number): ScoreInput['firing']['leadSwaps'] {
+  return leads.slice(1).map((assignment, index) => {
+    const before = leads[index]?.place
     const place = assignment.place
     return {
       timeS: (assignment.fromMs - toastAtMs) / 1000,
@@ -68,10 +73,11 @@ function leadSwaps(lead: FiringSeries, toastAtMs: number): ScoreInput['firing'][
 export function scoreInputOf(firing: FiringDto, stored: FiringReadings, rules: SiteRules): ScoreInput | null {
   const readings = checkReadings(stored, rules.signals)
   const lead = readings.series.find((series) => series.role === 'lead')
-  const assignment = lead?.assignments[0]
-  if (firing.toastAt === null || firing.recipeCopy === null || lead === undefined || assignment === undefined)
-    return null
+  if (firing.toastAt === null || firing.recipeCopy === null || lead === undefined) return null
   const toastAtMs = Date.parse(firing.toastAt)
+  const leads = toastLeads(lead, toastAtMs)
+  const [assignment] = leads
+  if (assignment === undefined) return null
   const sinceToastS = (at: string) => (Date.parse(at) - toastAtMs) / 1000
   const opposite = readings.series.find((series) => series.role === 'opposite')
   const restAt = firing.restAt ?? firing.endedAt
@@ -90,7 +96,7 @@ export function scoreInputOf(firing: FiringDto, stored: FiringReadings, rules: S
       bendMinutes: pullMinutes(firing),
       roomTempC: null,
       specificGravity: null,
-      leadSwaps: leadSwaps(lead, toastAtMs),
+      leadSwaps: leadSwaps(leads, toastAtMs),
     },
     lead: toReadingSeries(lead, toastAtMs),
     opposite: opposite === undefined ? null : toReadingSeries(opposite, toastAtMs),

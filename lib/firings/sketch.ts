@@ -31,7 +31,10 @@ export function bandOf(plan: Plan): Sketch['band'] {
 }
 
 /** Every n-th reading; a sketch is too small for an extreme to show. */
-function thinCurve(timeS: ArrayLike<number>, tempC: ArrayLike<number>): Pick<Sketch, 'timeS' | 'tempC'> {
+export function thinCurve(
+  timeS: ArrayLike<number>,
+  tempC: ArrayLike<number>,
+): Pick<Sketch, 'timeS' | 'tempC'> {
   const count = Math.min(curvePoints, timeS.length)
   const picked = Array.from({ length: count }, (_, i) =>
     Math.round((i * (timeS.length - 1)) / Math.max(1, count - 1)),
@@ -45,7 +48,14 @@ function thinCurve(timeS: ArrayLike<number>, tempC: ArrayLike<number>): Pick<Ske
   }
 }
 
-function thinWood(history: StaveHistory): NonNullable<Sketch['wood']> {
+type ThinnedWood = {
+  timesS: ArrayLike<number>
+  depthsMm: readonly number[]
+  log10Dose: ArrayLike<number>
+  toastDepthMm: readonly { value: number }[]
+}
+
+function thinWood(history: ThinnedWood): NonNullable<Sketch['wood']> {
   const fromColumns = history.timesS.length
   const stepMm = (history.depthsMm[1] ?? 1) - (history.depthsMm[0] ?? 0)
   const everyDepth = Math.max(1, Math.round(depthStepMm / stepMm))
@@ -64,6 +74,20 @@ function thinWood(history: StaveHistory): NonNullable<Sketch['wood']> {
     ),
     toastDepthMm: columns.map((column) => toTenth(history.toastDepthMm[column]?.value ?? 0)),
   }
+}
+
+type Column = { atS: number; depthsMm: number[]; log10Dose: number[]; toastDepthMm: number | null }
+
+/** The wood of a live firing, from the columns that the hub keeps; null before there are two. */
+export function thinColumns(columns: readonly Column[]): Sketch['wood'] {
+  const depthsMm = columns[0]?.depthsMm ?? []
+  if (columns.length < 2 || depthsMm.length < 2) return null
+  return thinWood({
+    timesS: columns.map((column) => column.atS),
+    depthsMm,
+    log10Dose: columns.flatMap((column) => column.log10Dose),
+    toastDepthMm: columns.map((column) => ({ value: column.toastDepthMm ?? 0 })),
+  })
 }
 
 /** The sketch of a finished firing, or of a plan alone. */

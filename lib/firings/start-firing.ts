@@ -3,22 +3,23 @@ import type * as z from 'zod'
 import type { Firing } from '@/entities/firing'
 import { FiringEntity } from '@/entities/firing'
 import { FiringPlacementEntity } from '@/entities/firing-placement'
-import { FiringProbeEntity } from '@/entities/firing-probe'
 import { HearthEntity } from '@/entities/hearth'
 import { PieceEntity } from '@/entities/piece'
 import { BatchEntity } from '@/entities/batch'
 import { writeAuditEntry } from '@/lib/audit/write-entry'
 import type { Actor, PersonActor } from '@/lib/auth/actor'
 import { requirePermission, requirePerson } from '@/lib/auth/permissions'
-import { signAs } from '@/lib/auth/sign'
-import { violatedConstraint } from '@/lib/db/database-errors'
-import { inTransaction, queryRows } from '@/lib/db/orm'
+import { inTransaction } from '@/lib/db/orm'
 import { AppError, invalidField } from '@/lib/errors'
-import type { OutOfDate, StartProbe } from '@/lib/firings/check-start'
-import { findOutOfDate, findStartProbes, refuseOutOfDate, requireSamePlace } from '@/lib/firings/check-start'
+import type { StartProbe } from '@/lib/firings/check-start'
+import { findOutOfDate, findStartProbes, requireSamePlace } from '@/lib/firings/check-start'
+import { explainClash } from '@/lib/firings/explain-clash'
+import { addFiringProbes } from '@/lib/firings/add-firing-probes'
+import { isFirstOfDay } from '@/lib/firings/first-of-day'
 import { markInstant } from '@/lib/firings/mark-instant'
 import { readFiring } from '@/lib/firings/read-firing'
 import type { FiringDto, startFiringSchema } from '@/lib/firings/schema'
+import { signOverride } from '@/lib/firings/sign-override'
 import { notifyFiringChanged } from '@/lib/live/notify'
 import { readVersion } from '@/lib/recipes/read-version'
 import { recipeCopyOf } from '@/lib/recipes/recipe-copy'
@@ -57,7 +58,7 @@ async function begin(person: PersonActor, input: Input): Promise<FiringDto> {
     const at = startInstant(input, lead)
     const outOfDate = await findOutOfDate(em, lead, at, input.waterSource)
     const { copy, sha256 } = recipeCopyOf(version)
-    await signOverride(em, person, input, outOfDate, { id: firing.id, sha256 })
+    await signOverride(em, person, input.override, outOfDate.faults, { id: firing.id, sha256 })
     em.assign(firing, {
       state: 'preheating',
       recipeCopy: copy,
@@ -74,7 +75,7 @@ async function begin(person: PersonActor, input: Input): Promise<FiringDto> {
     em.create(FiringPlacementEntity, { firingId: firing.id, hearthId: hearth.id, fromAt: at })
     // First, so that a taken hearth is named as such and not by its probes.
     await em.flush()
-    addProbes(em, firing.id, probes, at)
+    addFiringProbes(em, firing.id, probes, at)
     await em.flush()
     await writeAuditEntry(
       em,
@@ -118,61 +119,4 @@ async function takePiece(
     })
   await em.persistAndFlush(firing)
   return { firing, version }
-}
-
-async function signOverride(
-  em: EntityManager,
-  person: PersonActor,
-  input: Input,
-  outOfDate: OutOfDate,
-  subject: { id: string; sha256: string },
-): Promise<void> {
-  if (outOfDate.faults.length === 0) return
-  if (input.override === undefined) refuseOutOfDate(outOfDate.faults)
-  await signAs(em, person, {
-    password: input.override.password,
-    meaning: 'Starts this firing although a check is out of date',
-    reason: `${outOfDate.faults.join(' ')} ${input.override.reason}`,
-    subject: { type: 'firing', id: subject.id, sha256: subject.sha256 },
-  })
-}
-
-function addProbes(em: EntityManager, firingId: string, probes: readonly StartProbe[], at: Date): void {
-  for (const probe of probes) {
-    em.create(FiringProbeEntity, {
-      firingId,
-      probeId: probe.id,
-      role: probe.role,
-      height: probe.height,
-      side: probe.side,
-      depthMm: probe.depth_mm,
-      mounting: probe.mounting,
-      fromAt: at,
-    })
-  }
-}
-
-async function isFirstOfDay(em: EntityManager, at: Date): Promise<boolean> {
-  const { timeZone } = await currentSite(em)
-  const earlier = await queryRows(
-    em,
-    `select 1 from firings where preheat_at < ? and (preheat_at at time zone ?)::date = (?::timestamptz at time zone ?)::date limit 1`,
-    [at, timeZone, at, timeZone],
-  )
-  return earlier.length === 0
-}
-
-/** The database holds one live firing a hearth, a piece and a probe; its refusal in words. */
-function explainClash(error: unknown): never {
-  const constraint = violatedConstraint(error)
-  if (constraint === 'one_firing_per_hearth') {
-    throw invalidField('hearthId', 'A firing stands on this hearth already. Choose a free one.')
-  }
-  if (constraint === 'firings_one_live_per_piece') {
-    throw invalidField('pieceId', 'This barrel is over a fire already.')
-  }
-  if (constraint === 'one_firing_per_probe') {
-    throw invalidField('probes', 'One of these probes reads another firing. Choose another.')
-  }
-  throw error
 }

@@ -10,11 +10,14 @@ export type MarkRow = {
   stage_position: number | null
   call: 'early' | 'right' | 'late' | null
   words: string
+  step: MarkDto['step']
+  answer: MarkDto['answer']
   replaces_id: string | null
 }
 
 export const markSelect = `
-  select m.id, m.kind, m.at, m.recorded_at, a.name as account_name, m.phase, m.stage_position, m.call, m.words, m.replaces_id
+  select m.id, m.kind, m.at, m.recorded_at, a.name as account_name, m.phase, m.stage_position, m.call, m.words,
+         m.step, m.answer, m.replaces_id
     from marks m join accounts a on a.id = m.account_id`
 
 /** Marks with what is in force: not replaced or undone by a later one, and not itself an undoing. */
@@ -30,6 +33,8 @@ export function toMarks(rows: readonly MarkRow[]): MarkDto[] {
     stagePosition: row.stage_position,
     call: row.call,
     words: row.words,
+    step: row.step,
+    answer: row.answer,
     replacesId: row.replaces_id,
     isInForce: row.kind !== 'undone' && !replaced.has(row.id),
   }))

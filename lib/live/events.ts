@@ -97,6 +97,10 @@ export const firingStateSchema = z.object({
     .object({
       sentence: z.string(),
       advice: z.string(),
+      /** What the advice asks of hands; `minutes` whole, 0 where it names none. Null: nothing to take or leave. */
+      ask: z
+        .object({ kind: z.enum(['rest now', 'rest early', 'hold longer']), minutes: z.number() })
+        .nullable(),
       minutesToTargetLow: z.number().nullable(),
       minutesToTargetHigh: z.number().nullable(),
     })
@@ -142,7 +146,13 @@ export type FiringJoined = z.infer<typeof firingJoinedSchema>
 /** One firing of the room overview. */
 export const roomFiringSchema = firingStateSchema
   .omit({ forecast: true, stave: true, alarms: true, troubles: true })
-  .extend({ hearthNumber: z.number().int().nullable(), serial: z.string(), recipeName: z.string() })
+  .extend({
+    hearthNumber: z.number().int().nullable(),
+    serial: z.string(),
+    recipeName: z.string(),
+    /** The wood is twice its band away from the plan. */
+    isFarFromPlan: z.boolean(),
+  })
 export type RoomFiring = z.infer<typeof roomFiringSchema>
 
 export const roomStateSchema = z.object({ atMs: z.number().int(), firings: z.array(roomFiringSchema) })

@@ -1,3 +1,4 @@
+import type { Sketch } from '@/lib/firings/sketch'
 import { shared } from '@/lib/runtime'
 
 /**
@@ -21,6 +22,8 @@ export type HubDoor = {
   firingChanged: (firingId: string, what: string) => void
   /** A hand's move of an alarm was committed. */
   alarmsChanged: (firingId: string) => void
+  /** The small pair of a live firing; null when it is not held. */
+  sketchOf: (firingId: string) => Sketch | null
 }
 
 /**

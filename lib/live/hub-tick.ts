@@ -3,6 +3,7 @@ import { events } from '@/lib/live/events'
 import type { FiringFacts } from '@/lib/live/firing-facts'
 import { keepAlarmMoves } from '@/lib/live/hub-alarms'
 import type { Held, HubState } from '@/lib/live/hub-state'
+import { isFarFromPlan } from '@/lib/live/far-from-plan'
 import type { LiveFiring } from '@/lib/live/live-firing'
 import { nowMs } from '@/lib/runtime'
 
@@ -67,5 +68,6 @@ export function roomStateOf(hub: HubState): RoomState {
 function toRoomFiring(facts: FiringFacts, state: FiringState): RoomFiring {
   const { forecast: _forecast, stave: _stave, alarms: _alarms, troubles: _troubles, ...rest } = state
   const { hearthNumber, serial, recipeName } = facts
-  return { ...rest, hearthNumber, serial, recipeName }
+  const isFar = state.state === 'toasting' && isFarFromPlan(state, facts.plan)
+  return { ...rest, hearthNumber, serial, recipeName, isFarFromPlan: isFar }
 }

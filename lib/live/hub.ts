@@ -4,6 +4,7 @@ import { readAlarmsAgain } from '@/lib/live/hub-alarms'
 import { hubDoor } from '@/lib/live/hub-door'
 import { loadUntilDone, noticeChange, reconcileWithDatabase, refreshFiring } from '@/lib/live/hub-load'
 import { takeRows } from '@/lib/live/hub-rows'
+import { hubSketch } from '@/lib/live/hub-sketch'
 import type { HubOutput, HubState } from '@/lib/live/hub-state'
 import { createHubState, inTurn } from '@/lib/live/hub-state'
 import { roomStateOf, tickHub, tickMs } from '@/lib/live/hub-tick'
@@ -46,6 +47,7 @@ export function createHub(output: HubOutput, { isSelfWound = true }: HubOptions 
         gatewayHeard: hub.gateways.hear,
         firingChanged: (firingId, what) => noticeChange(hub, firingId, what),
         alarmsChanged: (firingId) => void readAlarmsAgain(hub, firingId),
+        sketchOf: (firingId) => hubSketch(hub, firingId),
       }
       if (isSelfWound) timers.push(setInterval(() => tickHub(hub), tickMs))
       await loadUntilDone(hub)

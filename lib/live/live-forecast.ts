@@ -1,7 +1,7 @@
 import type { FiringState } from '@/lib/live/events'
 import type { FiringFacts } from '@/lib/live/firing-facts'
 import type { Signal } from '@/lib/live/live-signals'
-import type { Forecast } from '@/lib/science/forecast'
+import type { Advice, Forecast } from '@/lib/science/forecast'
 import { forecastDose, planFrom } from '@/lib/science/forecast'
 
 export type ForecastFacts = {
@@ -20,7 +20,7 @@ export function liveForecast(input: ForecastFacts): FiringState['forecast'] {
   if (lead.condition !== 'live' || lead.tempC === null) {
     const age = lead.lastAtMs === null ? '' : `, ${Math.round((atMs - lead.lastAtMs) / 1000)} s ago`
     const sentence = `No forecast while ${lead.probeName} has no reading.`
-    return { sentence, advice: `Dose stands at the last reading${age}.`, ...noMinutes }
+    return { sentence, advice: `Dose stands at the last reading${age}.`, ask: null, ...noMinutes }
   }
   const { content, plan, rules } = facts
   const { plan: line, advice } = forecastDose({
@@ -39,9 +39,15 @@ export function liveForecast(input: ForecastFacts): FiringState['forecast'] {
   return {
     sentence: targetSentence(line),
     advice: advice.sentence,
+    ask: askOf(advice),
     minutesToTargetLow: line.earliestMinutes,
     minutesToTargetHigh: line.latestMinutes,
   }
+}
+
+/** What hands could do; that nothing more is to be done, or that nothing helps, asks nothing of them. */
+function askOf({ kind, minutes }: Advice): NonNullable<FiringState['forecast']>['ask'] {
+  return kind === 'no extra time' || kind === 'out of reach' ? null : { kind, minutes }
 }
 
 const noMinutes = { minutesToTargetLow: null, minutesToTargetHigh: null }

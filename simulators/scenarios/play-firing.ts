@@ -3,7 +3,7 @@ import type { PersonActor } from '@/lib/auth/actor'
 import { abandonFiring } from '@/lib/firings/abandon-firing'
 import { addMark } from '@/lib/firings/add-mark'
 import { finishFiring } from '@/lib/firings/finish-firing'
-import type { FiringDto, MarkKind } from '@/lib/firings/schema'
+import type { FiringDto, HandMarkKind } from '@/lib/firings/schema'
 import { startFiring } from '@/lib/firings/start-firing'
 import type { IngestMessage } from '@/lib/gateway/protocol'
 import { MAX_READINGS_PER_MESSAGE } from '@/lib/gateway/protocol'
@@ -116,7 +116,7 @@ async function endFiring(firing: SeedFiring, started: FiringDto, endAt: Date): P
 }
 
 type MarkFields = {
-  kind: MarkKind
+  kind: HandMarkKind
   phase?: 'bending' | 'toasting' | 'resting'
   stagePosition?: number
   words: string

@@ -135,6 +135,8 @@ function markOf(
     stagePosition: null,
     call: null,
     words: '',
+    step: null,
+    answer: null,
     replacesId: null,
     isInForce: true,
     ...more,

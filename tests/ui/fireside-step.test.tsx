@@ -25,6 +25,8 @@ function mark(change: Partial<MarkDto>): MarkDto {
     stagePosition: null,
     call: null,
     words: '',
+    step: null,
+    answer: null,
     replacesId: null,
     isInForce: true,
     ...change,
@@ -245,6 +247,7 @@ test('a row of the room counts on between two states of the server', () => {
     hearthNumber: 2,
     serial: 'SML-0427-P',
     recipeName: 'Quay medium',
+    isFarFromPlan: false,
   }
   expect(roomTime(room, TOAST + 400)).toEqual({ leftS: 679.6, isOver: false, words: 'Hold, then lid on' })
 })

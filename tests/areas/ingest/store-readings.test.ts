@@ -213,6 +213,7 @@ it('new rows go to the hub after the commit, and a repeat as it is stored', asyn
     gatewayHeard: () => {},
     alarmsChanged: () => {},
     firingChanged: () => {},
+    sketchOf: () => null,
   }
   try {
     await send(bootId, [reading(1), reading(2)])
