@@ -29,6 +29,8 @@ const permissions = {
   'batches:read': ['administrator', 'master cooper', 'chemist', 'toaster', 'customer'],
   'batches:read all': ['administrator', 'master cooper', 'chemist', 'toaster'],
   'batches:write': ['master cooper'],
+  'conditions:read': ['administrator', 'master cooper', 'chemist', 'toaster'],
+  'conditions:write': ['master cooper', 'toaster'],
   'customers:read': ['administrator', 'master cooper', 'chemist', 'toaster'],
   'customers:write': ['administrator', 'master cooper'],
   'devices:read': ['administrator', 'master cooper'],
@@ -51,6 +53,7 @@ const byPin: ReadonlySet<Permission> = new Set<Permission>([
   'alarms:shelve',
   'batches:read',
   'batches:read all',
+  'conditions:read',
 ])
 
 /** What an enrolled device may read with nobody signed in: what stands over the fires, and what waits for them. */

@@ -1,9 +1,12 @@
 import { operations as accounts } from '@/lib/accounts/operations'
 import { operations as alarms } from '@/lib/alarms/operations'
 import { operations as audit } from '@/lib/audit/operations'
+import { operations as losses } from '@/lib/barrels/operations'
 import { operations as batches } from '@/lib/batches/operations'
+import { operations as conditions } from '@/lib/conditions/operations'
 import { operations as devices } from '@/lib/devices/operations'
 import { operations as firings } from '@/lib/firings/operations'
+import { operations as photos } from '@/lib/firings/photo-operations'
 import { operations as http } from '@/lib/http/operations'
 import { operations as ingest } from '@/lib/ingest/operations'
 import { operations as markers } from '@/lib/markers/operations'
@@ -21,9 +24,12 @@ const areas: readonly Readonly<Record<string, AnyOperation>>[] = [
   accounts,
   alarms,
   audit,
+  losses,
   batches,
+  conditions,
   devices,
   firings,
+  photos,
   http,
   ingest,
   markers,

@@ -88,16 +88,19 @@ function describeOperation(operation: AnyOperation): Json {
     security: securityOf(operation),
     ...(typeof operation.access === 'string' ? {} : { 'x-roles': operation.access }),
     ...(parameters.length === 0 ? {} : { parameters }),
-    ...(operation.body === undefined
-      ? {}
-      : {
-          requestBody: {
-            required: true,
-            content: { 'application/json': { schema: jsonSchema(operation.body, 'input') } },
-          },
-        }),
+    ...requestBodyOf(operation),
     responses: { [String(successStatus(operation))]: successResponse(operation), ...problemsOf(operation) },
   }
+}
+
+function requestBodyOf(operation: AnyOperation): Json {
+  if (operation.fileBody !== undefined) {
+    const content = Object.fromEntries(operation.fileBody.map((type) => [type, { schema: {} }]))
+    return { requestBody: { required: true, content } }
+  }
+  if (operation.body === undefined) return {}
+  const content = { 'application/json': { schema: jsonSchema(operation.body, 'input') } }
+  return { requestBody: { required: true, content } }
 }
 
 function securityOf(operation: AnyOperation): Json[] {
@@ -127,6 +130,7 @@ function problemsOf(operation: AnyOperation): Json {
   const isWrite = operation.method !== 'GET'
   const statuses = [
     ...(operation.body === undefined ? [] : ['400', '413', '415']),
+    ...(operation.fileBody === undefined ? [] : ['413']),
     ...(operation.access === 'public' ? [] : ['401']),
     ...(isWrite || operation.access !== 'public' ? ['403'] : []),
     ...(operation.params === undefined ? [] : ['404']),

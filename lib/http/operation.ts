@@ -28,10 +28,12 @@ export type Operation<Params, Query, Body> = {
   params?: z.ZodType<Params>
   query?: z.ZodType<Query>
   body?: z.ZodType<Body>
+  /** Content types of a body that is a file and no JSON; the handler reads it, and tells its type by its content. */
+  fileBody?: readonly string[]
   /** Bytes; default 256 KiB. */
   bodyLimit?: number
   response?: z.ZodType
-  responseType?: 'application/json' | 'text/csv' | 'application/pdf'
+  responseType?: 'application/json' | 'text/csv' | 'text/javascript' | 'application/pdf' | 'image/jpeg'
   /** Status of success; default 200, 204 without a response schema. */
   status?: number
 }

@@ -1,4 +1,5 @@
 import { AppError } from '@/lib/errors'
+import { readBodyBytes } from '@/lib/http/read-body-bytes'
 
 const defaultLimit = 256 * 1024
 
@@ -15,26 +16,13 @@ export async function readJsonBody(request: Request, limit: number = defaultLimi
     'too large',
     `The body is over ${Math.floor(limit / 1024)} KiB. Send less at once.`,
   )
-  if (Number(request.headers.get('content-length') ?? 0) > limit) throw tooLarge
-  const chunks: Uint8Array[] = []
-  let size = 0
-  if (request.body !== null) {
-    const reader = request.body.getReader()
-    for (let part = await reader.read(); !part.done; part = await reader.read()) {
-      size += part.value.byteLength
-      if (size > limit) {
-        await reader.cancel()
-        throw tooLarge
-      }
-      chunks.push(part.value)
-    }
-  }
+  const bytes = await readBodyBytes(request, limit, tooLarge)
   if (type === '') {
-    if (size === 0) return {}
+    if (bytes.byteLength === 0) return {}
     throw unsupported
   }
   try {
-    return JSON.parse(new TextDecoder('utf-8', { fatal: true }).decode(Buffer.concat(chunks)))
+    return JSON.parse(new TextDecoder('utf-8', { fatal: true }).decode(bytes))
   } catch {
     throw new AppError('malformed', 'The body is not valid JSON.')
   }
