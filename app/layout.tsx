@@ -43,6 +43,7 @@ export const metadata: Metadata = {
   title: { default: 'Emberstave', template: '%s · Emberstave' },
   description: 'The recipe book, the fireside console and the firing log of a toasting room.',
   robots: { index: false, follow: false },
+  appleWebApp: { title: 'Emberstave', statusBarStyle: 'black-translucent' },
   formatDetection: { telephone: false, date: false, address: false, email: false },
 }
 

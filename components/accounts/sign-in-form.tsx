@@ -7,6 +7,7 @@ import { Button } from '@/components/ui/button'
 import { FormError } from '@/components/ui/form-error'
 import { TextField } from '@/components/ui/text-field'
 import { useRequest } from '@/components/ui/use-request'
+import { noteTouch } from '@/components/live/use-idle'
 import { callApi } from '@/lib/http/api-client'
 
 /** E-mail and password. A whole new page follows, so that nothing of a former person stays in the browser. */
@@ -18,7 +19,9 @@ export function SignInForm({ nextPath, knownEmail = '' }: { nextPath: string; kn
   async function signIn(event: FormEvent) {
     event.preventDefault()
     const isIn = await send(() => callApi('POST', '/api/session', { body: { email, password } }))
-    if (isIn) window.location.assign(nextPath)
+    if (!isIn) return
+    noteTouch()
+    window.location.assign(nextPath)
   }
 
   return (

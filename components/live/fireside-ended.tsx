@@ -5,7 +5,16 @@ import type { FiringDto } from '@/lib/firings/schema'
 import { firesideType } from './fireside-type'
 
 /** In the fireside's place when the firing is over, or has not begun. */
-export function FiresideEnded({ firing, zone }: { firing: FiringDto; zone: string }) {
+export function FiresideEnded({
+  firing,
+  zone,
+  isDeskOpen = true,
+}: {
+  firing: FiringDto
+  zone: string
+  /** False where a PIN does not open the firing’s page. */
+  isDeskOpen?: boolean
+}) {
   const when = firing.endedAt === null ? '' : ` at ${formatInstant(firing.endedAt, zone, 'time')}`
   const words = firing.state === 'queued' ? 'waits in the queue' : `${firing.state}${when}`
   return (
@@ -15,7 +24,7 @@ export function FiresideEnded({ firing, zone }: { firing: FiringDto; zone: strin
       </h1>
       {firing.endReason === null ? null : <p className="mt-4 text-large text-soft">{firing.endReason}</p>}
       <div className="mt-8 flex flex-wrap gap-3">
-        {firing.state === 'queued' ? null : (
+        {firing.state === 'queued' || !isDeskOpen ? null : (
           <Link href={`/firings/${firing.id}`} className={buttonClass('due')}>
             Open the firing’s page
           </Link>

@@ -17,6 +17,7 @@ export const keyNames = [
   { key: 'e', words: 'The large control, held for a second' },
   { key: 'u', words: 'Undo the last mark, for 10 seconds' },
   { key: 'a', words: 'Seen: takes note of the alarm' },
+  { key: 'w', words: 'Who marks, at a shared tablet' },
   { key: '?', words: 'This list' },
 ] as const
 export type FiresideKey = (typeof keyNames)[number]['key']

@@ -79,14 +79,15 @@ function cutLine(
   { zone, unit }: { zone: string; unit: TemperatureUnit },
 ) {
   const waiting = queue.filter((queued) => queued.refusal === null).length
+  const headline = `As of ${formatInstant(state.atMs, zone, 'seconds')}. Not live.`
   const marks =
     waiting === 0
       ? 'Go on marking: marks are kept here.'
       : `${waiting} ${waiting === 1 ? 'mark waits' : 'marks wait'} here and ${waiting === 1 ? 'is' : 'are'} sent once it is back.`
   const before = state.alarm === null ? '' : ` Before that: ${shownAlarmWords(state.alarm.words, unit)}`
   return line('connection', {
-    headline: `No connection since ${formatInstant(state.atMs, zone, 'time')}.`,
-    instruction: `Figures are from then. ${marks}${before}`,
+    headline,
+    instruction: `No connection; the figures are from then. ${marks}${before}`,
     age: formatClock((nowMs - state.atMs) / 1000),
     level: state.alarm?.level ?? 'amber',
   })

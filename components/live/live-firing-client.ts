@@ -42,9 +42,22 @@ export const firingBeforeJoin: LiveFiringSnapshot = {
   lastChange: null,
 }
 
+/** What was known before, to be shown, dated, until the server answers; it then sends everything anew. */
+export type BeforeJoin = {
+  state: FiringState
+  columns: readonly StaveColumn[]
+  curves: Record<LivePoint[1], readonly (readonly [atMs: number, tempC: number | null])[]>
+}
+
+export function snapshotOf({ state, columns }: BeforeJoin): LiveFiringSnapshot {
+  return { ...firingBeforeJoin, state, columns }
+}
+
 /** A stave column in the picture every so often; the server keeps them as far apart. */
 const columnEveryS = 10
+/** An answer is waited for so long, and twice as long with each try: a slow line must not outrun its answers. */
 const rejoinAfterMs = 3_000
+const rejoinAtMostMs = 30_000
 
 /**
  * Follows one firing over a socket: joins, and after a cut joins again with the number of the last point that it
@@ -54,16 +67,22 @@ export function createLiveFiringClient(
   socket: Socket,
   firingId: string,
   nowMs: () => number = Date.now,
+  before: BeforeJoin | null = null,
 ): LiveFiringClient {
   const feeds = { lead: createPointFeed(), opposite: createPointFeed(), coals: createPointFeed() }
   const listeners = new Set<() => void>()
-  let snapshot = firingBeforeJoin
+  let snapshot = before === null ? firingBeforeJoin : snapshotOf(before)
   let epoch: string | null = null
   let lastIndex = -1
   let joinNumber = 0
+  let isJoining = false
+  let waitMs = rejoinAfterMs
   let retry: ReturnType<typeof setTimeout> | undefined
   let isClosed = false
 
+  for (const role of before === null ? [] : (['lead', 'opposite', 'coals'] as const)) {
+    for (const [atMs, tempC] of before?.curves[role] ?? []) feeds[role].put(atMs, tempC ?? NaN)
+  }
   const change = (more: Partial<LiveFiringSnapshot>) => {
     snapshot = { ...snapshot, ...more }
     for (const listener of listeners) listener()
@@ -96,11 +115,15 @@ export function createLiveFiringClient(
     const again = () => {
       if (!isClosed && number === joinNumber && socket.connected) join()
     }
-    retry = setTimeout(again, rejoinAfterMs)
+    retry = setTimeout(again, waitMs)
+    waitMs = Math.min(rejoinAtMostMs, 2 * waitMs)
+    isJoining = true
     socket.emit('firing:join', { firingId, epoch, lastIndex }, (reply: FiringJoined | LiveProblem) => {
       // An answer to an earlier try, or after leaving, says nothing any more.
       if (isClosed || number !== joinNumber) return
       clearTimeout(retry)
+      isJoining = false
+      waitMs = rejoinAfterMs
       if ('points' in reply) onJoined(reply)
       else {
         change({ connection: { kind: 'refused', problem: reply } })
@@ -111,6 +134,8 @@ export function createLiveFiringClient(
   const onReadings = (message: FiringReadings) => {
     if (message.firingId !== firingId || message.epoch !== epoch) return
     const [first] = message.points
+    // What comes before the answer to a join is in that answer.
+    if (isJoining) return
     // A hole means that something was missed: ask for it instead of drawing over it.
     if (first !== undefined && first[0] > lastIndex + 1) join()
     else {
@@ -121,7 +146,7 @@ export function createLiveFiringClient(
   const onState = (state: FiringState) => {
     if (state.firingId !== firingId) return
     if (state.epoch !== epoch) {
-      if (epoch !== null) join()
+      if (epoch !== null && !isJoining) join()
       return
     }
     const column = state.stave
@@ -135,6 +160,8 @@ export function createLiveFiringClient(
   }
   const onDisconnect = () => {
     joinNumber += 1
+    isJoining = false
+    waitMs = rejoinAfterMs
     clearTimeout(retry)
     if (snapshot.connection.kind !== 'ended') change({ connection: { kind: 'cut', sinceMs: nowMs() } })
   }

@@ -5,19 +5,15 @@ import { BURST_MS, noKeys, settledKey, takeKey } from './fireside-keys'
 import type { FiresideKey } from './fireside-keys'
 
 /**
- * Single keys while no sheet is open and no field has the focus. Answers whether the key of the large control is
- * down.
+ * Single keys while no sheet is open and no field has the focus; a scanner's burst presses none ({@link useScanner}
+ * takes it). Answers whether the key of the large control is down.
  */
-export function useFiresideKeys(
-  isOn: boolean,
-  onKey: (key: FiresideKey) => void,
-  onScan: (text: string) => void,
-): boolean {
+export function useFiresideKeys(isOn: boolean, onKey: (key: FiresideKey) => void): boolean {
   const [isHeld, setIsHeld] = useState(false)
-  const handlers = useRef({ onKey, onScan })
+  const handler = useRef(onKey)
   useEffect(() => {
-    handlers.current = { onKey, onScan }
-  }, [onKey, onScan])
+    handler.current = onKey
+  }, [onKey])
 
   useEffect(() => {
     if (!isOn) return
@@ -27,18 +23,13 @@ export function useFiresideKeys(
       const key = settledKey(reading, performance.now())
       if (key === null) return
       reading = noKeys
-      if (key !== 'e') handlers.current.onKey(key)
+      if (key !== 'e') handler.current(key)
     }
     const onDown = (event: KeyboardEvent) => {
       if (event.ctrlKey || event.metaKey || event.altKey || event.repeat || isTyping(event.target)) return
-      const step = takeKey(reading, event.key, performance.now())
-      reading = step.reading
+      reading = takeKey(reading, event.key, performance.now()).reading
       if (timer !== null) clearTimeout(timer)
       timer = setTimeout(settle, BURST_MS + 10)
-      if (step.found !== null) {
-        event.preventDefault()
-        handlers.current.onScan(step.found.text)
-      }
       setIsHeld(reading.text.toLowerCase() === 'e')
     }
     const release = () => setIsHeld(false)

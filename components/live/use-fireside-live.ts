@@ -2,7 +2,7 @@
 
 import { useEffect, useRef } from 'react'
 import type { ServerClock } from './fireside-clock'
-import type { Connection } from './live-firing-client'
+import type { BeforeJoin, Connection } from './live-firing-client'
 import type { LiveFiring } from './use-live-firing'
 import { useLiveFiring } from './use-live-firing'
 
@@ -28,9 +28,15 @@ export function useChanges(live: { changes: number; connection: Connection }, on
 }
 
 /** Follows one firing, keeps the clock right by it, and says when the firing itself is to be fetched again. */
-export function useFiresideLive(firingId: string, clock: ServerClock, onChanged: () => void): LiveFiring {
-  const live = useLiveFiring(firingId)
-  const atMs = live.state?.atMs ?? null
+export function useFiresideLive(
+  firingId: string,
+  clock: ServerClock,
+  onChanged: () => void,
+  before: BeforeJoin | null = null,
+): LiveFiring {
+  const live = useLiveFiring(firingId, before)
+  // What was kept from before says nothing of the clock now.
+  const atMs = live.heardAtMs === null ? null : (live.state?.atMs ?? null)
   useEffect(() => {
     if (atMs !== null) clock.see(atMs)
   }, [clock, atMs])

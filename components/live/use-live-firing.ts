@@ -1,8 +1,8 @@
 'use client'
 
 import { useMemo, useSyncExternalStore } from 'react'
-import type { LiveFiringClient, LiveFiringSnapshot } from '@/components/live/live-firing-client'
-import { createLiveFiringClient, firingBeforeJoin } from '@/components/live/live-firing-client'
+import type { BeforeJoin, LiveFiringClient, LiveFiringSnapshot } from '@/components/live/live-firing-client'
+import { createLiveFiringClient, firingBeforeJoin, snapshotOf } from '@/components/live/live-firing-client'
 import { createLiveStore } from '@/components/live/live-store'
 
 export type LiveFiring = LiveFiringSnapshot & {
@@ -10,14 +10,18 @@ export type LiveFiring = LiveFiringSnapshot & {
   feeds: () => LiveFiringClient['feeds'] | null
 }
 
-/** Follows a firing live: newest state, curves, how the line is, and when the server was last heard. */
-export function useLiveFiring(firingId: string): LiveFiring {
+/**
+ * Follows a firing live: newest state, curves, how the line is, and when the server was last heard. `before` is what
+ * this browser kept of it, shown until the server answers.
+ */
+export function useLiveFiring(firingId: string, before: BeforeJoin | null = null): LiveFiring {
   const store = useMemo(
     () =>
-      createLiveStore<LiveFiringSnapshot, LiveFiringClient>(firingBeforeJoin, (socket) =>
-        createLiveFiringClient(socket, firingId),
+      createLiveStore<LiveFiringSnapshot, LiveFiringClient>(
+        before === null ? firingBeforeJoin : snapshotOf(before),
+        (socket) => createLiveFiringClient(socket, firingId, Date.now, before),
       ),
-    [firingId],
+    [firingId, before],
   )
   const snapshot = useSyncExternalStore(store.subscribe, store.snapshot, () => firingBeforeJoin)
   return useMemo(() => ({ ...snapshot, feeds: () => store.client()?.feeds ?? null }), [snapshot, store])

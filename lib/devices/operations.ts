@@ -70,6 +70,15 @@ export const operations = {
     bodyLimit: 8 * 1024,
     response: s.enrolledDeviceSchema,
   }),
+  getServiceWorker: defineOperation({
+    id: 'getServiceWorker',
+    method: 'GET',
+    path: '/sw.js',
+    summary: 'The script that keeps the shell of the room’s pages for a load without a network',
+    tag,
+    access: 'public',
+    responseType: 'text/javascript',
+  }),
   listPinPeople: defineOperation({
     id: 'listPinPeople',
     method: 'GET',

@@ -1,7 +1,8 @@
 import type { Metadata } from 'next'
+import { atTheFire } from '@/components/live/device-view'
 import { RoomBoard } from '@/components/live/room-board'
 import { homeOf } from '@/components/shell/navigation'
-import { requirePageActor } from '@/lib/auth/page-actor'
+import { pageDevice, requireRoomActor } from '@/lib/auth/page-actor'
 import { isAllowed } from '@/lib/auth/permissions'
 import { listPieces } from '@/lib/batches/list-pieces'
 import { listHearths } from '@/lib/probes/list-hearths'
@@ -11,23 +12,24 @@ import { currentSite } from '@/lib/site/current-site'
 export const metadata: Metadata = { title: 'Room' }
 
 export default async function RoomPage() {
-  const actor = await requirePageActor()
-  const [hearths, queue, site] = await Promise.all([
+  const actor = await requireRoomActor()
+  const [hearths, queue, site, device] = await Promise.all([
     listHearths(actor),
     listPieces(actor, { show: 'waiting', limit: 200 }),
     currentSite(),
+    pageDevice(),
   ])
-  const home = homeOf(actor.role)
+  const home = actor.kind === 'person' ? homeOf(actor.role) : '/room'
   return (
     <RoomBoard
       hearths={hearths.items}
       queue={queue}
-      rules={site.rules}
       siteName={site.name}
       zone={site.timeZone}
       unit={actor.temperatureUnit}
       canFire={isAllowed(actor, 'firings:run trial')}
       deskHref={home === '/room' ? '/firings' : home}
+      {...atTheFire(actor, device)}
       serverNowMs={nowMs()}
     />
   )

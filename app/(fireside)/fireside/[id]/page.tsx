@@ -1,6 +1,7 @@
 import type { Metadata } from 'next'
 import { FiresideConsole } from '@/components/live/fireside-console'
-import { requirePageActor } from '@/lib/auth/page-actor'
+import { atTheFire } from '@/components/live/device-view'
+import { pageDevice, requireRoomActor } from '@/lib/auth/page-actor'
 import { isAllowed } from '@/lib/auth/permissions'
 import { getFiring } from '@/lib/firings/get-firing'
 import { orNotFound } from '@/lib/http/or-not-found'
@@ -10,9 +11,14 @@ import { currentSite } from '@/lib/site/current-site'
 export const metadata: Metadata = { title: 'Fireside' }
 
 export default async function FiresidePage({ params }: { params: Promise<{ id: string }> }) {
-  const actor = await requirePageActor()
+  const actor = await requireRoomActor()
   const { id } = await params
-  const [firing, site] = await Promise.all([orNotFound(getFiring(actor, { id }), id), currentSite()])
+  const [firing, site, device] = await Promise.all([
+    orNotFound(getFiring(actor, { id }), id),
+    currentSite(),
+    pageDevice(),
+  ])
+  const isAtDesk = actor.kind === 'person' && actor.byPinAt === undefined
   return (
     <FiresideConsole
       key={firing.id}
@@ -22,6 +28,8 @@ export default async function FiresidePage({ params }: { params: Promise<{ id: s
       unit={actor.temperatureUnit}
       canRun={isAllowed(actor, firing.isTrial ? 'firings:run trial' : 'firings:run')}
       canShelve={isAllowed(actor, 'alarms:shelve')}
+      endedHref={isAtDesk ? `/firings/${id}` : '/room'}
+      {...atTheFire(actor, device)}
       serverNowMs={nowMs()}
     />
   )
