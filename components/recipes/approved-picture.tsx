@@ -2,6 +2,7 @@
 
 import type { TemperatureUnit } from '@/lib/format'
 import type { RecipeVersionDto } from '@/lib/recipes/schema'
+import { planMoisturePercent } from '@/lib/recipes/stave-of'
 import type { SiteRules } from '@/lib/science/site-rules'
 import { PlanPicture } from './plan-picture'
 import { usePlan } from './use-plan'
@@ -27,6 +28,7 @@ export function ApprovedPicture({
       rules={rules}
       unit={unit}
       depthMm={version.content.leadPlace.depthMm}
+      moisturePercent={planMoisturePercent(version.content)}
       limitC={version.content.limits.woodMaximumC}
       shadow={null}
     />

@@ -10,6 +10,7 @@ import { formatDoseFigure, formatTemp } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
 import { smallestHonestTolerance } from '@/lib/recipes/honest-tolerance'
 import type { RecipeVersionDto } from '@/lib/recipes/schema'
+import { planMoisturePercent } from '@/lib/recipes/stave-of'
 import type { SiteRules } from '@/lib/science/site-rules'
 import { BeforeTheFire, NeverLimits, TargetFields, WordsFields } from './conditions-form'
 import type { ConditionsProps } from './conditions-form'
@@ -129,6 +130,7 @@ export function EditBenchView(props: EditBenchViewProps) {
             rules={rules}
             unit={unit}
             depthMm={view.drawn.leadPlace.depthMm}
+            moisturePercent={planMoisturePercent(view.drawn)}
             limitC={draft.limits.woodMaximumC}
             shadow={shadow}
             selectedStage={selectedStage}

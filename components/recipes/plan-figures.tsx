@@ -4,6 +4,7 @@ import type { TemperatureUnit } from '@/lib/format'
 import type { Plan } from '@/lib/recipes/plan-of'
 import { planIndices } from '@/lib/recipes/plan-of'
 import type { SiteRules } from '@/lib/science/site-rules'
+import { CONDUCTIVITY_MOISTURE_LIMIT_PERCENT, isConductivityOutsideFormula } from '@/lib/science/wood'
 
 function halfMm(depthMm: number): string {
   return formatNumber(Math.round(depthMm * 2) / 2, 1)
@@ -24,12 +25,15 @@ export function PlanFigures({
   rules,
   unit,
   depthMm,
+  moisturePercent,
 }: {
   plan: Plan
   wood: PairWood | null
   rules: SiteRules
   unit: TemperatureUnit
   depthMm: number
+  /** Of the staves that the plan is drawn for. */
+  moisturePercent: number
 }) {
   const { slowMin, fastMin } = planIndices(plan.points, rules.indices, rules.dose.refTempC)
   const isOff = plan.doseMin < plan.targetLowMin || plan.doseMin > plan.targetHighMin
@@ -53,6 +57,12 @@ export function PlanFigures({
           {formatNumber(plan.totalS / 60, (plan.totalS / 60) % 1 === 0 ? 0 : 1)} min
         </Figure>
       </dl>
+      {isConductivityOutsideFormula(moisturePercent) ? (
+        <p className="mt-1 text-soft">
+          Staves of {CONDUCTIVITY_MOISTURE_LIMIT_PERCENT} % moisture and more are outside the formula of the
+          wood’s conductivity: the depths are less sure.
+        </p>
+      ) : null}
       {isOff ? (
         <p role="status" className="mt-1 font-[560] text-amber">
           The plan’s dose is outside its own target: a barrel fired exactly so would be out of tolerance. Move

@@ -19,6 +19,8 @@ export type PlanPictureProps = {
   rules: SiteRules
   unit: TemperatureUnit
   depthMm: number
+  /** Of the staves that the plan is drawn for, % of dry mass. */
+  moisturePercent: number
   limitC: number | null
   shadow: ShadowPlan | null
   selectedStage?: number
@@ -28,10 +30,10 @@ export type PlanPictureProps = {
 
 /** The figures and the large pair of a plan. It draws what it is given and fetches nothing. */
 export function PlanPicture(props: PlanPictureProps) {
-  const { plan, wood, rules, unit, depthMm, onDragPoint, onDragEnd } = props
+  const { plan, wood, rules, unit, depthMm, moisturePercent, onDragPoint, onDragEnd } = props
   return (
     <section aria-label="The plan" className="min-w-0">
-      <PlanFigures plan={plan} wood={wood} rules={rules} unit={unit} depthMm={depthMm} />
+      <PlanFigures {...{ plan, wood, rules, unit, depthMm, moisturePercent }} />
       <Pair
         {...planPairProps({ ...props, model: rules.dose })}
         size="large"

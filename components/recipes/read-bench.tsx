@@ -2,6 +2,7 @@
 
 import type { TemperatureUnit } from '@/lib/format'
 import type { RecipeVersionDto } from '@/lib/recipes/schema'
+import { planMoisturePercent } from '@/lib/recipes/stave-of'
 import type { SiteRules } from '@/lib/science/site-rules'
 import { ContentFacts } from './content-facts'
 import type { ShadowPlan } from './plan-pair'
@@ -46,6 +47,7 @@ export function ReadBench({
         rules={rules}
         unit={unit}
         depthMm={content.leadPlace.depthMm}
+        moisturePercent={planMoisturePercent(content)}
         limitC={content.limits.woodMaximumC}
         shadow={shadow}
       />

@@ -9,6 +9,11 @@ export type StavedContent = Pick<RecipeContent, 'thicknessMm'> & {
   preheat: Pick<RecipeContent['preheat'], 'moistureMinPercent' | 'moistureMaxPercent'>
 }
 
+/** A plan is drawn for staves in the middle of the recipe's moisture band, % of dry mass. */
+export function planMoisturePercent({ preheat }: Pick<StavedContent, 'preheat'>): number {
+  return (preheat.moistureMinPercent + preheat.moistureMaxPercent) / 2
+}
+
 /** What the site's rules say of every stave: wood, room, dose and the errors that make the ranges. */
 export function siteStaveOptions(rules: SiteRules) {
   return {
@@ -38,7 +43,7 @@ export function staveOptionsOf(
     columns,
     thicknessMm: content.thicknessMm,
     probeDepthMm: content.leadPlace.depthMm,
-    moisturePercent: (content.preheat.moistureMinPercent + content.preheat.moistureMaxPercent) / 2,
+    moisturePercent: planMoisturePercent(content),
     ...siteStaveOptions(rules),
   }
 }

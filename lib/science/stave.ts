@@ -4,12 +4,7 @@ import { doseFactorFromOffset } from './dose-ratio'
 import type { CurvePoint, DoseModel, SegmentDose } from './heat-dose'
 import { createSegmentDose } from './heat-dose'
 import { straightBetween } from './straight-line'
-import {
-  CONDUCTIVITY_MOISTURE_LIMIT_PERCENT,
-  conductivityWPerMK,
-  densityKgPerM3,
-  heatCapacityJPerKgK,
-} from './wood'
+import { conductivityWPerMK, densityKgPerM3, heatCapacityJPerKgK, isConductivityOutsideFormula } from './wood'
 
 /*
  * The stave model (SCIENCE §3): one-dimensional conduction through the thickness, depth x from the face.
@@ -228,8 +223,7 @@ export function createStave(options: StaveOptions): StaveState {
     heatInJPerM2: 0,
     heatOutJPerM2: 0,
     isMoistureOutsideFormula:
-      options.constantProperties === undefined &&
-      options.moisturePercent >= CONDUCTIVITY_MOISTURE_LIMIT_PERCENT,
+      options.constantProperties === undefined && isConductivityOutsideFormula(options.moisturePercent),
     probeFluxWPerM2: 0,
     probeClimbCPerS: 0,
     work: {

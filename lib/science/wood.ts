@@ -47,6 +47,11 @@ export function heatCapacityJPerKgK(tempK: number, moisturePercent: number): num
 /** Above this moisture, %, the handbook's conductivity formula is not stated: mark a value made there. */
 export const CONDUCTIVITY_MOISTURE_LIMIT_PERCENT = 25
 
+/** Whether wood is so wet, % of dry mass, that its conductivity lies outside the handbook's formula. */
+export function isConductivityOutsideFormula(moisturePercent: number): boolean {
+  return moisturePercent >= CONDUCTIVITY_MOISTURE_LIMIT_PERCENT
+}
+
 /**
  * Thermal conductivity across the grain near 24 °C, W/(m·K): k = G·(0.1941 + 0.004064·M) + 0.01864. Wood Handbook
  * Eq. 4-15, G above 0.3 on the oven-dry mass and the volume at M, M below 25 %: above that the value is computed and
