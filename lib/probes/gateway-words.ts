@@ -23,7 +23,7 @@ export function gatewayWords(gateway: GatewayDto, nowMs: number): GatewayWords {
     return { words: `Silent for ${formatAge(silentS)}. Look at its power and its line.`, tone: 'wrong' }
   }
   return (
-    behindWords(gateway, nowMs) ?? clockWords(gateway) ?? { words: 'Sending, nothing waits.', tone: 'plain' }
+    behindWords(gateway, nowMs) ?? clockWords(gateway) ?? { words: 'Sending, up to date.', tone: 'plain' }
   )
 }
 

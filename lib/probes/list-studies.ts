@@ -17,7 +17,7 @@ export async function listStudies(
 ): Promise<Page<StudyDto>> {
   requirePermission(actor, 'checks:read')
   const em = await forkEm()
-  const { zC } = (await currentSite(em)).rules.dose
+  const { dose } = (await currentSite(em)).rules
   const filters = sqlFilters()
   if (query.state !== undefined) filters.add('s.state = ?', query.state)
   if (query.cursor !== undefined) filters.add('s.no < ?', decodeCursor(query.cursor, 1)[0] ?? null)
@@ -28,7 +28,7 @@ export async function listStudies(
   return toPage(
     rows,
     query.limit,
-    (row) => toStudy(row, zC),
+    (row) => toStudy(row, dose),
     (row) => [row.no],
   )
 }

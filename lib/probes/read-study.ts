@@ -10,5 +10,5 @@ import { currentSite } from '@/lib/site/current-site'
 export async function readStudy(em: EntityManager, id: string): Promise<StudyDto> {
   const [row] = await queryRows<StudyRow>(em, `${studySelect} where s.id = ?`, [id])
   if (row === undefined) throw new AppError('not found', 'There is no such study of repeat placements.')
-  return toStudy(row, (await currentSite(em)).rules.dose.zC)
+  return toStudy(row, (await currentSite(em)).rules.dose)
 }

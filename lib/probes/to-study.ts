@@ -1,5 +1,6 @@
 import type { PlacementDto, StudyDto, StudyResultDto } from '@/lib/probes/study-schema'
 import { studyResultSchema } from '@/lib/probes/study-schema'
+import type { DoseModel } from '@/lib/science/heat-dose'
 import { leastPlacements, repeatabilityOf } from '@/lib/science/repeatability'
 
 type PlacementRow = {
@@ -59,8 +60,8 @@ export const studySelect = `
     left join accounts b on b.id = s.adopted_by
     left join signatures g on g.id = s.signature_id`
 
-/** @param zC of the rules in force, for what an open study says so far */
-export function toStudy(row: StudyRow, zC: number): StudyDto {
+/** @param dose rules in force, for what an open study says so far */
+export function toStudy(row: StudyRow, dose: DoseModel): StudyDto {
   const placements = (row.placements ?? []).map(toPlacement)
   return {
     id: row.id,
@@ -80,7 +81,7 @@ export function toStudy(row: StudyRow, zC: number): StudyDto {
     endReason: row.end_reason,
     signedBy: row.signed_by,
     placements,
-    result: row.state === 'finished' ? studyResultSchema.parse(row.result) : resultOf(placements, zC),
+    result: row.state === 'finished' ? studyResultSchema.parse(row.result) : resultOf(placements, dose),
     adopted:
       row.adopted_at === null || row.adopted_by === null || row.adopted_version === null
         ? null
@@ -89,10 +90,10 @@ export function toStudy(row: StudyRow, zC: number): StudyDto {
 }
 
 /** What the placements that count say; null below five, or while all are alike. */
-export function resultOf(placements: readonly PlacementDto[], zC: number): StudyResultDto | null {
+function resultOf(placements: readonly PlacementDto[], dose: DoseModel): StudyResultDto | null {
   const differencesC = placements.filter((one) => one.struck === null).map((one) => one.differenceC)
   if (differencesC.length < leastPlacements || new Set(differencesC).size === 1) return null
-  return { ...repeatabilityOf(differencesC, zC), zC }
+  return { ...repeatabilityOf(differencesC, dose), zC: dose.zC }
 }
 
 function toPlacement(row: PlacementRow): PlacementDto {

@@ -1,4 +1,6 @@
-import { requireNumbers, requirePositive } from './domain'
+import { requireNumbers } from './domain'
+import { log10FromOffset } from './dose-ratio'
+import type { DoseModel } from './heat-dose'
 import { chiSquareQuantile, mean, sampleSd } from './statistics'
 
 /** Fewer paired placements than this say too little: with four, the interval reaches to 3.7 times the figure. */
@@ -33,12 +35,11 @@ export type Repeatability = {
  * s·√((n − 1)/χ²(0.975)) to s·√((n − 1)/χ²(0.025)) (NIST/SEMATECH e-Handbook, 1.3.5.8 and 7.2.3.1).
  *
  * @param differencesC °C, one a placement
- * @param zC °C for ten times the dose rate
+ * @param model whose z turns °C into log10 of dose
  * @throws RangeError for fewer than {@link leastPlacements}, one that is not finite, or differences that are all alike
  */
-export function repeatabilityOf(differencesC: readonly number[], zC: number): Repeatability {
+export function repeatabilityOf(differencesC: readonly number[], model: DoseModel): Repeatability {
   requireNumbers('differencesC', differencesC, leastPlacements)
-  requirePositive('zC', zC)
   const n = differencesC.length
   const sdC = sampleSd(differencesC)
   if (sdC === 0) throw new RangeError('differencesC must not all be alike: read them more finely')
@@ -53,8 +54,8 @@ export function repeatabilityOf(differencesC: readonly number[], zC: number): Re
     halfWidthC,
     halfWidthLowC,
     halfWidthHighC,
-    halfWidthLog10: halfWidthC / zC,
-    halfWidthLowLog10: halfWidthLowC / zC,
-    halfWidthHighLog10: halfWidthHighC / zC,
+    halfWidthLog10: log10FromOffset(model, halfWidthC),
+    halfWidthLowLog10: log10FromOffset(model, halfWidthLowC),
+    halfWidthHighLog10: log10FromOffset(model, halfWidthHighC),
   }
 }

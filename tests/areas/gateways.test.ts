@@ -123,13 +123,13 @@ describe('the words of a gateway’s state', () => {
   }
 
   it.each([
-    ['sending', {}, 'Sending, nothing waits.', 'plain'],
+    ['sending', {}, 'Sending, up to date.', 'plain'],
     ['silent', { lastSeenAt: ago(720) }, 'Silent for 12 min. Look at its power and its line.', 'wrong'],
     ['never heard of', { lastSeenAt: null }, 'Never heard of.', 'attention'],
     ['without a token', { tokenCount: 0 }, 'It cannot send', 'attention'],
     ['retired', { retiredAt: ago(60), tokenCount: 0 }, 'Retired', 'plain'],
     ['behind', { status }, '1240 readings behind, the oldest from 3 min ago', 'attention'],
-    ['on its way', { status: { ...status, oldestUnsentAt: ago(2) } }, 'Sending, nothing waits.', 'plain'],
+    ['on its way', { status: { ...status, oldestUnsentAt: ago(2) } }, 'Sending, up to date.', 'plain'],
     ['slow clock', { clockOffsetMs: 4_200 }, 'Its clock is 4.2 s behind ours', 'attention'],
     ['fast clock', { clockOffsetMs: -4_200 }, 'Its clock is 4.2 s ahead of ours', 'attention'],
   ] as const)('%s', (_name, changes, words, tone) => {
