@@ -8,14 +8,23 @@ import { verdicts } from '@/lib/firings/schema'
 import { formatNumber } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
 
-function State({ piece }: { piece: PieceDto }) {
+function State({ piece, hasFirings }: { piece: PieceDto; hasFirings: boolean }) {
   if (piece.firing === null || piece.firing.state === 'queued')
     return <span className="text-soft">waiting</span>
+  if (!hasFirings) return <StateWords piece={piece} />
+  return (
+    <Link href={`/firings/${piece.firing.id}`} className="underline-offset-3 hover:underline">
+      <StateWords piece={piece} />
+    </Link>
+  )
+}
+
+function StateWords({ piece }: { piece: PieceDto }) {
   const verdict = verdicts.find((one) => one === piece.firing?.verdict)
   if (verdict !== undefined) return <VerdictText verdict={verdict} />
   return (
     <span className="text-soft">
-      {piece.firing.state === 'finished' ? 'being scored' : piece.firing.state}
+      {piece.firing?.state === 'finished' ? 'being scored' : piece.firing?.state}
     </span>
   )
 }
@@ -30,7 +39,7 @@ function Dose({ piece, unit }: { piece: PieceDto; unit: TemperatureUnit }) {
   return <DoseFigure equivalentMin={firing.doseMinutes} range={range} unit={unit} isUnitHidden />
 }
 
-/** Barrels and heads with their newest firing. `hasFirings`: link to it (customers have no firing pages). */
+/** Barrels and heads with their newest firing. `hasFirings`: link to both (customers have pages of neither). */
 export function PieceTable({
   pieces,
   unit,
@@ -68,9 +77,9 @@ export function PieceTable({
           head: 'Serial',
           isRowHead: true,
           cell: (piece) =>
-            hasFirings && piece.firing !== null && piece.firing.state !== 'queued' ? (
+            hasFirings ? (
               <Link
-                href={`/firings/${piece.firing.id}`}
+                href={`/barrels/${piece.id}`}
                 className="font-[640] whitespace-nowrap underline-offset-3 hover:underline"
               >
                 {piece.serial}
@@ -81,7 +90,7 @@ export function PieceTable({
         },
         { key: 'kind', head: 'Piece', cell: (piece) => `${piece.kind}, ${piece.sizeAndShape}` },
         ...(isBatchShown ? batchColumns : []),
-        { key: 'state', head: 'Firing', cell: (piece) => <State piece={piece} /> },
+        { key: 'state', head: 'Firing', cell: (piece) => <State piece={piece} hasFirings={hasFirings} /> },
         {
           key: 'dose',
           head: 'Dose',

@@ -1,20 +1,37 @@
 import Link from 'next/link'
 import { DoseFacts } from '@/components/firings/dose-facts'
+import { FiringAirFacts } from '@/components/firings/firing-air'
 import { FiringHead } from '@/components/firings/firing-head'
 import { FiringPair } from '@/components/firings/firing-pair'
+import { FiringPhotos } from '@/components/firings/firing-photos'
 import { FiringRemarks } from '@/components/firings/firing-remarks'
 import { HappenedList } from '@/components/firings/happened-list'
 import { ProbeFacts } from '@/components/firings/probe-facts'
+import { ShortStepList } from '@/components/firings/short-step-list'
 import { TermTable } from '@/components/firings/term-table'
+import { LossList } from '@/components/losses/loss-list'
 import { EmptyState } from '@/components/ui/empty-state'
 import { LinkButton } from '@/components/ui/link-button'
 import { Notice } from '@/components/ui/notice'
 import { isLive } from '@/lib/firings/firing-states'
+import type { FiringBeside } from '@/lib/firings/get-firing-beside'
 import type { FiringPicture } from '@/lib/firings/picture-types'
+import { shortStepsOf } from '@/lib/firings/short-steps'
 import type { TemperatureUnit } from '@/lib/format'
 
 /** The page of one firing: picture to the left, why and what happened to the right. */
-export function FiringView({ picture, unit }: { picture: FiringPicture; unit: TemperatureUnit }) {
+export function FiringView({
+  picture,
+  beside,
+  unit,
+  canRun,
+}: {
+  picture: FiringPicture
+  beside: FiringBeside
+  unit: TemperatureUnit
+  /** May say afterwards why a step was short, and add photos and losses. */
+  canRun: boolean
+}) {
   const { score, rules } = picture
   const refTempC = rules.dose.refTempC
   return (
@@ -31,14 +48,53 @@ export function FiringView({ picture, unit }: { picture: FiringPicture; unit: Te
           {score === null ? null : <DoseFacts score={score.result} refTempC={refTempC} unit={unit} />}
           <div className="grid gap-x-9 gap-y-6 lg:grid-cols-2">
             <ProbeFacts picture={picture} unit={unit} />
-            <FiringRemarks firing={picture.firing} unit={unit} />
+            <div className="min-w-0 space-y-6">
+              <FiringRemarks firing={picture.firing} unit={unit} />
+              <FiringAirFacts picture={picture} air={beside.air} unit={unit} />
+            </div>
           </div>
+          <Beside picture={picture} beside={beside} canRun={canRun} />
         </div>
         <div className="min-w-0 space-y-6">
-          {score === null ? null : <TermTable score={score.result} refTempC={refTempC} unit={unit} />}
+          {score === null ? null : (
+            <TermTable
+              score={score.result}
+              refTempC={refTempC}
+              unit={unit}
+              shortSteps={shortStepsOf(picture.firing)}
+            />
+          )}
+          <ShortStepList firing={picture.firing} canRun={canRun} />
           <HappenedList picture={picture} unit={unit} />
         </div>
       </div>
+    </>
+  )
+}
+
+/** Losses and photos: kept beside the curve, never inside the score. */
+function Beside({
+  picture: { firing, timeZone },
+  beside,
+  canRun,
+}: {
+  picture: FiringPicture
+  beside: FiringBeside
+  canRun: boolean
+}) {
+  if (firing.state === 'queued') return null
+  return (
+    <>
+      <LossList
+        pieceId={firing.piece.id}
+        firingId={firing.id}
+        woodLot={firing.batch.woodLot}
+        known={beside.losses}
+        mayChange={canRun}
+        canBreak={firing.bendAt !== null}
+        zone={timeZone}
+      />
+      <FiringPhotos firingId={firing.id} known={beside.photos} mayAdd={canRun} zone={timeZone} />
     </>
   )
 }

@@ -1,5 +1,7 @@
 import Link from 'next/link'
 import { Table } from '@/components/ui/table'
+import type { ShortStep } from '@/lib/firings/short-steps'
+import { shortStepWords } from '@/lib/firings/short-steps'
 import { formatNumber, formatSigned, formatTempDifference } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
 import { describeBrokenLimit, describeTerm, showMinutes } from '@/lib/science/score-sentences'
@@ -58,15 +60,30 @@ function showTermPoints(term: ScoreTerm): string {
   return `${showPoints(term.pointsOf - term.pointsLost)} of ${term.pointsOf}`
 }
 
+/** The reasons for what a term measured: words beside the points, none of which they change. */
+function reasonsBeside(term: ScoreTerm, steps: readonly ShortStep[]): string {
+  const isOfTerm = ({ step }: ShortStep) =>
+    term.key === 'preheatAndBend'
+      ? step === 'preheat' || step === 'bend'
+      : term.key === 'stageLengths' && step === 'stage'
+  return steps
+    .filter((step) => isOfTerm(step) && step.reason !== null)
+    .map((step) => `${shortStepWords(step)}; the reason given: ${step.reason}.`)
+    .join(' ')
+}
+
 /** Why so many points: term by term, with a sentence for each that lost some, and all of them in words below. */
 export function TermTable({
   score,
   refTempC,
   unit,
+  shortSteps = [],
 }: {
   score: Score
   refTempC: number
   unit: TemperatureUnit
+  /** Their reasons are said beside the terms that measured them. */
+  shortSteps?: readonly ShortStep[]
 }) {
   const context = { doseMin: score.dose?.doseMin ?? null, targetDoseMin: score.targetDoseMin, refTempC }
   const heading = score.points === null ? 'Why it is incomplete' : `Why ${showPoints(score.points)} points`
@@ -107,7 +124,9 @@ export function TermTable({
           <summary className="cursor-pointer text-soft">Each term in words</summary>
           <ul className="mt-1 space-y-1 text-small text-soft">
             {score.terms.map((term) => (
-              <li key={term.key}>{describeTerm(term, context, unit)}</li>
+              <li key={term.key}>
+                {describeTerm(term, context, unit)} {reasonsBeside(term, shortSteps)}
+              </li>
             ))}
           </ul>
         </details>

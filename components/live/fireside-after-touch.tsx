@@ -64,10 +64,7 @@ export function AfterTouch({
   const leftS = undoLeftS(touched, nowMs)
   const caution = cautionFor(touched.words.toLowerCase())
   return (
-    <div
-      role="status"
-      className="absolute right-0 bottom-0 left-0 z-10 border-t-3 border-water bg-raised px-6 py-4"
-    >
+    <div role="status" className="border-t-3 border-water bg-raised px-6 py-4">
       {caution === null ? null : <p className={classNames(firesideType.text.className, 'mb-3')}>{caution}</p>}
       {touched.endedStage === null ? null : <CallRow call={touched.call} onCall={onCall} />}
       <div className="flex flex-wrap items-center gap-3">

@@ -10,7 +10,16 @@ import { firesideType } from './fireside-type'
 const none = { timeS: [], tempC: [] }
 
 /** Preheat and bend: what must be right before the toast, in words, and the plan to come. */
-export function BeforeToast({ facts, unit }: { facts: FiresideFacts; unit: TemperatureUnit }) {
+export function BeforeToast({
+  facts,
+  nextLine,
+  unit,
+}: {
+  facts: FiresideFacts
+  /** From the last firings like this one. */
+  nextLine: string | null
+  unit: TemperatureUnit
+}) {
   const { plan, content } = facts
   return (
     <div className="flex h-full min-h-0 flex-col">
@@ -24,6 +33,9 @@ export function BeforeToast({ facts, unit }: { facts: FiresideFacts; unit: Tempe
           </div>
         ))}
       </dl>
+      {nextLine === null ? null : (
+        <p className={classNames(firesideType.label.className, 'px-6 pb-4 font-[560]')}>{nextLine}</p>
+      )}
       <p className={classNames(firesideType.label.className, 'border-t border-line px-6 pt-3 text-soft')}>
         The plan to come
       </p>

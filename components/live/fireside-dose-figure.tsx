@@ -10,6 +10,10 @@ export type DoseFigureProps = {
   forecast: FiringState['forecast']
   /** In the forecast's place when there is none. */
   noForecastWords: string
+  /** The advice stands under the picture, to be answered. */
+  isAdviceBelow: boolean
+  /** How often the forecast was right lately; null while too few can be told. */
+  record: string | null
   toleranceLog10: number
   isLive: boolean
   nowMs: number
@@ -37,14 +41,18 @@ export function DoseFigure(props: DoseFigureProps) {
         </p>
         <Gauge dose={dose} toleranceLog10={toleranceLog10} />
       </div>
-      <p className={classNames(firesideType.text.className, 'mt-2 line-clamp-2')}>
-        {forecast === null ? noForecastWords : forecast.sentence}
+      <p className={classNames(firesideType.text.className, 'mt-2 line-clamp-3')}>
+        {forecast === null ? noForecastWords : forecastWords(forecast, props.isAdviceBelow)}
       </p>
-      {forecast === null ? null : (
-        <p className={classNames(firesideType.text.className, 'line-clamp-2 text-soft')}>{forecast.advice}</p>
+      {forecast === null || props.record === null ? null : (
+        <p className={classNames(firesideType.small.className, 'mt-1 truncate text-soft')}>{props.record}</p>
       )}
     </div>
   )
+}
+
+function forecastWords(forecast: NonNullable<DoseFigureProps['forecast']>, isAdviceBelow: boolean): string {
+  return isAdviceBelow ? forecast.sentence : `${forecast.sentence} ${forecast.advice}`
 }
 
 function doseLabel(dose: FiringState['dose'] | null): string {

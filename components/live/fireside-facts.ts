@@ -1,4 +1,6 @@
 import type { FiringDto, MarkKind } from '@/lib/firings/schema'
+import type { ShortStep, ShortStepFacts, ShortStepKind } from '@/lib/firings/short-steps'
+import { shortSteps } from '@/lib/firings/short-steps'
 import type { FiringFacts } from '@/lib/live/firing-facts'
 import { planOf } from '@/lib/recipes/plan-of'
 import type { SiteRules } from '@/lib/science/site-rules'
@@ -10,12 +12,19 @@ export type ShownMark = {
   kind: MarkKind
   atMs: number
   stagePosition: number | null
+  /** Of a reason: the step that it is given for. */
+  step: ShortStepKind | null
   words: string
   isWaiting: boolean
 }
 
 /** A firing with what waits in this browser laid over it, so that a touch shows at once and a cut stops nothing. */
-export type FiresideFacts = FiringFacts & { shownMarks: ShownMark[] }
+export type FiresideFacts = FiringFacts & {
+  shownMarks: ShownMark[]
+  /** Steps that were left out or short so far, and what they are found from. */
+  shortSteps: ShortStep[]
+  shortStepFacts: ShortStepFacts
+}
 
 /** Null for a firing that has not started: it has no recipe copy. */
 export function firesideFacts(
@@ -33,6 +42,15 @@ export function firesideFacts(
   const shownMarks = layMarks(firing, waiting)
   const phase = latestPhase(firing, waiting)
   const { content, recipeName } = firing.recipeCopy
+  const shortStepFacts: ShortStepFacts = {
+    content,
+    preheatMs: Date.parse(firing.preheatAt),
+    bendMs: phase.bendMs,
+    toastMs: phase.toastMs,
+    restMs: phase.restMs,
+    endedMs: toMs(firing.endedAt),
+    marks: shownMarks,
+  }
   return {
     firingId: firing.id,
     revision: firing.revision,
@@ -52,6 +70,8 @@ export function firesideFacts(
     assignments: [],
     marks: shownMarks.map(({ kind, atMs, stagePosition }) => ({ kind, atMs, stagePosition })),
     shownMarks,
+    shortSteps: shortSteps(shortStepFacts),
+    shortStepFacts,
   }
 }
 
@@ -68,6 +88,7 @@ function layMarks(firing: FiringDto, waiting: readonly MarkDraft[]): ShownMark[]
       kind: mark.kind,
       atMs: Date.parse(mark.at),
       stagePosition: mark.stagePosition,
+      step: mark.step,
       words: mark.words,
       isWaiting: false,
     }))
@@ -78,6 +99,7 @@ function layMarks(firing: FiringDto, waiting: readonly MarkDraft[]): ShownMark[]
       kind: mark.kind,
       atMs: Date.parse(mark.at),
       stagePosition: mark.stagePosition ?? null,
+      step: mark.step ?? null,
       words: mark.words ?? '',
       isWaiting: true,
     }))

@@ -10,13 +10,22 @@ import type { Problem } from '@/components/ui/problem'
 import { TextArea } from '@/components/ui/text-area'
 import { keyNames } from './fireside-keys'
 import { FiresideSheet } from './fireside-sheet'
+import type { SoundLevel } from './fireside-sound'
+import { SoundChoice } from './fireside-sound-choice'
+
+/** Something seldom done at this step: another hearth, a step left out. */
+export type MoreStep = { label: string; onPress: () => void }
 
 export type MoreProps = {
-  firingId: string
+  /** The firing's page at the desk; null where a PIN does not open it. */
+  deskHref: string | null
   canRun: boolean
   areKeysOn: boolean
   onKeysOn: (isOn: boolean) => void
   onTurn: () => void
+  steps: readonly MoreStep[]
+  soundLevel: SoundLevel
+  onSoundLevel: (level: SoundLevel) => void
   onAlarms: () => void
   onAbandon: () => void
   onClose: () => void
@@ -24,11 +33,14 @@ export type MoreProps = {
 
 /** What is seldom wanted: turn, abandon, the way back, and the keys. */
 export function FiresideMore({
-  firingId,
+  deskHref,
   canRun,
   areKeysOn,
   onKeysOn,
   onTurn,
+  steps,
+  soundLevel,
+  onSoundLevel,
   onAlarms,
   onAbandon,
   onClose,
@@ -37,19 +49,27 @@ export function FiresideMore({
     <FiresideSheet title="More" onClose={onClose}>
       <div className="grid grid-cols-2 gap-3">
         {canRun ? <Button onClick={onTurn}>Turn the barrel</Button> : null}
+        {steps.map(({ label, onPress }) => (
+          <Button key={label} onClick={onPress}>
+            {label}
+          </Button>
+        ))}
         <Button onClick={onAlarms}>Alarms, and those shelved</Button>
         <Link href="/room" className={buttonClass('plain')}>
           Back to the room
         </Link>
-        <Link href={`/firings/${firingId}`} className={buttonClass('plain')}>
-          The firing’s page, at the desk
-        </Link>
+        {deskHref === null ? null : (
+          <Link href={deskHref} className={buttonClass('plain')}>
+            The firing’s page, at the desk
+          </Link>
+        )}
         {canRun ? (
           <Button kind="danger" onClick={onAbandon}>
             Abandon this firing
           </Button>
         ) : null}
       </div>
+      <SoundChoice level={soundLevel} onChoose={onSoundLevel} />
       {canRun ? (
         <>
           <h3 className="mt-6 text-large">Keys</h3>

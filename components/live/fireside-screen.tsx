@@ -11,6 +11,8 @@ export function FiresideScreen({
   figures,
   picture,
   strip,
+  person = null,
+  advice = null,
   overlay,
 }: {
   topLine: ReactNode
@@ -22,6 +24,10 @@ export function FiresideScreen({
   picture: ReactNode
   /** A caution, or what does not fit elsewhere; one or two lines under the picture. */
   strip: string | null
+  /** Who marks, at a shared tablet; beside the strip. */
+  person?: ReactNode
+  /** Advice to be taken or waved away, over the strip. */
+  advice?: ReactNode
   overlay: ReactNode
 }) {
   return (
@@ -39,12 +45,14 @@ export function FiresideScreen({
         >
           <div className="grid grid-cols-[428px_minmax(0,1fr)] border-b border-line">{figures}</div>
           <div className="relative min-h-0 pt-2 pr-3 pb-1 pl-2">{picture}</div>
-          {strip === null ? null : (
-            <p className={classNames(firesideType.text.className, 'border-t border-line px-6 py-2')}>
-              {strip}
-            </p>
+          {advice}
+          {strip === null && person === null ? null : (
+            <div className="flex items-center justify-between gap-4 border-t border-line">
+              <p className={classNames(firesideType.text.className, 'min-w-0 px-6 py-2')}>{strip}</p>
+              {person}
+            </div>
           )}
-          {overlay}
+          {overlay === null ? null : <div className="absolute right-0 bottom-0 left-0 z-10">{overlay}</div>}
         </section>
       </div>
     </div>

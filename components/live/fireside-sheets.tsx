@@ -11,15 +11,18 @@ import type { FinishWords } from './fireside-finish'
 import { nextToSend } from './fireside-mark-queue'
 import type { MarkSender } from './fireside-mark-sender'
 import { FiresideAbandon, FiresideMore } from './fireside-more'
+import type { MoreProps, MoreStep } from './fireside-more'
 import { FiresideNote } from './fireside-note'
 
-export type FiresideSheetName = 'alarms' | 'more' | 'note' | 'finish' | 'abandon'
+export type FiresideSheetName =
+  'who' | 'alarms' | 'more' | 'note' | 'finish' | 'abandon' | 'move' | 'swap' | 'why' | 'why, then finish'
 
 /** The sheets over the fireside; the finish and the abandoning go to the server once every mark is there. */
 export function FiresideSheets({
   sheet,
   onSheet,
   firingId,
+  endedHref,
   canRun,
   unit,
   areKeysOn,
@@ -27,12 +30,16 @@ export function FiresideSheets({
   sender,
   waitingCount,
   onTurn,
+  moreSteps,
+  sound,
   onNote,
   onChanged,
 }: {
   sheet: FiresideSheetName | null
   onSheet: (sheet: FiresideSheetName | null) => void
   firingId: string
+  /** Where to go once the firing has ended. */
+  endedHref: string
   canRun: boolean
   unit: TemperatureUnit
   areKeysOn: boolean
@@ -40,6 +47,9 @@ export function FiresideSheets({
   sender: MarkSender
   waitingCount: number
   onTurn: () => void
+  /** What is seldom done at this step. */
+  moreSteps: readonly MoreStep[]
+  sound: Pick<MoreProps, 'soundLevel' | 'onSoundLevel'>
   onNote: (words: string) => void
   onChanged: () => void
 }) {
@@ -56,14 +66,14 @@ export function FiresideSheets({
     if (!isDone) return
     setIsLeaving(true)
     onChanged()
-    router.push(`/firings/${firingId}`)
+    router.push(endedHref)
   }
   const shown: { isBusy: boolean; problem: Problem | null } = { isBusy: isBusy || isLeaving, problem }
 
   if (sheet === 'more') {
     return (
       <FiresideMore
-        firingId={firingId}
+        deskHref={endedHref === '/room' ? null : endedHref}
         canRun={canRun}
         areKeysOn={areKeysOn}
         onKeysOn={onKeysOn}
@@ -71,6 +81,8 @@ export function FiresideSheets({
           onTurn()
           close()
         }}
+        steps={moreSteps}
+        {...sound}
         onAlarms={() => onSheet('alarms')}
         onAbandon={() => onSheet('abandon')}
         onClose={close}

@@ -36,6 +36,18 @@ export function mainStep(facts: FiresideFacts, nowMs: number): MainStep | null {
   return null
 }
 
+/** What is seldom done at this step: a bend that is left out (the rose is bent already), a rest that is. */
+export type SeldomStep = { label: string; step: MainStep }
+
+export function seldomSteps(facts: FiresideFacts): SeldomStep[] {
+  if (facts.state === 'preheating' && isBent(facts)) {
+    return [{ label: 'Leave out the bend, start the toast', step: toastStep(false) }]
+  }
+  if (facts.state !== 'toasting') return []
+  const finish: MainStep = { label: 'Finish', isDue: false, mark: 'finish', doneWords: 'Finished' }
+  return [{ label: 'Leave out the rest, finish', step: finish }]
+}
+
 /** Heads are not bent, nor is a rose whose recipe asks no pull. */
 function isBent({ content }: FiresideFacts): boolean {
   return content.pieceKind === 'barrel' && content.bend.minimumMinutes > 0

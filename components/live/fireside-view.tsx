@@ -1,11 +1,15 @@
+import type { ReactNode } from 'react'
 import { formatInstant } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
 import type { FiringDto } from '@/lib/firings/schema'
 import type { FiringState } from '@/lib/live/events'
+import { isFarFromPlan } from '@/lib/live/far-from-plan'
 import { adviceFor } from '@/lib/live/signal-words'
 import { nextAction, stageNow } from '@/lib/live/stage-now'
 import { AfterTouch, isTouchShown } from './fireside-after-touch'
 import type { Touched } from './fireside-after-touch'
+import { FiresideAdvice } from './fireside-advice'
+import type { AdviceAnswer } from './fireside-advice'
 import { BeforeToast } from './fireside-before-toast'
 import type { Call } from './fireside-calls'
 import { cautionFor, cautions } from './fireside-cautions'
@@ -15,13 +19,15 @@ import type { FiresideFacts } from './fireside-facts'
 import { lidNow } from './fireside-facts'
 import { FiresideHead } from './fireside-head'
 import { FiresideMarks, markButtons } from './fireside-marks'
-import { isCut, isFarFromPlan, readProbe } from './fireside-reading'
+import { isCut, readProbe } from './fireside-reading'
 import { FiresideScreen } from './fireside-screen'
 import { FiresideStage } from './fireside-stage'
 import { mainStep, stepClock } from './fireside-step'
 import type { MainStep } from './fireside-step'
 import { TopLine } from './fireside-top-line'
 import type { TopLineProps } from './fireside-top-line'
+import { FiresideWhy } from './fireside-why'
+import type { WhyProps } from './fireside-why'
 import { WoodFigure } from './fireside-wood-figure'
 import type { LiveFiring } from './use-live-firing'
 import type { MarkKind } from '@/lib/firings/schema'
@@ -41,6 +47,18 @@ export type FiresideViewProps = {
   /** What a barcode scanner found out. */
   scanWords: string | null
   touched: Touched | null
+  /** A step that wants its reason; null when none does. */
+  why: WhyProps | null
+  /** Advice that is to be taken or waved away. */
+  advice: { words: string; answer: (answer: AdviceAnswer) => void } | null
+  /** From the last firings like this one, before the toast. */
+  nextLine: string | null
+  /** How often the forecast was right lately. */
+  forecastRecord: string | null
+  /** Who marks, at a shared tablet. */
+  person?: ReactNode
+  /** In place of the marks while nobody is signed in there. */
+  handless?: ReactNode
   onStep: (step: MainStep) => void
   onMark: (kind: MarkKind) => void
   onMore: () => void
@@ -56,9 +74,8 @@ const LONG_WORDS = 22
 
 /** The whole fireside from what is known now. Draws only. */
 export function FiresideView(props: FiresideViewProps) {
-  const { firing, facts, live, nowMs, zone, unit, canRun, topLine, touched } = props
+  const { firing, facts, live, nowMs, unit, canRun, topLine } = props
   const next = nextAction(facts, nowMs)
-  const isShown = touched !== null && isTouchShown(touched, nowMs)
   return (
     <FiresideScreen
       topLine={topLine === null ? null : <TopLine {...topLine} />}
@@ -75,29 +92,46 @@ export function FiresideView(props: FiresideViewProps) {
       marks={
         canRun ? (
           <FiresideMarks buttons={markButtons(lidNow(facts.shownMarks), nowMs)} onMark={props.onMark} />
-        ) : null
+        ) : (
+          (props.handless ?? null)
+        )
       }
       figures={<Figures {...props} />}
-      picture={<Picture facts={facts} live={live} nowMs={nowMs} unit={unit} />}
+      picture={<Picture facts={facts} live={live} nowMs={nowMs} unit={unit} nextLine={props.nextLine} />}
+      person={props.person}
       strip={props.alarmProblem ?? props.scanWords ?? troubleStrip(live.state, nowMs) ?? stripOf(facts, next)}
-      overlay={
-        isShown ? (
-          <AfterTouch
-            touched={touched}
-            markedAt={formatInstant(touched.atMs, zone, 'seconds')}
-            nowMs={nowMs}
-            earliestMs={facts.preheatMs}
-            onUndo={props.onUndo}
-            onMinutesAgo={props.onMinutesAgo}
-            onCall={props.onCall}
-          />
+      advice={
+        canRun && props.advice !== null ? (
+          <FiresideAdvice words={props.advice.words} onAnswer={props.advice.answer} />
         ) : null
       }
+      overlay={<Overlay {...props} />}
     />
   )
 }
 
-function Figures({ facts, live, nowMs, unit, zone }: FiresideViewProps) {
+/** Over the foot of the picture: why a step was short, and what can still be done about the last touch. */
+function Overlay({ facts, nowMs, zone, touched, why, onUndo, onMinutesAgo, onCall }: FiresideViewProps) {
+  const isShown = touched !== null && isTouchShown(touched, nowMs)
+  return (
+    <>
+      {why === null ? null : <FiresideWhy {...why} />}
+      {isShown ? (
+        <AfterTouch
+          touched={touched}
+          markedAt={formatInstant(touched.atMs, zone, 'seconds')}
+          nowMs={nowMs}
+          earliestMs={facts.preheatMs}
+          onUndo={onUndo}
+          onMinutesAgo={onMinutesAgo}
+          onCall={onCall}
+        />
+      ) : null}
+    </>
+  )
+}
+
+function Figures({ facts, live, nowMs, unit, zone, advice, canRun, forecastRecord }: FiresideViewProps) {
   const { state } = live
   const isNow = state !== null && !isCut(state, nowMs)
   const isToasting = facts.state === 'toasting'
@@ -118,6 +152,8 @@ function Figures({ facts, live, nowMs, unit, zone }: FiresideViewProps) {
         dose={state?.dose ?? null}
         forecast={isNow ? state.forecast : null}
         noForecastWords={noForecastWords(state, isNow, facts.state)}
+        isAdviceBelow={canRun && advice !== null}
+        record={forecastRecord}
         toleranceLog10={facts.content.doseToleranceLog10}
         isLive={isNow && readProbe(state, 'lead', nowMs).kind === 'live'}
         nowMs={nowMs}
@@ -141,8 +177,14 @@ function noForecastWords(state: FiringState | null, isNow: boolean, phase: Firin
   return phase === 'resting' ? 'Dose counted to the rest start.' : 'No forecast yet.'
 }
 
-function Picture({ facts, live, nowMs, unit }: Pick<FiresideViewProps, 'facts' | 'live' | 'nowMs' | 'unit'>) {
-  if (facts.toastMs === null) return <BeforeToast facts={facts} unit={unit} />
+function Picture({
+  facts,
+  live,
+  nowMs,
+  unit,
+  nextLine,
+}: Pick<FiresideViewProps, 'facts' | 'live' | 'nowMs' | 'unit' | 'nextLine'>) {
+  if (facts.toastMs === null) return <BeforeToast facts={facts} nextLine={nextLine} unit={unit} />
   if (live.state === null) return <p className="px-6 py-4 text-soft">Fetching the curve so far.</p>
   const stagePosition = stageNow(facts, nowMs)?.position ?? null
   return (

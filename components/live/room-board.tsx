@@ -8,31 +8,36 @@ import type { TemperatureUnit } from '@/lib/format'
 import { apiPath, getApi } from '@/lib/http/api-client'
 import type { Page } from '@/lib/http/cursor'
 import type { HearthDto } from '@/lib/probes/schema'
-import type { SiteRules } from '@/lib/science/site-rules'
 import { createServerClock, useServerTime } from './fireside-clock'
 import { CUT_AFTER_MS } from './fireside-reading'
+import type { AtTheFire } from './device-view'
+import { RoomCorner } from './room-corner'
 import { RoomFreeRow } from './room-free-row'
 import { RoomHearth } from './room-hearth'
+import { RoomKeptMarks } from './room-kept-marks'
 import { RoomScreen } from './room-screen'
+import { roomSizeOf } from './room-size'
 import type { LiveRoomSnapshot } from './live-room-client'
 import { refusalOf } from './use-fireside-live'
+import { useKeepAwake } from './use-keep-awake'
 import { useRoomLive } from './use-room-live'
+import { useRoomScan } from './use-room-scan'
+import { useWallZoom } from './use-wall-zoom'
 
 export type RoomBoardProps = {
   hearths: HearthDto[]
   queue: Page<PieceDto>
-  rules: SiteRules
   siteName: string
   zone: string
   unit: TemperatureUnit
   canFire: boolean
   deskHref: string
+  /** A screen that nobody touches: larger, without controls, kept awake. */
+  isWall?: boolean
   serverNowMs: number
-}
+} & AtTheFire
 
 const queuePath = apiPath('/api/barrels', {}, { show: 'waiting', limit: 200 })
-/** Five rows and more are low: the figures are a little smaller. */
-const TIGHT_FROM = 5
 
 /** The whole room: fetches hearths and queue, follows the live states; the rows draw. */
 export function RoomBoard(props: RoomBoardProps) {
@@ -53,13 +58,31 @@ export function RoomBoard(props: RoomBoardProps) {
   const nowMs = useServerTime(clock, props.serverNowMs)
   const inUse = (hearths.data?.items ?? props.hearths).filter((hearth) => hearth.isActive)
   const waiting = queue.data ?? props.queue
-  const isTight = inUse.length >= TIGHT_FROM
-  return (
+  const { isWall = false, person, device, canFire } = props
+  const scan = useRoomScan(inUse, waiting.items, { canFire, ownHearth: device?.hearthNumber ?? null })
+  const size = roomSizeOf(inUse.length, isWall)
+  const zoom = useWallZoom()
+  useKeepAwake(isWall)
+  const screen = (
     <RoomScreen
       siteName={props.siteName}
       queueWords={queueWords(waiting)}
       clock={formatInstant(nowMs, props.zone, 'time')}
-      deskHref={props.deskHref}
+      deskHref={isWall ? null : props.deskHref}
+      corner={device === null || isWall ? null : <RoomCorner person={person} device={device} />}
+      notices={
+        isWall ? null : (
+          <>
+            <RoomKeptMarks person={person} zone={props.zone} />
+            {scan.words === null ? null : (
+              <p role="status" className="border-b border-line bg-raised px-6 py-3 text-[28px] leading-tight">
+                {scan.words}
+              </p>
+            )}
+          </>
+        )
+      }
+      height={isWall ? `calc(100dvh / ${zoom})` : undefined}
       problem={problemWords(live, nowMs, props.zone)}
       rows={inUse.length}
     >
@@ -70,14 +93,15 @@ export function RoomBoard(props: RoomBoardProps) {
       ) : null}
       {inUse.map((hearth) => {
         if (hearth.live === null) {
-          const next = waiting.items[0] ?? null
+          const next = scan.piece ?? waiting.items[0] ?? null
           return (
             <RoomFreeRow
               key={hearth.id}
               hearthNumber={hearth.number}
               next={next}
-              canFire={props.canFire}
-              isTight={isTight}
+              canFire={canFire}
+              isScanned={scan.piece !== null}
+              size={size}
             />
           )
         }
@@ -88,21 +112,22 @@ export function RoomBoard(props: RoomBoardProps) {
             hearthNumber={hearth.number}
             live={hearth.live}
             firing={live.room?.firings.find((one) => one.firingId === firingId) ?? null}
-            rules={props.rules}
             unit={props.unit}
-            isTight={isTight}
+            size={size}
             nowMs={nowMs}
           />
         )
       })}
     </RoomScreen>
   )
+  return isWall ? <div style={{ zoom }}>{screen}</div> : screen
 }
 
 function queueWords({ items, nextCursor }: Page<PieceDto>): string {
   const [next] = items
-  if (next === undefined) return 'No rose waits'
-  const count = nextCursor === null ? formatCount(items.length, 'rose') : `over ${items.length} roses`
+  if (next === undefined) return 'Nothing waits'
+  const what = items.some((piece) => piece.kind === 'head') ? 'piece' : 'rose'
+  const count = nextCursor === null ? formatCount(items.length, what) : `over ${items.length} ${what}s`
   return `${count} waiting, next ${next.serial}`
 }
 
@@ -112,5 +137,5 @@ function problemWords(live: LiveRoomSnapshot, nowMs: number, zone: string): stri
   const atMs = live.room?.atMs ?? null
   if (atMs === null || nowMs - atMs <= CUT_AFTER_MS) return null
   const since = formatInstant(atMs, zone, 'seconds')
-  return `No connection since ${since}, ${formatClock((nowMs - atMs) / 1000)} ago. The figures are from then.`
+  return `As of ${since}, ${formatClock((nowMs - atMs) / 1000)} ago. Not live: no connection.`
 }

@@ -8,29 +8,50 @@ export function RoomScreen({
   queueWords,
   clock,
   deskHref,
+  corner = null,
+  notices = null,
   problem,
   rows,
+  height = '100dvh',
   children,
 }: {
   siteName: string
   queueWords: string
   clock: string
-  deskHref: string
+  /** Null on a wall screen: it has nothing to touch. */
+  deskHref: string | null
+  /** In place of the links, at a shared tablet. */
+  corner?: ReactNode
+  /** Under the line of words: a scan, marks that wait. */
+  notices?: ReactNode
   /** What is wrong with the connection, in words. */
   problem: string | null
   rows: number
+  /** Of the whole, CSS. */
+  height?: string
   children: ReactNode
 }) {
   return (
-    <div className="flex h-dvh min-h-[640px] flex-col">
+    <div
+      className={classNames('flex flex-col', deskHref === null ? 'overflow-hidden' : 'min-h-[640px]')}
+      style={{ height }}
+    >
       <div className="flex min-h-[56px] items-center gap-7 border-b border-line px-6 text-[22px]">
         <h1 className="text-[22px] font-[640]">Toasting room</h1>
         <p className="truncate text-soft">{siteName}</p>
         <p className="ml-auto truncate text-soft">{queueWords}</p>
-        <p>{clock}</p>
-        <Link href={deskHref} className="flex min-h-[56px] items-center text-[18px] text-water">
-          Desk
-        </Link>
+        <p className={deskHref === null ? 'text-[34px] font-[640]' : undefined}>{clock}</p>
+        {corner}
+        {deskHref === null || corner !== null ? null : (
+          <>
+            <Link href="/room/wall" className="flex min-h-[56px] items-center text-[18px] text-water">
+              Wall screen
+            </Link>
+            <Link href={deskHref} className="flex min-h-[56px] items-center text-[18px] text-water">
+              Desk
+            </Link>
+          </>
+        )}
       </div>
       {problem === null ? null : (
         <p
@@ -40,6 +61,7 @@ export function RoomScreen({
           {problem}
         </p>
       )}
+      {notices}
       <div
         className={classNames('grid min-h-0 flex-1', rows > 6 && 'overflow-y-auto')}
         style={{ gridTemplateRows: `repeat(${Math.max(rows, 3)}, minmax(${rows > 6 ? 116 : 0}px, 1fr))` }}

@@ -30,8 +30,15 @@ export type RoomStartFormProps = {
   hearthNumber: number
   pieces: readonly PieceDto[]
   isSearching: boolean
+  /** What a barcode scanner found out. */
+  scanWords?: string | null
   search: string
   onSearch: (search: string) => void
+  /** Those that were over a fire before, instead of the queue. */
+  isAgain: boolean
+  onAgain: (isAgain: boolean) => void
+  /** From the last firings like the chosen one's next. */
+  nextLine: string | null
   chosen: PieceDto | null
   onChoose: (piece: PieceDto) => void
   /** The chosen barrel's recipe; null while it is fetched. */
@@ -101,6 +108,9 @@ export function RoomStartForm(props: RoomStartFormProps) {
           </Link>
         </div>
         <RoomStartPieces {...props} />
+        {props.nextLine === null ? null : (
+          <p className={classNames(firesideType.text.className, 'mt-3 font-[560]')}>{props.nextLine}</p>
+        )}
         <RoomStartProbes
           probes={props.probes}
           lead={props.lead}

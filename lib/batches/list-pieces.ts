@@ -31,6 +31,7 @@ export async function listPieces(
   if (query.kind !== undefined) filters.add('p.kind = ?', query.kind)
   if (isQueue) filters.add(`f.state = 'queued'`)
   if (query.show === 'fired') filters.add(`f.state = 'finished'`)
+  if (query.show === 'again') filters.add(`f.state in ('finished', 'abandoned')`)
   if (query.q !== undefined && query.q !== '')
     filters.addLike(
       actor.kind === 'device' ? ['p.serial', 'r.name'] : ['p.serial', 'r.name', 'c.name', 'b.wood_lot'],

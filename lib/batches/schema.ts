@@ -75,6 +75,8 @@ export const pieceSchema = z.object({
       doseHighMinutes: z.number().nullable(),
     })
     .nullable(),
+  /** How often it was over a fire before, finished or abandoned. */
+  firedCount: z.number().int(),
   isWaiting: z.boolean(),
 })
 export type PieceDto = z.infer<typeof pieceSchema>
@@ -84,7 +86,7 @@ export const listPiecesQuery = z.strictObject({
   q: z.string().trim().max(80).optional(),
   batchId: z.uuid().optional(),
   kind: z.enum(pieceKinds).optional(),
-  /** waiting: not fired yet, in the queue's order; fired: with a finished firing. */
-  show: z.enum(['all', 'waiting', 'fired']).default('all'),
+  /** waiting: not fired yet, in the queue's order; fired: with a finished firing; again: whose last firing is over. */
+  show: z.enum(['all', 'waiting', 'fired', 'again']).default('all'),
 })
 export const piecePageSchema = pageSchema(pieceSchema)

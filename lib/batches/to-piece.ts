@@ -5,7 +5,9 @@ export const pieceSelect = `
   select p.id, p.kind, p.serial, p.position, p.queue_position, b.id as batch_id, b.number as batch_number, b.piece_count,
          b.wood_lot, b.size_and_shape, c.id as customer_id, c.name as customer_name, v.id as version_id,
          r.name as recipe_name, v.number as version_number, f.id as firing_id, f.state as firing_state, s.verdict,
-         s.points, s.dose_minutes, s.dose_low_minutes, s.dose_high_minutes
+         s.points, s.dose_minutes, s.dose_low_minutes, s.dose_high_minutes,
+         (select count(*)::int from firings where piece_id = p.id and preheat_at is not null
+             and state in ('finished', 'abandoned')) as fired_count
     from pieces p
     join batches b on b.id = p.batch_id
     join customers c on c.id = b.customer_id
@@ -38,6 +40,7 @@ export type PieceRow = {
   dose_minutes: number | null
   dose_low_minutes: number | null
   dose_high_minutes: number | null
+  fired_count: number
 }
 
 /** A piece as its customer sees it: how far it is, and nothing of the room's judgement before it is certified. */
@@ -49,6 +52,7 @@ export function toCustomerPiece(row: PieceRow): PieceDto {
     dose_minutes: null,
     dose_low_minutes: null,
     dose_high_minutes: null,
+    fired_count: 0,
   })
 }
 
@@ -80,6 +84,7 @@ export function toPiece(row: PieceRow): PieceDto {
             doseLowMinutes: row.dose_low_minutes,
             doseHighMinutes: row.dose_high_minutes,
           },
+    firedCount: row.fired_count,
     isWaiting: row.firing_id === null || row.firing_state === 'queued',
   }
 }

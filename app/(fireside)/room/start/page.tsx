@@ -1,7 +1,7 @@
 import type { Metadata } from 'next'
 import { redirect } from 'next/navigation'
 import { RoomStartConsole } from '@/components/live/room-start-console'
-import { requirePageActor } from '@/lib/auth/page-actor'
+import { requireRoomPerson } from '@/lib/auth/page-actor'
 import { isAllowed, requirePermission } from '@/lib/auth/permissions'
 import { listPieces } from '@/lib/batches/list-pieces'
 import type { SearchParams } from '@/lib/http/page-query'
@@ -13,9 +13,9 @@ import { currentSite } from '@/lib/site/current-site'
 export const metadata: Metadata = { title: 'Start preheat' }
 
 export default async function StartPage({ searchParams }: { searchParams: SearchParams }) {
-  const actor = await requirePageActor()
+  const actor = await requireRoomPerson()
   requirePermission(actor, 'firings:run trial')
-  const { hearth: asked } = await searchParams
+  const { hearth: asked, serial } = await searchParams
   const hearth = (await listHearths(actor)).items.find((one) => String(one.number) === asked && one.isActive)
   if (hearth === undefined) redirect('/room')
   if (hearth.live !== null) redirect(`/fireside/${hearth.live.firingId}`)
@@ -31,7 +31,9 @@ export default async function StartPage({ searchParams }: { searchParams: Search
       queue={queue.items}
       probes={probes.items}
       water={water.items[0] ?? null}
+      scannedSerial={typeof serial === 'string' ? serial : null}
       zone={site.timeZone}
+      unit={actor.temperatureUnit}
       isTrial={!isAllowed(actor, 'firings:run')}
     />
   )
