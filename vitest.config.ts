@@ -35,6 +35,7 @@ export default defineConfig({
       project('api', ['tests/api/**/*.test.ts'], database),
       project('live', ['tests/live/**/*.test.ts'], database),
       project('regressions', ['tests/regressions/**/*.test.{ts,tsx}'], database),
+      project('faults', ['tests/faults/**/*.test.ts'], { testTimeout: 600_000, hookTimeout: 300_000 }),
       project('journeys', ['tests/journeys/**/*.test.ts'], { testTimeout: 300_000, hookTimeout: 300_000 }),
     ],
   },

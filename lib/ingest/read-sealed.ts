@@ -7,7 +7,8 @@ import { decodeReadings, sealEncoding } from '@/lib/ingest/seal-codec'
 /** The newest seal of a firing: its revision and each probe's readings by probe id. */
 export type Sealed = { revision: number; sealedAtMs: number; probes: Map<string, ReadingColumns> }
 
-type SealRow = {
+/** One probe's part of a seal, as its row says it. */
+export type SealRow = {
   probe_id: string
   revision: number
   encoding: number
@@ -41,7 +42,8 @@ export async function readSealed(
   return { revision: first.revision, sealedAtMs: new Date(first.sealed_at).getTime(), probes }
 }
 
-function openSeal(firingId: string, row: SealRow): ReadingColumns {
+/** @throws Error when the bytes do not fit their checksum or their count, or the encoding is not known */
+export function openSeal(firingId: string, row: SealRow): ReadingColumns {
   const where = `seal ${row.revision} of firing ${firingId}, probe ${row.probe_id}`
   if (row.encoding !== sealEncoding) throw new Error(`${where}: encoding ${row.encoding} is not known here`)
   if (sealSha256(row.data) !== row.sha256) throw new Error(`${where}: its bytes do not fit its checksum`)

@@ -167,7 +167,7 @@ describe('sender', () => {
     for (let attempt = 0; attempt < 40; attempt += 1) {
       const low = backoffMs(attempt, () => 0)
       const high = backoffMs(attempt, () => 0.999_999)
-      expect(low).toBe(Math.min(4_000, 500 * 2 ** attempt) / 2)
+      expect(low).toBe(Math.min(2_000, 500 * 2 ** attempt) / 2)
       expect(high).toBeLessThanOrEqual(2 * low)
     }
     const { clock, run } = handClock()
@@ -181,7 +181,7 @@ describe('sender', () => {
     const sender = createSender({ spool, transports: [transport], clock, random: () => 1 })
     sender.wake()
     const waits = await run(() => tries === 9)
-    expect(waits.map(Math.round)).toEqual([500, 1_000, 2_000, 4_000, 4_000, 4_000, 4_000, 4_000])
+    expect(waits.map(Math.round)).toEqual([500, 1_000, 2_000, 2_000, 2_000, 2_000, 2_000, 2_000])
     await sender.stop()
   })
 
