@@ -28,7 +28,13 @@ export function canMoveAlarm(from: AlarmState, to: AlarmState): boolean {
 }
 
 /** What an alarm's own condition is at a moment, after its delays. */
-export type AlarmSight = { isActive: boolean; isSuppressed: boolean; atMs: number }
+export type AlarmSight = {
+  isActive: boolean
+  /** Active still, but well inside its limit again: only the off-delay holds it. */
+  isEnding: boolean
+  isSuppressed: boolean
+  atMs: number
+}
 
 /**
  * Where an alarm goes by itself; its own state when it stays. What hands do (seen, shelved, taken back) comes through
@@ -42,7 +48,7 @@ export function nextAlarmState(
   needsSeen: boolean,
   shelvedUntilMs: number | null,
 ): AlarmState {
-  const { isActive, isSuppressed } = sight
+  const { isActive, isEnding, isSuppressed } = sight
   switch (state) {
     case 'normal':
       if (!isActive) return state
@@ -59,10 +65,11 @@ export function nextAlarmState(
       return isActive ? 'unacknowledged' : state
     case 'shelved':
       if (shelvedUntilMs !== null && sight.atMs < shelvedUntilMs) return state
-      return isActive ? 'unacknowledged' : 'normal'
+      return isActive && !isEnding ? 'unacknowledged' : 'normal'
     case 'suppressed':
       if (!isActive) return 'normal'
-      return isSuppressed ? state : 'unacknowledged'
+      // What is over as its suppression ends does not come up any more.
+      return isSuppressed || isEnding ? state : 'unacknowledged'
   }
 }
 

@@ -151,7 +151,8 @@ export function createFiringAlarms(): FiringAlarms {
     const isOver = !isActive || machine.delay.isEnding
     const isSaid = machine.state !== 'normal' || isActive
     if (isSaid) machine.words = isOver ? condition.endingWords : condition.words
-    const sight = { isActive, isSuppressed: condition.suppressedBy !== null, atMs }
+    const isSuppressed = condition.suppressedBy !== null
+    const sight = { isActive, isEnding: machine.delay.isEnding, isSuppressed, atMs }
     const next = nextAlarmState(
       machine.state,
       sight,

@@ -8,12 +8,19 @@ export type GatewayNow = {
   clockOffsetS: number
 }
 
-type Known = { name: string; heardAtMs: number; clockOffsetMs: number }
+type Known = {
+  name: string
+  /** By this process; null while it has not heard it yet. */
+  heardAtMs: number | null
+  /** By another process, as the table has it. */
+  seenAtMs: number
+  clockOffsetMs: number
+}
 
 /** When each gateway was heard last, whatever it said. */
 export type GatewayWatch = {
   /** As the table has it: another process may have heard it. */
-  know: (id: string, name: string, heardAtMs: number | null, clockOffsetMs: number | null) => void
+  know: (id: string, name: string, seenAtMs: number | null, clockOffsetMs: number | null) => void
   /** A message of it came; its offset is null until the message is stored. */
   hear: (id: string, atMs: number, clockOffsetMs: number | null) => void
   /** This server did nothing until then, so nobody's silence counts. */
@@ -26,12 +33,14 @@ const comeBackMs = 15_000
 
 export function createGatewayWatch(startedAtMs: number): GatewayWatch {
   const known = new Map<string, Known>()
+  let awayUntilMs = startedAtMs
   return {
-    know: (id, name, heardAtMs, clockOffsetMs) => {
+    know: (id, name, seenAtMs, clockOffsetMs) => {
       const before = known.get(id)
       known.set(id, {
         name,
-        heardAtMs: Math.max(startedAtMs + comeBackMs, heardAtMs ?? 0, before?.heardAtMs ?? 0),
+        heardAtMs: before?.heardAtMs ?? null,
+        seenAtMs: seenAtMs ?? before?.seenAtMs ?? 0,
         clockOffsetMs: before?.clockOffsetMs ?? clockOffsetMs ?? 0,
       })
     },
@@ -40,19 +49,21 @@ export function createGatewayWatch(startedAtMs: number): GatewayWatch {
       known.set(id, {
         name: before?.name ?? 'the gateway',
         heardAtMs: Math.max(atMs, before?.heardAtMs ?? 0),
+        seenAtMs: before?.seenAtMs ?? 0,
         clockOffsetMs: clockOffsetMs ?? before?.clockOffsetMs ?? 0,
       })
     },
     wasAwayUntil: (atMs) => {
-      for (const one of known.values()) one.heardAtMs = Math.max(one.heardAtMs, atMs)
+      awayUntilMs = Math.max(awayUntilMs, atMs)
     },
     at: (id, atMs) => {
       const one = known.get(id)
       if (one === undefined) return null
+      const fromMs = Math.max(one.heardAtMs ?? startedAtMs + comeBackMs, one.seenAtMs, awayUntilMs)
       return {
         id,
         name: one.name,
-        silentS: Math.max(0, atMs - one.heardAtMs) / 1000,
+        silentS: Math.max(0, atMs - fromMs) / 1000,
         clockOffsetS: one.clockOffsetMs / 1000,
       }
     },

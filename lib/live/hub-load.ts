@@ -18,7 +18,7 @@ const keepEndedMs = 10 * 60_000
 
 /** Reads a firing's readings so far and holds it from then on. */
 async function loadFiring(hub: HubState, facts: FiringFacts, stamp: string): Promise<void> {
-  const one = newlyHeld(createLiveFiring(facts, hub.gateways), stamp)
+  const one = newlyHeld(createLiveFiring(facts, { gateways: hub.gateways }), stamp)
   hub.loading.set(facts.firingId, one)
   try {
     // Rows that are committed from here on come through `takeRows`; a row that comes both ways is one point.

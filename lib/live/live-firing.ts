@@ -61,8 +61,17 @@ const climbWindowS = 30
 /** Gaps widen the interval slowly; looking for them walks the whole curve. */
 const gapsEveryMs = 5_000
 
-/** @param gateways left out: nothing is known of them, and none is called lost */
-export function createLiveFiring(firstFacts: FiringFacts, gateways?: GatewayWatch): LiveFiring {
+export type LiveFiringOptions = {
+  /** Left out: nothing is known of gateways, and none is called lost. */
+  gateways?: GatewayWatch
+  /** False: the stave model, which costs most, is left out; for a replay of the alarms. */
+  hasStave?: boolean
+}
+
+export function createLiveFiring(
+  firstFacts: FiringFacts,
+  { gateways, hasStave = true }: LiveFiringOptions = {},
+): LiveFiring {
   const epoch = randomUUID()
   const stream = createPointStream()
   const checks = firstFacts.rules.signals
@@ -108,7 +117,7 @@ export function createLiveFiring(firstFacts: FiringFacts, gateways?: GatewayWatc
     settle('lead')
     settle('opposite')
     doseMin = dose.advance(curves.lead)
-    stave.advance(curves.lead, atMs)
+    if (hasStave) stave.advance(curves.lead, atMs)
     const signals = liveSignals(facts, curves, flags, atMs)
     const lead = signals.find((signal) => signal.role === 'lead')
     const opposite = signals.find((signal) => signal.role === 'opposite')

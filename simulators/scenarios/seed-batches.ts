@@ -1,3 +1,4 @@
+import { recordReplayedAlarms } from '@/lib/alarms/record-replayed-alarms'
 import type { PersonActor } from '@/lib/auth/actor'
 import { systemActor } from '@/lib/auth/actor'
 import { createBatch } from '@/lib/batches/create-batch'
@@ -142,4 +143,5 @@ async function seedFiring({
   setClock(() => endAt.getTime() + 60_000)
   await sealFiring(firing.id)
   if (firing.state === 'finished') await scoreFiring(seed, { id: firing.id })
+  await recordReplayedAlarms(seed, { firingId: firing.id, seenAfterS: Math.round(random.between(4, 25)) })
 }

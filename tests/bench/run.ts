@@ -3,6 +3,7 @@ import { closeOrm } from '@/lib/db/orm'
 import { closeIngestPool } from '@/lib/ingest/ingest-pool'
 import type { Figure } from '@/tests/bench/figure'
 import { printFigures } from '@/tests/bench/figure'
+import { benchAlarmRate } from '@/tests/bench/alarm-rate'
 import { benchFanOut } from '@/tests/bench/fan-out'
 import { benchIngest } from '@/tests/bench/ingest'
 import { benchLiveStep } from '@/tests/bench/live-step'
@@ -22,6 +23,7 @@ type Bench = (people: TestPeople) => Promise<Figure[]>
 const benches: Record<string, Bench> = {
   ingest: () => benchIngest(),
   'live step': benchLiveStep,
+  'alarm rate': () => benchAlarmRate(),
   'fan-out': benchFanOut,
   'open firing': benchOpenFiring,
   score: benchScore,
