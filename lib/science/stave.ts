@@ -4,7 +4,13 @@ import { doseFactorFromOffset } from './dose-ratio'
 import type { CurvePoint, DoseModel, SegmentDose } from './heat-dose'
 import { createSegmentDose } from './heat-dose'
 import { straightBetween } from './straight-line'
-import { conductivityWPerMK, densityKgPerM3, heatCapacityJPerKgK, isConductivityOutsideFormula } from './wood'
+import {
+  CONDUCTIVITY_MOISTURE_LIMIT_PERCENT,
+  conductivityWPerMK,
+  densityKgPerM3,
+  heatCapacityJPerKgK,
+  isConductivityOutsideFormula,
+} from './wood'
 
 /*
  * The stave model (SCIENCE §3): one-dimensional conduction through the thickness, depth x from the face.
