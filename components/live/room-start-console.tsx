@@ -14,6 +14,7 @@ import type { RecipeVersionDto } from '@/lib/recipes/schema'
 import { RoomStartForm } from './room-start-form'
 import type { StartChoice } from './room-start-form'
 import { startItems } from './room-start-list'
+import { RoomStartWater } from './room-start-water'
 import { useNextPieceLine } from './use-room-memory'
 import { useScannedPiece } from './use-scanned-piece'
 
@@ -21,7 +22,8 @@ export type RoomStartConsoleProps = {
   hearth: HearthDto
   queue: PieceDto[]
   probes: ProbeDto[]
-  water: WaterCheckDto | null
+  /** The newest check of each source, the one checked last first. */
+  waters: WaterCheckDto[]
   zone: string
   unit: TemperatureUnit
   /** Of the barrel that was scanned in the room; null for the next of the queue. */
@@ -32,9 +34,10 @@ export type RoomStartConsoleProps = {
 
 /** The start of a firing: fetches the recipe of the chosen barrel, sends, and goes to the fireside. */
 export function RoomStartConsole(props: RoomStartConsoleProps) {
-  const { hearth, queue, probes, water, zone, unit, isTrial } = props
+  const { hearth, queue, probes, waters, zone, unit, isTrial } = props
   const router = useRouter()
   const [search, setSearch] = useState('')
+  const [water, setWater] = useState<WaterCheckDto | null>(waters[0] ?? null)
   const [isAgain, setIsAgain] = useState(false)
   const [picked, setPicked] = useState<PieceDto | null>(null)
   const scanned = useScannedPiece(queue, props.scannedSerial ?? null, () => {
@@ -69,7 +72,14 @@ export function RoomStartConsole(props: RoomStartConsoleProps) {
     setIsBusy(true)
     try {
       const firing = await callApi<FiringDto>('POST', '/api/firings', {
-        body: { pieceId: chosen.id, hearthId: hearth.id, isTrial, isStartListDone: true, ...choice },
+        body: {
+          pieceId: chosen.id,
+          hearthId: hearth.id,
+          isTrial,
+          isStartListDone: true,
+          waterSource: water?.source,
+          ...choice,
+        },
       })
       router.push(`/fireside/${firing.id}`)
     } catch (error) {
@@ -95,6 +105,7 @@ export function RoomStartConsole(props: RoomStartConsoleProps) {
       content={version.data?.content ?? null}
       probes={probes}
       lead={lead}
+      waterChoice={<RoomStartWater waters={waters} chosen={water} onChoose={setWater} />}
       items={startItems(water, lead, zone)}
       isTrial={isTrial}
       isBusy={isBusy}

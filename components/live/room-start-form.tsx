@@ -2,7 +2,7 @@
 
 import Link from 'next/link'
 import { useState } from 'react'
-import type { FormEvent } from 'react'
+import type { FormEvent, ReactNode } from 'react'
 import { Button } from '@/components/ui/button'
 import { buttonClass } from '@/components/ui/button-style'
 import { classNames } from '@/components/ui/class-names'
@@ -45,6 +45,8 @@ export type RoomStartFormProps = {
   content: RecipeContent | null
   probes: readonly ProbeDto[]
   lead: ProbeDto | null
+  /** Where there is more than one source of water. */
+  waterChoice: ReactNode
   items: readonly StartItem[]
   isTrial: boolean
   isBusy: boolean
@@ -135,6 +137,7 @@ export function RoomStartForm(props: RoomStartFormProps) {
           <legend className={classNames(firesideType.label.className, 'mb-1 font-[640]')}>
             Before the fire
           </legend>
+          {props.waterChoice}
           {props.items.map((item) => (
             <StartTick
               key={item.id}

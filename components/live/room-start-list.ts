@@ -13,10 +13,19 @@ export function startItems(water: WaterCheckDto | null, lead: ProbeDto | null, z
 }
 
 function waterItem(water: WaterCheckDto | null, zone: string): StartItem {
-  const id = 'water'
-  if (water === null) return { id, words: 'Water was never checked.', more: '', isWrong: true }
+  if (water === null) return { id: 'water', words: 'Water was never checked.', more: '', isWrong: true }
+  // Another source is another line: what was ticked for one is not said of the other.
+  const id = `water ${water.id}`
   const due = formatInstant(water.dueAt, zone, 'day')
   const more = `${water.source}, checked ${formatInstant(water.checkedAt, zone, 'day')} by ${water.checkedBy}`
+  if (water.overLimit !== null) {
+    return {
+      id,
+      words: 'This water is not to be used.',
+      more: `${water.source}: ${water.overLimit}`,
+      isWrong: true,
+    }
+  }
   return water.isInDate
     ? { id, words: `Water checked, good until ${due}.`, more, isWrong: false }
     : { id, words: `Water check out of date since ${due}.`, more, isWrong: true }
@@ -29,8 +38,21 @@ function probeItem(lead: ProbeDto | null, zone: string): StartItem {
     return { id, words: `${lead.name} was never checked.`, more: 'The lead probe', isWrong: true }
   }
   const due = formatInstant(lead.checkDueAt, zone, 'day')
-  return lead.isCheckDue
-    ? { id, words: `Check of ${lead.name} out of date since ${due}.`, more: 'The lead probe', isWrong: true }
+  if (lead.isCheckDue) {
+    return {
+      id,
+      words: `Check of ${lead.name} out of date since ${due}.`,
+      more: 'The lead probe',
+      isWrong: true,
+    }
+  }
+  return lead.leadFaults.length > 0
+    ? {
+        id,
+        words: `${lead.name} was never checked hot.`,
+        more: 'The lead probe: a block where the dose is made is missing',
+        isWrong: true,
+      }
     : { id, words: `${lead.name} checked, good until ${due}.`, more: 'The lead probe', isWrong: false }
 }
 

@@ -145,6 +145,8 @@ export const operations = {
     summary: 'Probes with places and newest checks',
     tag,
     access: rolesWith('room:read'),
+    // A swap at the fireside chooses from them.
+    atDevice: 'by pin',
     query: listProbesQuery,
     response: probePageSchema,
   }),

@@ -215,16 +215,26 @@ describe('the start list', () => {
       'fire-watch',
       'not-alone',
       'gloves',
-      'water',
+      'water w',
       'probe',
     ])
-    expect(items.find((item) => item.id === 'water')?.words).toBe('Water checked, good until 8 February.')
+    expect(items.find((item) => item.id === 'water w')?.words).toBe('Water checked, good until 8 February.')
     expect(items.find((item) => item.id === 'probe')?.isWrong).toBe(true)
   })
 
   test('says that a check is out of date, and since when', () => {
     const [, , , , , old] = startItems({ ...water, isInDate: false }, null, 'Europe/Paris')
     expect(old).toMatchObject({ words: 'Water check out of date since 8 February.', isWrong: true })
+  })
+
+  test('says that water is above the site’s limits, though its check is in date', () => {
+    const overLimit = 'TCA 2.40 ng/L is above 1.50.'
+    const [, , , , , bad] = startItems({ ...water, overLimit }, null, 'Europe/Paris')
+    expect(bad).toMatchObject({
+      words: 'This water is not to be used.',
+      more: `Mains: ${overLimit}`,
+      isWrong: true,
+    })
   })
 })
 

@@ -7,7 +7,7 @@ import { listPieces } from '@/lib/batches/list-pieces'
 import type { SearchParams } from '@/lib/http/page-query'
 import { listHearths } from '@/lib/probes/list-hearths'
 import { listProbes } from '@/lib/probes/list-probes'
-import { listWaterChecks } from '@/lib/probes/list-water-checks'
+import { listWaterSources } from '@/lib/probes/list-water-sources'
 import { currentSite } from '@/lib/site/current-site'
 
 export const metadata: Metadata = { title: 'Start preheat' }
@@ -22,7 +22,7 @@ export default async function StartPage({ searchParams }: { searchParams: Search
   const [queue, probes, water, site] = await Promise.all([
     listPieces(actor, { show: 'waiting', limit: 50 }),
     listProbes(actor, { hearthId: hearth.id, limit: 50 }),
-    listWaterChecks(actor, { limit: 1 }),
+    listWaterSources(actor),
     currentSite(),
   ])
   return (
@@ -30,7 +30,7 @@ export default async function StartPage({ searchParams }: { searchParams: Search
       hearth={hearth}
       queue={queue.items}
       probes={probes.items}
-      water={water.items[0] ?? null}
+      waters={water.items}
       scannedSerial={typeof serial === 'string' ? serial : null}
       zone={site.timeZone}
       unit={actor.temperatureUnit}
