@@ -33,7 +33,10 @@ export function DoseFigure(props: DoseFigureProps) {
         </span>
       </p>
       <div className="mt-1 flex items-center justify-between gap-2">
-        <p className={classNames(firesideType.action.className, '-tracking-[0.02em] whitespace-nowrap')}>
+        <p
+          data-figure="dose"
+          className={classNames(firesideType.action.className, '-tracking-[0.02em] whitespace-nowrap')}
+        >
           {dose === null ? '–' : roundPercent(dose.minutes / dose.targetMinutes)}
         </p>
         <p className={classNames(firesideType.label.className, 'whitespace-nowrap text-soft')}>

@@ -23,7 +23,7 @@ export function FiresideHead({
         isTight ? 'h-[100px]' : 'h-[116px]',
       )}
     >
-      <span className={firesideType.numeral.className}>
+      <span data-figure="hearth number" className={firesideType.numeral.className}>
         <span className="sr-only">Hearth </span>
         {firing.hearthNumber ?? '–'}
       </span>

@@ -26,10 +26,13 @@ export function FiresideStage({
         {clock === null ? 'No time runs' : clock.words}
         {clock !== null && clock.seconds >= 6_000 ? ', minutes' : ''}
       </p>
-      <p role="timer" className={classNames(firesideType.numeral.className, 'mt-2')}>
+      <p role="timer" data-figure="stage time" className={classNames(firesideType.numeral.className, 'mt-2')}>
         {clock === null ? '–' : clockFigures(clock.seconds)}
       </p>
-      <p className={classNames(firesideType.action.className, 'mt-1 line-clamp-2 pb-1 -tracking-[0.01em]')}>
+      <p
+        data-figure="next action"
+        className={classNames(firesideType.action.className, 'mt-1 line-clamp-2 pb-1 -tracking-[0.01em]')}
+      >
         {nextWords}
       </p>
       {step === null ? null : (

@@ -38,13 +38,14 @@ export function TopLine(props: TopLineProps) {
     <div
       role="alert"
       className={classNames(
-        'flex min-h-[104px] items-center gap-4 px-6 pt-1 pb-[10px]',
+        'flex min-h-[104px] flex-wrap items-center gap-4 px-6 min-[1100px]:flex-nowrap pt-1 pb-[10px]',
         grounds[level],
         isSeen || level === 'grey' ? '' : 'alarm-unseen',
       )}
     >
-      <div className="min-w-0 flex-1">
+      <div className="min-w-[min(100%,420px)] flex-1">
         <p
+          data-figure={level === 'grey' ? 'reminder' : 'alarm'}
           className={classNames(
             level === 'grey' ? 'text-[40px] leading-none font-[640]' : firesideType.action.className,
             '-tracking-[0.015em]',

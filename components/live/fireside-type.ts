@@ -13,7 +13,7 @@ export const firesideType = {
   /** Wood temperature, stage time, hearth number: 20 arc-minutes at 3 m. */
   numeral: { px: 120, className: 'text-[120px] leading-[0.8] font-[640]' },
   /** Next action, dose, alarm, NO READING: 16 arc-minutes at 2 m. */
-  action: { px: 62, className: 'text-[62px] leading-[0.95] font-[640]' },
+  action: { px: 63, className: 'text-[63px] leading-[0.95] font-[640]' },
   /** Marks and the main action. */
   mark: { px: 28, className: 'text-[28px] leading-[1.1] font-[560]' },
   label: { px: 22, className: 'text-[22px] leading-[1.25]' },

@@ -42,6 +42,7 @@ export function WoodFigure({
       ) : (
         <div className="mt-4 flex items-end justify-between gap-2">
           <p
+            data-figure="wood temperature"
             className={classNames(
               firesideType.numeral.className,
               'shrink-0',
@@ -77,7 +78,7 @@ export function WoodFigure({
 export function NoReading({ note }: { note: string | null }) {
   return (
     <div className="mt-1 flex items-end justify-between gap-3">
-      <p className={classNames(firesideType.action.className, 'text-amber')}>
+      <p data-figure="no reading" className={classNames(firesideType.action.className, 'text-amber')}>
         NO
         <br />
         READING

@@ -25,7 +25,7 @@ export function RoomFreeRow({
     <div
       className={classNames(
         'grid min-h-0 items-center border-b border-line px-6',
-        size.isWall ? 'grid-cols-[150px_minmax(0,1fr)]' : 'grid-cols-[168px_minmax(0,1fr)_auto]',
+        size.isWall ? 'grid-cols-[150px_minmax(0,1fr)]' : 'min-[1100px]:grid-cols-[168px_minmax(0,1fr)_auto]',
       )}
     >
       <p className={roomNumeral(size).className}>

@@ -42,7 +42,7 @@ export function RoomRow(props: RoomRowProps) {
         />
       )}
       <div className="min-w-0 pr-3">
-        <p className={numeral}>
+        <p data-figure="room" className={numeral}>
           <span className="sr-only">Hearth </span>
           {hearthNumber}
         </p>
@@ -81,7 +81,7 @@ type CellProps = RoomRowProps & { numeral: string }
 function DoseCell({ firing, numeral }: CellProps) {
   return (
     <div>
-      <p className={classNames(numeral, 'whitespace-nowrap')}>
+      <p data-figure="room" className={classNames(numeral, 'whitespace-nowrap')}>
         {firing === null ? (
           '–'
         ) : (
@@ -99,7 +99,9 @@ function DoseCell({ firing, numeral }: CellProps) {
 function TimeCell({ firing, time, edge, size, unit, numeral }: CellProps) {
   return (
     <div className="min-w-0">
-      <p className={numeral}>{time === null || time.leftS === null ? '–' : clockFigures(time.leftS)}</p>
+      <p data-figure="room" className={numeral}>
+        {time === null || time.leftS === null ? '–' : clockFigures(time.leftS)}
+      </p>
       <p
         className={classNames(
           roomWords(size).className,
@@ -149,8 +151,10 @@ function WoodCell({ lead, firing, isFar, unit, numeral }: CellProps) {
   const tempC = 'tempC' in lead ? lead.tempC : null
   const isNow = lead.kind === 'live'
   return (
-    <div className={classNames((!isNow || isFar) && 'text-amber')}>
-      <p className={numeral}>{tempC === null ? '–' : formatNumber(toShownTemp(tempC, unit))}</p>
+    <div className={classNames((lead.kind === 'old' || lead.kind === 'cut' || isFar) && 'text-amber')}>
+      <p data-figure="room" className={numeral}>
+        {tempC === null ? '–' : formatNumber(toShownTemp(tempC, unit))}
+      </p>
       <p className={classNames(roomType.label.className, 'mt-1', isNow && !isFar && 'text-soft')}>
         {noteOf(lead, firing, unit)}
       </p>

@@ -1,5 +1,5 @@
 import Link from 'next/link'
-import type { ReactNode } from 'react'
+import type { CSSProperties, ReactNode } from 'react'
 import { classNames } from '@/components/ui/class-names'
 
 /** The room on one screen: a line of words above, then a row a hearth, up to six in 800 px. */
@@ -12,7 +12,7 @@ export function RoomScreen({
   notices = null,
   problem,
   rows,
-  height = '100dvh',
+  height,
   children,
 }: {
   siteName: string
@@ -27,16 +27,19 @@ export function RoomScreen({
   /** What is wrong with the connection, in words. */
   problem: string | null
   rows: number
-  /** Of the whole, CSS. */
-  height?: string
+  /** Of the whole, CSS; left out: the screen's, or more where there is less room (the same panel at 200 %). */
+  height?: string | undefined
   children: ReactNode
 }) {
   return (
     <div
-      className={classNames('flex flex-col', deskHref === null ? 'overflow-hidden' : 'min-h-[640px]')}
+      className={classNames(
+        'flex flex-col',
+        height === undefined ? 'min-h-dvh min-[1100px]:h-dvh min-[1100px]:min-h-[640px]' : 'overflow-hidden',
+      )}
       style={{ height }}
     >
-      <div className="flex min-h-[56px] items-center gap-7 border-b border-line px-6 text-[22px]">
+      <div className="flex min-h-[56px] flex-wrap items-center gap-x-5 border-b border-line px-6 text-[22px] min-[1100px]:flex-nowrap">
         <h1 className="text-[22px] font-[640]">Toasting room</h1>
         <p className="truncate text-soft">{siteName}</p>
         <p className="ml-auto truncate text-soft">{queueWords}</p>
@@ -44,10 +47,10 @@ export function RoomScreen({
         {corner}
         {deskHref === null || corner !== null ? null : (
           <>
-            <Link href="/room/wall" className="flex min-h-[56px] items-center text-[18px] text-water">
-              Wall screen
+            <Link href="/room/wall" className={headLink}>
+              Wall
             </Link>
-            <Link href={deskHref} className="flex min-h-[56px] items-center text-[18px] text-water">
+            <Link href={deskHref} className={headLink}>
               Desk
             </Link>
           </>
@@ -63,11 +66,22 @@ export function RoomScreen({
       )}
       {notices}
       <div
-        className={classNames('grid min-h-0 flex-1', rows > 6 && 'overflow-y-auto')}
-        style={{ gridTemplateRows: `repeat(${Math.max(rows, 3)}, minmax(${rows > 6 ? 116 : 0}px, 1fr))` }}
+        className={classNames(
+          'grid min-h-0 flex-1 min-[1100px]:[grid-template-rows:var(--room-rows)]',
+          rows > 6 && 'overflow-y-auto',
+        )}
+        style={roomRows(rows)}
       >
         {children}
       </div>
     </div>
   )
+}
+
+const headLink =
+  'flex min-h-[85px] min-w-[85px] items-center justify-center text-[20px] text-water active:bg-wash'
+
+/** Three rows' room at least; more than six scroll. A custom property, so that a narrow screen need not take it. */
+function roomRows(rows: number): CSSProperties & Record<'--room-rows', string> {
+  return { '--room-rows': `repeat(${Math.max(rows, 3)}, minmax(${rows > 6 ? 116 : 0}px, 1fr))` }
 }

@@ -98,7 +98,7 @@ export function RoomStartForm(props: RoomStartFormProps) {
       method="post"
       onSubmit={start}
       noValidate
-      className="grid min-h-dvh grid-cols-[minmax(0,1fr)_600px]"
+      className="grid min-h-dvh min-[1100px]:grid-cols-[minmax(0,1fr)_600px]"
     >
       <div className="flex min-w-0 flex-col border-r border-line px-6 py-4">
         <div className="flex items-center justify-between gap-4">
