@@ -26,6 +26,7 @@ import { FiresideStepSheets } from './fireside-step-sheets'
 import type { MoreStep } from './fireside-more'
 import { isCut } from './fireside-reading'
 import { FiresideEnded } from './fireside-ended'
+import type { SiteWords } from './fireside-finish'
 import { FiresideGone, NobodyMarks } from './fireside-nobody'
 import { waitingForOthers } from './fireside-mark-queue'
 import { FiresideSwap } from './fireside-swap'
@@ -47,6 +48,7 @@ import { useForecastRecord, useNextPieceLine } from './use-room-memory'
 import { useSound } from './use-sound'
 import { useTouched } from './use-touched'
 
+const noSiteWords: SiteWords = { colour: [], smell: [] }
 const SCAN_SHOWN_MS = 10_000
 
 export type FiresideConsoleProps = {
@@ -60,6 +62,8 @@ export type FiresideConsoleProps = {
   serverNowMs: number
   /** Where to go once the firing has ended: its page at the desk, or the room where a PIN opens no desk. */
   endedHref: string
+  /** Offered at the finish; none while the server is not reached. */
+  siteWords?: SiteWords
   /** What this browser kept: shown, dated, until the server answers. */
   kept?: KeptPicture | null
 } & AtTheFire
@@ -129,6 +133,8 @@ type RunningProps = FiresideConsoleProps & {
 
 function RunningFireside(props: RunningProps) {
   const { firing, facts, live, nowMs, sender, queue, canRun, unit, zone, person, device } = props
+  const hands = useAlarmHands()
+  const [sheet, setSheet] = useState<FiresideSheetName | null>(null)
   const router = useRouter()
   const canChange = device !== null && device.kind !== 'wall screen'
   // Whoever is signed in is the server's to say; the live page goes on meanwhile.
@@ -138,8 +144,6 @@ function RunningFireside(props: RunningProps) {
     else router.refresh()
   }
   const signOut = useSignOut(person, changed)
-  const hands = useAlarmHands()
-  const [sheet, setSheet] = useState<FiresideSheetName | null>(null)
   const [areKeysOn, setKeysOn] = useKeysOn()
   const [scan, setScan] = useState<{ words: string; atMs: number } | null>(null)
   const touch = useTouched(sender, props.readNowMs)
@@ -307,7 +311,9 @@ function RunningFireside(props: RunningProps) {
       <FiresideSheets
         sheet={sheet}
         onSheet={setSheet}
-        firingId={firing.id}
+        firing={firing}
+        zone={zone}
+        siteWords={props.siteWords ?? noSiteWords}
         endedHref={props.endedHref}
         canRun={canRun}
         unit={unit}

@@ -1,12 +1,11 @@
 'use client'
 
 import { useState } from 'react'
-import type { FormEvent } from 'react'
+import type { FormEvent, ReactNode } from 'react'
 import { Button } from '@/components/ui/button'
 import { FormError } from '@/components/ui/form-error'
 import type { Problem } from '@/components/ui/problem'
 import { TemperatureField } from '@/components/ui/temperature-field'
-import { TextArea } from '@/components/ui/text-area'
 import { TextField } from '@/components/ui/text-field'
 import type { TemperatureUnit } from '@/lib/format'
 import { cautions } from './fireside-cautions'
@@ -19,24 +18,30 @@ export type FinishWords = {
   remarks: string
 }
 
-/** Suggestions only; any other words serve. */
-export const smellWords = ['bread', 'almond', 'vanilla', 'coffee', 'smoke', 'burnt'] as const
-export const colourWords = ['straw', 'gold', 'hazel', 'chestnut', 'dark brown', 'black at the edge'] as const
+/** The site's own words, offered at the finish; any others serve too. */
+export type SiteWords = { colour: readonly string[]; smell: readonly string[] }
 
 /** What a person saw and smelt at the end; kept beside the score. What was typed stays until it is taken. */
 export function FiresideFinish({
   unit,
+  siteWords,
   isBusy,
   problem,
   waitingCount,
+  losses,
+  photos,
   onFinish,
   onClose,
 }: {
   unit: TemperatureUnit
+  siteWords: SiteWords
   isBusy: boolean
   problem: Problem | null
   /** Marks that are not yet sent: the firing is finished after them. */
   waitingCount: number
+  /** Taken and noted here, and kept at once. */
+  losses: ReactNode
+  photos: ReactNode
   onFinish: (words: FinishWords) => void
   onClose: () => void
 }) {
@@ -50,28 +55,42 @@ export function FiresideFinish({
   }
   return (
     <FiresideSheet title="Finish this firing" isWide onClose={onClose}>
-      <form method="post" onSubmit={finish} noValidate>
-        <FormError
-          problem={problem}
-          labels={{
-            colour: 'Colour',
-            smell: 'Smell',
-            outsideTempC: 'Outside temperature',
-            remarks: 'Remarks',
-          }}
-        />
-        {waitingCount === 0 ? null : (
-          <p className="mb-3 text-amber">
-            {waitingCount === 1 ? 'One mark waits' : `${waitingCount} marks wait`} to be sent; the firing is
-            finished once they are.
-          </p>
-        )}
-        <p className="mb-4 text-soft">{cautions.rest}</p>
+      <FormError
+        problem={problem}
+        labels={{
+          colour: 'Colour',
+          smell: 'Smell',
+          outsideTempC: 'Outside temperature',
+          remarks: 'Remarks',
+        }}
+      />
+      {waitingCount === 0 ? null : (
+        <p className="mb-3 text-amber">
+          {waitingCount === 1 ? 'One mark waits' : `${waitingCount} marks wait`} to be sent; the firing is
+          finished once they are.
+        </p>
+      )}
+      <p className="mb-3 text-soft">{cautions.rest}</p>
+      <form id="finish-form" method="post" onSubmit={finish} noValidate>
         <div className="grid grid-cols-2 gap-6">
-          <Suggested name="colour" label="Colour" words={colourWords} value={colour} onValue={setColour} />
-          <Suggested name="smell" label="Smell" words={smellWords} value={smell} onValue={setSmell} />
+          <Suggested
+            name="colour"
+            label="Colour"
+            words={siteWords.colour}
+            value={colour}
+            onValue={setColour}
+            error={problem?.fields?.['colour']}
+          />
+          <Suggested
+            name="smell"
+            label="Smell"
+            words={siteWords.smell}
+            value={smell}
+            onValue={setSmell}
+            error={problem?.fields?.['smell']}
+          />
         </div>
-        <div className="mt-4 grid grid-cols-[300px_1fr] gap-6">
+        <div className="mt-3 grid grid-cols-[300px_1fr] gap-6">
           <TemperatureField
             name="outsideTempC"
             label="Outside, by a hand meter"
@@ -83,26 +102,30 @@ export function FiresideFinish({
             maxC={300}
             error={problem?.fields?.['outsideTempC']}
           />
-          <TextArea
+          <TextField
             name="remarks"
             label="Remarks"
             isOptional
-            rows={2}
             maxLength={4000}
+            autoComplete="off"
             value={remarks}
             onChange={(event) => setRemarks(event.target.value)}
             error={problem?.fields?.['remarks']}
           />
         </div>
-        <div className="mt-5 flex justify-end gap-3">
-          <Button onClick={onClose} disabled={isBusy}>
-            Not yet
-          </Button>
-          <Button kind="due" type="submit" isBusy={isBusy}>
-            {isBusy ? 'Finishing' : 'Finish'}
-          </Button>
-        </div>
       </form>
+      <div className="mt-4 grid grid-cols-2 gap-6">
+        {photos}
+        {losses}
+      </div>
+      <div className="mt-4 flex justify-end gap-3">
+        <Button onClick={onClose} disabled={isBusy}>
+          Not yet
+        </Button>
+        <Button kind="due" type="submit" form="finish-form" isBusy={isBusy}>
+          {isBusy ? 'Finishing' : 'Finish'}
+        </Button>
+      </div>
     </FiresideSheet>
   )
 }
@@ -113,12 +136,14 @@ function Suggested({
   words,
   value,
   onValue,
+  error,
 }: {
   name: string
   label: string
   words: readonly string[]
   value: string
   onValue: (value: string) => void
+  error: string | undefined
 }) {
   return (
     <div>
@@ -130,8 +155,9 @@ function Suggested({
         autoComplete="off"
         value={value}
         onChange={(event) => onValue(event.target.value)}
+        error={error}
       />
-      <div className="mt-2 flex flex-wrap gap-2">
+      <div className="mt-2 flex max-h-[178px] flex-wrap gap-2 overflow-y-auto">
         {words.map((word) => (
           <button
             key={word}

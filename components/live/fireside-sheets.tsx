@@ -4,10 +4,11 @@ import { useRouter } from 'next/navigation'
 import { useState } from 'react'
 import type { Problem } from '@/components/ui/problem'
 import { useRequest } from '@/components/ui/use-request'
+import type { FiringDto } from '@/lib/firings/schema'
 import type { TemperatureUnit } from '@/lib/format'
 import { ApiProblem, callApi } from '@/lib/http/api-client'
-import { FiresideFinish } from './fireside-finish'
-import type { FinishWords } from './fireside-finish'
+import { FinishSheet, LossSheet, PhotoSheet } from './fireside-beside'
+import type { FinishWords, SiteWords } from './fireside-finish'
 import { nextToSend } from './fireside-mark-queue'
 import type { MarkSender } from './fireside-mark-sender'
 import { FiresideAbandon, FiresideMore } from './fireside-more'
@@ -15,13 +16,26 @@ import type { MoreProps, MoreStep } from './fireside-more'
 import { FiresideNote } from './fireside-note'
 
 export type FiresideSheetName =
-  'who' | 'alarms' | 'more' | 'note' | 'finish' | 'abandon' | 'move' | 'swap' | 'why' | 'why, then finish'
+  | 'who'
+  | 'alarms'
+  | 'more'
+  | 'note'
+  | 'finish'
+  | 'loss'
+  | 'photos'
+  | 'abandon'
+  | 'move'
+  | 'swap'
+  | 'why'
+  | 'why, then finish'
 
 /** The sheets over the fireside; the finish and the abandoning go to the server once every mark is there. */
 export function FiresideSheets({
   sheet,
   onSheet,
-  firingId,
+  firing,
+  zone,
+  siteWords,
   endedHref,
   canRun,
   unit,
@@ -37,7 +51,9 @@ export function FiresideSheets({
 }: {
   sheet: FiresideSheetName | null
   onSheet: (sheet: FiresideSheetName | null) => void
-  firingId: string
+  firing: FiringDto
+  zone: string
+  siteWords: SiteWords
   /** Where to go once the firing has ended. */
   endedHref: string
   canRun: boolean
@@ -61,13 +77,17 @@ export function FiresideSheets({
   const end = async (verb: 'finish' | 'abandon', body: FinishWords | { reason: string }) => {
     const isDone = await send(async () => {
       await sendWaiting(sender)
-      await callApi('POST', `/api/firings/{id}/${verb}`, { params: { id: firingId }, body })
+      await callApi('POST', `/api/firings/{id}/${verb}`, { params: { id: firing.id }, body })
     })
     if (!isDone) return
     setIsLeaving(true)
     onChanged()
     router.push(endedHref)
   }
+  const besideSteps: MoreStep[] = [
+    { label: 'Note a loss', onPress: () => onSheet('loss') },
+    { label: 'Photos', onPress: () => onSheet('photos') },
+  ]
   const shown: { isBusy: boolean; problem: Problem | null } = { isBusy: isBusy || isLeaving, problem }
 
   if (sheet === 'more') {
@@ -81,7 +101,7 @@ export function FiresideSheets({
           onTurn()
           close()
         }}
-        steps={moreSteps}
+        steps={canRun ? [...moreSteps, ...besideSteps] : moreSteps}
         {...sound}
         onAlarms={() => onSheet('alarms')}
         onAbandon={() => onSheet('abandon')}
@@ -105,11 +125,16 @@ export function FiresideSheets({
       <FiresideAbandon {...shown} onAbandon={(reason) => void end('abandon', { reason })} onClose={close} />
     )
   }
+  if (sheet === 'loss') return <LossSheet firing={firing} onClose={close} />
+  if (sheet === 'photos') return <PhotoSheet firing={firing} zone={zone} onClose={close} />
   if (sheet !== 'finish') return null
   return (
-    <FiresideFinish
+    <FinishSheet
       {...shown}
+      firing={firing}
+      zone={zone}
       unit={unit}
+      siteWords={siteWords}
       waitingCount={waitingCount}
       onFinish={(words) => void end('finish', words)}
       onClose={close}

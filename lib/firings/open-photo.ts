@@ -3,7 +3,7 @@ import { requirePermission } from '@/lib/auth/permissions'
 import { forkEm, queryRows } from '@/lib/db/orm'
 import { openFile } from '@/lib/files/file-store'
 import { requireReadableFiring } from '@/lib/firings/may-read-firing'
-import type { PhotoSize } from '@/lib/firings/photo-schema'
+import type { PhotoSize } from '@/lib/firings/photo-kinds'
 import { readFiring } from '@/lib/firings/read-firing'
 import { noPhoto } from '@/lib/firings/read-photo'
 

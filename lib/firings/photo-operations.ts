@@ -1,12 +1,11 @@
 import * as z from 'zod'
 import { rolesWith } from '@/lib/auth/permissions'
+import { photoBytesAtMost, photoSizes } from '@/lib/firings/photo-kinds'
 import {
   addPhotoQuery,
   describePhotoSchema,
-  photoBytesAtMost,
   photoListSchema,
   photoSchema,
-  photoSizes,
   removePhotoSchema,
 } from '@/lib/firings/photo-schema'
 import { defineOperation } from '@/lib/http/operation'

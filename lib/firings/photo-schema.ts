@@ -1,13 +1,5 @@
 import * as z from 'zod'
-
-export const photoKinds = ['face', 'blister', 'other'] as const
-export type PhotoKind = (typeof photoKinds)[number]
-export const photoSizes = ['large', 'thumbnail'] as const
-export type PhotoSize = (typeof photoSizes)[number]
-
-/** The largest picture that is taken, and how many a firing keeps (held by the database too). */
-export const photoBytesAtMost = 15 * 1024 * 1024
-export const photosAtMost = 12
+import { photoKinds } from '@/lib/firings/photo-kinds'
 
 const kind = z.enum(photoKinds, 'Choose face, blister or other.')
 const caption = z.string().trim().max(200, 'At most 200 letters.').default('')

@@ -1,4 +1,5 @@
-import type { PhotoDto, PhotoKind } from '@/lib/firings/photo-schema'
+import type { PhotoKind } from '@/lib/firings/photo-kinds'
+import type { PhotoDto } from '@/lib/firings/photo-schema'
 
 export type PhotoRow = {
   id: string

@@ -1,5 +1,5 @@
 import { AppError } from '@/lib/errors'
-import { photoBytesAtMost } from '@/lib/firings/photo-schema'
+import { photoBytesAtMost } from '@/lib/firings/photo-kinds'
 import { readBodyBytes } from '@/lib/http/read-body-bytes'
 
 /** The picture that a request carries. @throws AppError 'too large' naming `photo` */

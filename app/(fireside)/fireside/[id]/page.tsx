@@ -24,6 +24,7 @@ export default async function FiresidePage({ params }: { params: Promise<{ id: s
       key={firing.id}
       firing={firing}
       rules={site.rules}
+      siteWords={site.room.words}
       zone={site.timeZone}
       unit={actor.temperatureUnit}
       canRun={isAllowed(actor, firing.isTrial ? 'firings:run trial' : 'firings:run')}
