@@ -15,6 +15,7 @@ import type { Ledger } from '@/tests/faults/ledger'
 import { createLedger } from '@/tests/faults/ledger'
 import type { Line } from '@/tests/faults/line'
 import { openLine } from '@/tests/faults/line'
+import { buildPrograms } from '@/tests/faults/programs'
 import type { ProgramRig } from '@/tests/faults/program-rig'
 import { startProgramRig } from '@/tests/faults/program-rig'
 import type { SpoolDisk } from '@/tests/faults/spool-disk'
@@ -74,7 +75,8 @@ export async function makeRig(cluster: Cluster, seed: number): Promise<Rig> {
   const database = await createTestDatabase()
   const people = await createPeople(database)
   const port = await freePort()
-  const server = serverRig(database, port, folder)
+  const programs = await buildPrograms()
+  const server = serverRig(programs.server, database, port, folder)
   const lines = { gateways: await openLine(port), viewers: await openLine(port) }
   const ledger = createLedger()
   const gateways: GatewayRig[] = []
@@ -84,6 +86,7 @@ export async function makeRig(cluster: Cluster, seed: number): Promise<Rig> {
     const disk = makeSpoolDisk(place)
     const logPath = join(folder, `gateway-${i}.log`)
     const { gateway, gatewayId } = await makeGateway({
+      file: programs.gateway,
       disk,
       isSpared: i === 0,
       tokenFile: join(folder, `gateway-${i}.token`),
@@ -93,7 +96,7 @@ export async function makeRig(cluster: Cluster, seed: number): Promise<Rig> {
     const reader = followGatewayLog(logPath)
     readers.push({ gatewayId, read: () => ledger.take(gatewayId, reader.read()), close: reader.close })
   }
-  const program = await startProgramRig(join(folder, 'program'), lines.gateways.url)
+  const program = await startProgramRig(programs.program, join(folder, 'program'), lines.gateways.url)
   return {
     cluster,
     database,
@@ -114,6 +117,7 @@ export async function makeRig(cluster: Cluster, seed: number): Promise<Rig> {
       for (const line of Object.values(lines)) await line.close()
       for (const reader of readers) reader.close()
       for (const { disk } of gateways) disk.remove()
+      programs.remove()
       await closeIngestPool()
       await closeOrm()
       rmSync(folder, { recursive: true, force: true })
@@ -121,7 +125,7 @@ export async function makeRig(cluster: Cluster, seed: number): Promise<Rig> {
   }
 }
 
-function serverRig(database: TestDatabase, port: number, folder: string): ServerRig {
+function serverRig(file: string, database: TestDatabase, port: number, folder: string): ServerRig {
   const env = {
     DATABASE_URL: database.databaseUrl,
     SESSION_SECRET: process.env['SESSION_SECRET'] ?? '',
@@ -138,7 +142,7 @@ function serverRig(database: TestDatabase, port: number, folder: string): Server
   }
   return {
     start: () => {
-      child = startChild('tests/faults/server.ts', [], env)
+      child = startChild(file, [], env)
     },
     kill: async () => {
       await child?.kill()
@@ -148,13 +152,14 @@ function serverRig(database: TestDatabase, port: number, folder: string): Server
 }
 
 type GatewayOptions = {
+  file: string
   disk: SpoolDisk
   isSpared: boolean
   tokenFile: string
   task: Pick<GatewayTask, 'serverUrl' | 'logPath' | 'clockAheadMs' | 'seed'>
 }
 
-async function makeGateway({ disk, isSpared, tokenFile, task }: GatewayOptions) {
+async function makeGateway({ file, disk, isSpared, tokenFile, task }: GatewayOptions) {
   const identity = await createTestGateway()
   const probes: TestProbe[] = []
   for (let channel = 1; channel <= probesEach; channel += 1)
@@ -181,7 +186,7 @@ async function makeGateway({ disk, isSpared, tokenFile, task }: GatewayOptions) 
         clockAheadMs,
         seed: task.seed + 1_000 * starts,
       }
-      child = startChild('tests/faults/gateway.ts', [], { [taskVariable]: JSON.stringify(whole) })
+      child = startChild(file, [], { [taskVariable]: JSON.stringify(whole) })
     },
     kill: async () => {
       await child?.kill()
