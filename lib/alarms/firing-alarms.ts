@@ -75,6 +75,8 @@ type Machine = {
   kind: AlarmKind
   subject: string
   delay: AlarmDelay
+  delays: AlarmDelays
+  view: AlarmView
   state: AlarmState
   occurrenceId: string
   sinceMs: number
@@ -108,6 +110,8 @@ export function createFiringAlarms(): FiringAlarms {
     const machine: Machine = {
       kind: condition.kind,
       subject: condition.subject,
+      delays: condition.delays,
+      view: condition.view,
       delay: createAlarmDelay(
         condition.delays,
         standing !== undefined && isOn(standing.state) ? standing.sinceMs : null,
@@ -147,6 +151,7 @@ export function createFiringAlarms(): FiringAlarms {
   const seeOne = (condition: AlarmCondition, atMs: number) => {
     const machine = machineOf(condition)
     if (machine === null) return
+    machine.view = condition.view
     const isActive = machine.delay.see(condition.view, atMs) !== null
     const isOver = !isActive || machine.delay.isEnding
     const isSaid = machine.state !== 'normal' || isActive
@@ -189,6 +194,10 @@ export function createFiringAlarms(): FiringAlarms {
         const standing = stored.get(key)
         machine.state = standing?.state ?? 'normal'
         if (standing === undefined) continue
+        // On by the table, and nothing seen here speaks against it: it holds until it is seen to be over.
+        if (isOn(standing.state) && machine.delay.sinceMs === null && machine.view !== 'inside') {
+          machine.delay = createAlarmDelay(machine.delays, standing.sinceMs)
+        }
         machine.occurrenceId = standing.occurrenceId
         machine.sinceMs = standing.sinceMs
         machine.shelvedUntilMs = standing.shelvedUntilMs
