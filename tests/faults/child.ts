@@ -6,7 +6,7 @@ const root = fileURLToPath(new URL('../../', import.meta.url))
 const lastLetters = 8_000
 const alive = new Set<ChildProcess>()
 
-/** A program that `buildPrograms` has built, as a child process that the suite may kill. */
+/** A program of the clone as a child process that the suite may kill. */
 export type Child = {
   readonly pid: number
   /** kill -9; settles when the process is gone. */
@@ -18,7 +18,7 @@ export type Child = {
 }
 
 export function startChild(file: string, args: readonly string[], env: Record<string, string>): Child {
-  const child = spawn(process.execPath, [file, ...args], {
+  const child = spawn(process.execPath, ['--import', 'tsx', file, ...args], {
     cwd: root,
     env: { PATH: process.env['PATH'], NODE_ENV: 'production', ...env },
     stdio: ['ignore', 'pipe', 'pipe', 'ipc'],

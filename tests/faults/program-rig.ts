@@ -36,7 +36,7 @@ const channelCount = 3
  * The module says another value at each question: a count in hundredths of a degree. So each reading that is stored
  * names the answer that it came from.
  */
-export async function startProgramRig(file: string, folder: string, serverUrl: string): Promise<ProgramRig> {
+export async function startProgramRig(folder: string, serverUrl: string): Promise<ProgramRig> {
   mkdirSync(folder, { recursive: true })
   const identity = await createTestGateway()
   const probes: TestProbe[] = []
@@ -80,7 +80,7 @@ export async function startProgramRig(file: string, folder: string, serverUrl: s
   return {
     identity,
     start: () => {
-      child = startChild(file, [configPath], {})
+      child = startChild('tests/faults/program.ts', [configPath], {})
     },
     kill,
     child: () => {

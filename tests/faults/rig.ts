@@ -15,7 +15,6 @@ import type { Ledger } from '@/tests/faults/ledger'
 import { createLedger } from '@/tests/faults/ledger'
 import type { Line } from '@/tests/faults/line'
 import { openLine } from '@/tests/faults/line'
-import { buildPrograms } from '@/tests/faults/programs'
 import type { ProgramRig } from '@/tests/faults/program-rig'
 import { startProgramRig } from '@/tests/faults/program-rig'
 import type { SpoolDisk } from '@/tests/faults/spool-disk'
@@ -75,8 +74,7 @@ export async function makeRig(cluster: Cluster, seed: number): Promise<Rig> {
   const database = await createTestDatabase()
   const people = await createPeople(database)
   const port = await freePort()
-  const programs = await buildPrograms()
-  const server = serverRig(programs.server, database, port, folder)
+  const server = serverRig(database, port, folder)
   const lines = { gateways: await openLine(port), viewers: await openLine(port) }
   const ledger = createLedger()
   const gateways: GatewayRig[] = []
@@ -86,7 +84,6 @@ export async function makeRig(cluster: Cluster, seed: number): Promise<Rig> {
     const disk = makeSpoolDisk(place)
     const logPath = join(folder, `gateway-${i}.log`)
     const { gateway, gatewayId } = await makeGateway({
-      file: programs.gateway,
       disk,
       isSpared: i === 0,
       tokenFile: join(folder, `gateway-${i}.token`),
@@ -96,7 +93,7 @@ export async function makeRig(cluster: Cluster, seed: number): Promise<Rig> {
     const reader = followGatewayLog(logPath)
     readers.push({ gatewayId, read: () => ledger.take(gatewayId, reader.read()), close: reader.close })
   }
-  const program = await startProgramRig(programs.program, join(folder, 'program'), lines.gateways.url)
+  const program = await startProgramRig(join(folder, 'program'), lines.gateways.url)
   return {
     cluster,
     database,
@@ -117,7 +114,6 @@ export async function makeRig(cluster: Cluster, seed: number): Promise<Rig> {
       for (const line of Object.values(lines)) await line.close()
       for (const reader of readers) reader.close()
       for (const { disk } of gateways) disk.remove()
-      programs.remove()
       await closeIngestPool()
       await closeOrm()
       rmSync(folder, { recursive: true, force: true })
@@ -125,7 +121,7 @@ export async function makeRig(cluster: Cluster, seed: number): Promise<Rig> {
   }
 }
 
-function serverRig(file: string, database: TestDatabase, port: number, folder: string): ServerRig {
+function serverRig(database: TestDatabase, port: number, folder: string): ServerRig {
   const env = {
     DATABASE_URL: database.databaseUrl,
     SESSION_SECRET: process.env['SESSION_SECRET'] ?? '',
@@ -142,7 +138,7 @@ function serverRig(file: string, database: TestDatabase, port: number, folder: s
   }
   return {
     start: () => {
-      child = startChild(file, [], env)
+      child = startChild('tests/faults/server.ts', [], env)
     },
     kill: async () => {
       await child?.kill()
@@ -152,14 +148,13 @@ function serverRig(file: string, database: TestDatabase, port: number, folder: s
 }
 
 type GatewayOptions = {
-  file: string
   disk: SpoolDisk
   isSpared: boolean
   tokenFile: string
   task: Pick<GatewayTask, 'serverUrl' | 'logPath' | 'clockAheadMs' | 'seed'>
 }
 
-async function makeGateway({ file, disk, isSpared, tokenFile, task }: GatewayOptions) {
+async function makeGateway({ disk, isSpared, tokenFile, task }: GatewayOptions) {
   const identity = await createTestGateway()
   const probes: TestProbe[] = []
   for (let channel = 1; channel <= probesEach; channel += 1)
@@ -186,7 +181,7 @@ async function makeGateway({ file, disk, isSpared, tokenFile, task }: GatewayOpt
         clockAheadMs,
         seed: task.seed + 1_000 * starts,
       }
-      child = startChild(file, [], { [taskVariable]: JSON.stringify(whole) })
+      child = startChild('tests/faults/gateway.ts', [], { [taskVariable]: JSON.stringify(whole) })
     },
     kill: async () => {
       await child?.kill()
