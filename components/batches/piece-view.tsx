@@ -71,13 +71,17 @@ export function PieceView({ piece, firings, zone, unit }: Props) {
             key: 'points',
             head: 'Points',
             isNumeric: true,
-            cell: (firing) => (firing.score?.points == null ? '' : formatNumber(firing.score.points)),
+            cell: (firing) => (pointsWords(firing.score?.points ?? null)),
           },
         ]}
       />
       <Sum firings={begun} unit={unit} />
     </>
   )
+}
+
+function pointsWords(points: number | null): string {
+  return points === null ? '' : formatNumber(points)
 }
 
 function State({ firing }: { firing: FiringSummary }) {

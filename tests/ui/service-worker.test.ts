@@ -65,16 +65,16 @@ function start(version: string, stored = new Map<string, Map<string, Response>>(
   }
   /** What the worker answers; null when it leaves the request to the browser. */
   const load = async (path: string, more: { mode?: string; method?: string } = {}) => {
-    let answer: Promise<Response> | null = null
+    const answers: Promise<Response>[] = []
     handlers.get('fetch')?.({
       request: {
         method: more.method ?? 'GET',
         mode: more.mode ?? 'navigate',
         url: new URL(path, origin).toString(),
       },
-      respondWith: (promise: Promise<Response>) => (answer = promise),
+      respondWith: (promise: Promise<Response>) => void answers.push(promise),
     })
-    return answer === null ? null : await answer
+    return answers[0] === undefined ? null : await answers[0]
   }
   return {
     stored,

@@ -725,6 +725,7 @@ describe('a scanner', () => {
     recipe: { versionId: 'v', name: 'Quay', versionNumber: 1 },
     sizeAndShape: '225 L',
     firing: null,
+    firedCount: 0,
     isWaiting: true,
   }
   const fire = { canFire: true, ownHearth: null }
