@@ -71,7 +71,7 @@ export function PieceView({ piece, firings, zone, unit }: Props) {
             key: 'points',
             head: 'Points',
             isNumeric: true,
-            cell: (firing) => (pointsWords(firing.score?.points ?? null)),
+            cell: (firing) => pointsWords(firing.score?.points ?? null),
           },
         ]}
       />
