@@ -25,6 +25,8 @@ export type RoomStartConsoleProps = {
   /** The newest check of each source, the one checked last first. */
   waters: WaterCheckDto[]
   zone: string
+  /** What today's record says of carbon monoxide. */
+  carbonMonoxideLine?: string
   unit: TemperatureUnit
   /** Of the barrel that was scanned in the room; null for the next of the queue. */
   scannedSerial?: string | null
@@ -106,7 +108,7 @@ export function RoomStartConsole(props: RoomStartConsoleProps) {
       probes={probes}
       lead={lead}
       waterChoice={<RoomStartWater waters={waters} chosen={water} onChoose={setWater} />}
-      items={startItems(water, lead, zone)}
+      items={startItems(water, lead, zone, props.carbonMonoxideLine)}
       isTrial={isTrial}
       isBusy={isBusy}
       problem={problem}

@@ -7,8 +7,18 @@ import { startList } from './fireside-cautions'
 export type StartItem = { id: string; words: string; more: string; isWrong: boolean }
 
 /** What a person ticks before a fire: the cautions, then water and probe with their dates. */
-export function startItems(water: WaterCheckDto | null, lead: ProbeDto | null, zone: string): StartItem[] {
-  const fixed = startList.map((item) => ({ ...item, isWrong: false }))
+export function startItems(
+  water: WaterCheckDto | null,
+  lead: ProbeDto | null,
+  zone: string,
+  /** What today's record says of carbon monoxide; it ends with what decides. */
+  carbonMonoxide = '',
+): StartItem[] {
+  const fixed = startList.map((item) => ({
+    ...item,
+    more: item.id === 'carbon-monoxide' ? `${item.more} ${carbonMonoxide}`.trim() : item.more,
+    isWrong: false,
+  }))
   return [...fixed, waterItem(water, zone), probeItem(lead, zone)]
 }
 

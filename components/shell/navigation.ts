@@ -10,6 +10,11 @@ const places: readonly (Place & { roles: readonly Role[] })[] = [
   { href: '/batches', label: 'Batches', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
   { href: '/barrels', label: 'Barrels', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
   { href: '/probes', label: 'Probes', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
+  {
+    href: '/conditions',
+    label: 'Conditions',
+    roles: ['administrator', 'master cooper', 'chemist', 'toaster'],
+  },
   { href: '/alarms', label: 'Alarms', roles: ['administrator', 'master cooper', 'chemist', 'toaster'] },
   { href: '/devices', label: 'Devices', roles: ['administrator', 'master cooper'] },
   { href: '/accounts', label: 'Accounts', roles: ['administrator'] },
