@@ -84,6 +84,13 @@ export function PieceTable({
               >
                 {piece.serial}
               </Link>
+            ) : hasFirings ? (
+              <Link
+                href={`/barrels/${piece.id}`}
+                className="font-[640] whitespace-nowrap underline-offset-3 hover:underline"
+              >
+                {piece.serial}
+              </Link>
             ) : (
               <span className="font-[640] whitespace-nowrap">{piece.serial}</span>
             ),

@@ -1,5 +1,6 @@
 'use client'
 
+import Link from 'next/link'
 import { useState } from 'react'
 import { Button } from '@/components/ui/button'
 import { ConfirmDialog } from '@/components/ui/confirm-dialog'
@@ -35,10 +36,21 @@ export function LossList({
   const [draft, setDraft] = useState<LossDraft | null>(null)
   const [doubted, setDoubted] = useState<LossDto | null>(null)
   const all = losses ?? []
-  const begin = () => setDraft(newLossDraft({ firingId, woodLot, kind: canBreak ? 'blister' : 'leak' }))
+  const begin = () =>
+    setDraft(newLossDraft({ firingId, woodLot, kind: firingId === null ? 'leak' : 'blister' }))
   return (
     <section>
-      <h2 className="mb-1">Losses</h2>
+      <h2 className="mb-1">
+        Losses
+        {firingId === null ? null : (
+          <Link
+            href={`/barrels/${pieceId}`}
+            className="ml-3 font-normal text-soft underline-offset-3 hover:underline"
+          >
+            all of this piece
+          </Link>
+        )}
+      </h2>
       <div className="border-t border-line">
         {all.length === 0 ? (
           <p className="border-b border-line py-2 text-soft">
