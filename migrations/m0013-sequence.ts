@@ -69,6 +69,9 @@ export class M0013Sequence extends Migration {
       alter table marks drop constraint marks_move_given, drop constraint marks_advice_answered,
         drop constraint marks_reason_names_its_stage, drop constraint marks_reason_given,
         drop column step, drop column answer, drop column from_hearth_id, drop column to_hearth_id;
+      alter table marks drop constraint marks_kind_check;
+      alter table marks add constraint marks_kind_check check (kind in ('phase', 'stage', 'pull', 'stir', 'feed',
+        'mist', 'lid on', 'lid off', 'turn', 'turn over', 'call', 'note', 'swap', 'undone'));
     `)
   }
 }
