@@ -85,12 +85,15 @@ async function equipRoom(): Promise<DemoGateway> {
         mounting: isCoals ? 'hung' : 'wedge',
       }),
     )
-    await post(administrator.cookie, `/api/probes/${probe.id}/checks`, {
-      kind: 'ice',
-      measuredTempC: 0,
-      uncertaintyC: 0.3,
-      dueAt,
-    })
+    for (const check of [
+      { kind: 'ice', measuredTempC: 0 },
+      { kind: 'block', referenceTempC: 205, measuredTempC: 205 },
+    ])
+      await post(administrator.cookie, `/api/probes/${probe.id}/checks`, {
+        ...check,
+        uncertaintyC: 0.3,
+        dueAt,
+      })
     probes.push({ id: probe.id, hearth: 1, role, thermocoupleType: 'K' })
   }
   await post(administrator.cookie, '/api/water-checks', {
