@@ -54,7 +54,7 @@ export function deviceFields(hearths: readonly SelectOption[], device?: DeviceDt
       name: 'hearthId',
       label: 'Hearth',
       kind: 'select',
-      options: [{ value: '', label: 'None' }, ...hearths],
+      options: hearths,
       defaultValue: device?.hearth?.id ?? '',
       hint: 'For a tablet at a hearth. It opens there; it can mark at every hearth.',
     },

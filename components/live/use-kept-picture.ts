@@ -7,7 +7,6 @@ import type { LiveFiring } from './use-live-firing'
 import { browserStorage } from './use-mark-sender'
 
 const KEEP_EVERY_MS = 10_000
-const roles = ['lead', 'opposite', 'coals'] as const
 
 export type PictureFacts = Omit<
   KeptPicture,
@@ -49,7 +48,7 @@ function keepNow({ isOver: _isOver, ...facts }: PictureFacts, live: LiveFiring):
   const feeds = live.feeds()
   // Only what came from the server just now is worth keeping: a cut leaves the last picture as it was.
   if (live.connection.kind !== 'live' || live.state === null || feeds === null) return
-  const curveOf = (role: (typeof roles)[number]) => thinCurve(feeds[role].atMs(), feeds[role].tempC())
+  const curveOf = (role: keyof KeptPicture['curves']) => thinCurve(feeds[role].atMs(), feeds[role].tempC())
   const { state, columns } = live
   keepPicture(browserStorage(), {
     v: 1,

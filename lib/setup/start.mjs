@@ -64,7 +64,8 @@ function printAddress(environment) {
   const width = (key) => Math.max(...signIns.map((one) => one[key].length), 0)
   const [role, email] = [width('role'), width('email')]
   const rows = signIns.map(
-    (one) => `    ${one.role.padEnd(role)}   ${one.email.padEnd(email)}   ${one.password}`,
+    (one) =>
+      `    ${one.role.padEnd(role)}   ${one.email.padEnd(email)}   ${one.password}${one.pin ? `   PIN ${one.pin} at a tablet` : ''}`,
   )
   const lines = [
     '',

@@ -141,11 +141,13 @@ async function seedLive(
 
 /** What the simulator and the sign-in page's helpers read: sign-ins and device tokens of this demo only. */
 async function writeDemoFile(room: SeedRoom): Promise<void> {
-  const signIns = Object.values(demoPeople).map(({ role, name, email }) => ({
-    role,
-    name,
-    email,
+  const signIns = Object.values(demoPeople).map((person: SeedPerson) => ({
+    role: person.role,
+    name: person.name,
+    email: person.email,
     password: demoPassword,
+    // For shared tablets; most have none.
+    pin: person.pin ?? null,
   }))
   const gateways = room.gateways.map((gateway) => ({
     ...gateway,

@@ -1,6 +1,7 @@
 import { acceptInvitation } from '@/lib/accounts/accept-invitation'
 import { createCustomer } from '@/lib/accounts/create-customer'
 import { inviteAccount } from '@/lib/accounts/invite-account'
+import { setPin } from '@/lib/accounts/set-pin'
 import type { PersonActor, Role } from '@/lib/auth/actor'
 import { systemActor } from '@/lib/auth/actor'
 import { readActorOfSession } from '@/lib/auth/read-session-actor'
@@ -11,16 +12,21 @@ export const demoPassword = 'oak and embers 27'
 const seed = systemActor('set-up')
 const device = { userAgent: 'set-up', address: '127.0.0.1' }
 
-export type SeedPerson = { role: Role; name: string; email: string; customer?: number }
+export type SeedPerson = { role: Role; name: string; email: string; customer?: number; pin?: string }
 
 /** All invented. */
 export const demoPeople = {
   administrator: { role: 'administrator', name: 'P. Quill', email: 'administrator@saltmarsh.example' },
-  masterCooper: { role: 'master cooper', name: 'I. Marr', email: 'mastercooper@saltmarsh.example' },
+  masterCooper: {
+    role: 'master cooper',
+    name: 'I. Marr',
+    email: 'mastercooper@saltmarsh.example',
+    pin: '5092',
+  },
   secondMasterCooper: { role: 'master cooper', name: 'S. Vane', email: 'mastercooper2@saltmarsh.example' },
   chemist: { role: 'chemist', name: 'A. Lindqvist', email: 'chemist@saltmarsh.example' },
-  toaster: { role: 'toaster', name: 'T. Okafor', email: 'toaster@saltmarsh.example' },
-  secondToaster: { role: 'toaster', name: 'M. Reyes', email: 'toaster2@saltmarsh.example' },
+  toaster: { role: 'toaster', name: 'T. Okafor', email: 'toaster@saltmarsh.example', pin: '4173' },
+  secondToaster: { role: 'toaster', name: 'M. Reyes', email: 'toaster2@saltmarsh.example', pin: '2846' },
   customer: { role: 'customer', name: 'R. Harrow', email: 'customer@harrowbay.example', customer: 0 },
   secondCustomer: { role: 'customer', name: 'L. Tarn', email: 'customer@lanternhill.example', customer: 1 },
   thirdCustomer: { role: 'customer', name: 'J. Weir', email: 'customer@causeway.example', customer: 2 },
@@ -54,5 +60,6 @@ export async function seedPerson(person: SeedPerson, customerIds: readonly strin
   const started = await acceptInvitation({ token, name: undefined, password: demoPassword }, device)
   const actor = await readActorOfSession(started.sessionId)
   if (actor === null) throw new Error(`${person.name} could not be signed in.`)
+  if (person.pin !== undefined) await setPin(actor, { password: demoPassword, pin: person.pin })
   return actor
 }

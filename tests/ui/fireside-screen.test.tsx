@@ -264,7 +264,7 @@ describe('the line across the top', () => {
       { mark: { id: '1', kind: 'feed' as const, at: '2027-02-01T13:27:01Z' }, tries: 1, refusal: null },
     ]
     const line = topLineOf({ ...base, queue, nowMs: NOW + 20_000, state: stateOf({}, { alarm: amber }) })
-    expect(line?.headline).toBe('No connection since 14:27.')
+    expect(line?.headline).toBe('As of 14:27:00. Not live.')
     expect(line?.instruction).toContain('1 mark waits here')
     expect(line?.instruction).toContain('Bilge A has no reading')
   })
