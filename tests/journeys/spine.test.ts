@@ -170,6 +170,10 @@ describe('the spine, from an empty book to a scored firing', () => {
     await page.getByText('Rest', { exact: false }).first().waitFor()
     await press(page, 'Finish')
     const sheet = page.getByRole('dialog')
+    await sheet.waitFor()
+    // The rest was short: it asks why, and goes on without an answer.
+    const goOn = sheet.getByRole('button', { name: 'Finish without a reason' })
+    if (await goOn.isVisible()) await goOn.click()
     await sheet.getByLabel('Colour').fill('chestnut')
     await sheet.getByRole('button', { name: 'Finish' }).click()
     await page.waitForURL(/\/firings\//)
