@@ -23,6 +23,10 @@ function project(name: string, include: string[], more: Record<string, unknown> 
 
 const database = { globalSetup: ['tests/support/template-database.ts'] }
 
+/** The fireside's measures do not all hold yet: they run by `npm run test:measures`, not in the main set. */
+const journeys =
+  process.env['MEASURES'] === '1' ? ['tests/measures/**/*.measure.ts'] : ['tests/journeys/**/*.test.ts']
+
 export default defineConfig({
   test: {
     maxWorkers: 2,
@@ -36,7 +40,7 @@ export default defineConfig({
       project('live', ['tests/live/**/*.test.ts'], database),
       project('regressions', ['tests/regressions/**/*.test.{ts,tsx}'], database),
       project('faults', ['tests/faults/**/*.test.ts'], { testTimeout: 600_000, hookTimeout: 300_000 }),
-      project('journeys', ['tests/journeys/**/*.test.ts'], { testTimeout: 300_000, hookTimeout: 300_000 }),
+      project('journeys', journeys, { testTimeout: 300_000, hookTimeout: 300_000 }),
     ],
   },
 })

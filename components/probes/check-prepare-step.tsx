@@ -31,6 +31,7 @@ export function CheckPrepareStep({
   if (point === undefined) return null
   return (
     <form
+      method="post"
       noValidate
       onSubmit={(event) => {
         event.preventDefault()

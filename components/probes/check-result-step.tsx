@@ -43,6 +43,7 @@ export function CheckResultStep({
     `${formatNumber(toShownDifference(differenceC, unit), 2)} ${unitName(unit)}`
   return (
     <form
+      method="post"
       noValidate
       onSubmit={(event) => {
         event.preventDefault()

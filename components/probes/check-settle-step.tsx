@@ -76,7 +76,7 @@ function ByHand({ unit, onTake }: { unit: TemperatureUnit; onTake: (taken: Taken
   }
 
   return (
-    <form onSubmit={submit} noValidate className="lg:border-l lg:border-line lg:pl-12">
+    <form method="post" onSubmit={submit} noValidate className="lg:border-l lg:border-line lg:pl-12">
       <h2 className="text-large">Or by eye</h2>
       <p className="mt-1 mb-3 text-soft">
         Where the probe is read on another instrument, or its gateway is away: what it reads without any

@@ -113,7 +113,7 @@ function ByEye({
   }
 
   return (
-    <form onSubmit={(event) => void submit(event)} noValidate>
+    <form method="post" onSubmit={(event) => void submit(event)} noValidate>
       <div className="mt-2 grid max-w-[34rem] gap-x-8 gap-y-3 sm:grid-cols-2">
         <TemperatureField
           name="placedTempC"

@@ -58,7 +58,7 @@ export function Field({
     <div className={classNames('min-w-0', className)}>
       <label htmlFor={wiring.id} className={isLabelHidden ? 'sr-only' : 'mb-1 block text-small font-[560]'}>
         {label}
-        {isOptional ? <span className="font-normal text-mute"> (optional)</span> : null}
+        {isOptional ? <span className="font-normal text-soft"> (optional)</span> : null}
       </label>
       <div className="flex items-center gap-2">
         {children(wiring)}

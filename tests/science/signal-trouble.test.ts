@@ -114,7 +114,7 @@ const anyCurve = fc
   })
 
 describe('laws', () => {
-  test('readings that are believed are as they came; none is made', () => {
+  test('law: readings that are believed are as they came; none is made', () => {
     fc.assert(
       fc.property(anyCurve, (given) => {
         const checked = checkCurve(given, coals, rules)
@@ -127,7 +127,7 @@ describe('laws', () => {
     )
   })
 
-  test('what is said of a jump depends on what came before it only', () => {
+  test('law: what is said of a jump depends on what came before it only', () => {
     fc.assert(
       fc.property(anyCurve, fc.nat(200), (given, cut) => {
         const whole = createSignalCheck(rules)
@@ -142,7 +142,7 @@ describe('laws', () => {
     )
   })
 
-  test('wood within what it can do is never taken for a fault', () => {
+  test('law: wood within what it can do is never taken for a fault', () => {
     const anyWood = fc.tuple(
       fc.double({ min: -20, max: 20, noNaN: true }),
       fc.double({ min: 0.1, max: 3, noNaN: true }),
