@@ -2,6 +2,7 @@ import Link from 'next/link'
 import { SketchPair } from '@/components/firings/sketch-pair'
 import { DoseFigure } from '@/components/ui/dose-figure'
 import { EmptyState } from '@/components/ui/empty-state'
+import { NumbersLink } from '@/components/numbers/numbers-link'
 import { PageHead } from '@/components/ui/page-head'
 import { Table } from '@/components/ui/table'
 import { VerdictText } from '@/components/ui/verdict-text'
@@ -76,6 +77,9 @@ export function PieceView({ piece, firings, zone, unit }: Props) {
         ]}
       />
       <Sum firings={begun} unit={unit} />
+      <p className="mt-2 text-mute">
+        <NumbersLink />
+      </p>
     </>
   )
 }

@@ -3,6 +3,7 @@ import { FiringFilters } from '@/components/firings/firing-filters'
 import { FiringTable } from '@/components/firings/firing-table'
 import { Button } from '@/components/ui/button'
 import { Notice } from '@/components/ui/notice'
+import { NumbersLink } from '@/components/numbers/numbers-link'
 import { PageHead } from '@/components/ui/page-head'
 import { Pager } from '@/components/ui/pager'
 import { changeQuery } from '@/components/ui/url-query'
@@ -33,6 +34,7 @@ export function FiringList({
     <>
       <PageHead
         title="Firings"
+        sub={<NumbersLink />}
         actions={
           <Button type="submit" form="overlay">
             Lay the ticked over one another

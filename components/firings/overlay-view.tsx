@@ -1,6 +1,7 @@
 import { OverlayPair } from '@/components/firings/overlay-pair'
 import { OverlayTable } from '@/components/firings/overlay-table'
 import { overlayHref } from '@/components/firings/overlay-ids'
+import { NumbersLink } from '@/components/numbers/numbers-link'
 import Link from 'next/link'
 import { EmptyState } from '@/components/ui/empty-state'
 import { LinkButton } from '@/components/ui/link-button'
@@ -46,6 +47,9 @@ export function OverlayView({
         <>
           <OverlayPair firings={comparison.firings} pickedId={pickedId} unit={unit} />
           <OverlayTable comparison={comparison} pickedId={pickedId} unit={unit} />
+          <p className="mt-2 text-mute">
+            <NumbersLink />
+          </p>
         </>
       )}
       {ids.length === 0 ? (

@@ -1,4 +1,4 @@
-import Link from 'next/link'
+import { NumbersLink } from '@/components/numbers/numbers-link'
 import { Table } from '@/components/ui/table'
 import type { ShortStep } from '@/lib/firings/short-steps'
 import { shortStepWords } from '@/lib/firings/short-steps'
@@ -114,10 +114,7 @@ export function TermTable({
         />
       )}
       <p className="mt-2 text-mute">
-        Ruleset {score.ruleset}.{' '}
-        <Link href="/how-the-numbers-are-made" className="underline underline-offset-3">
-          How the numbers are made
-        </Link>
+        Ruleset {score.ruleset}. <NumbersLink />
       </p>
       {score.points === null ? null : (
         <details className="mt-1" open={score.terms.some((term) => term.pointsLost !== 0)}>
