@@ -1,6 +1,8 @@
 import Link from 'next/link'
+import { DoseSum } from '@/components/barrels/dose-sum'
 import { FiringTable } from '@/components/firings/firing-table'
 import { LossList } from '@/components/losses/loss-list'
+import { NumbersLink } from '@/components/numbers/numbers-link'
 import { Button } from '@/components/ui/button'
 import { EmptyState } from '@/components/ui/empty-state'
 import { LinkButton } from '@/components/ui/link-button'
@@ -54,6 +56,10 @@ export function BarrelView({ barrel, unit }: { barrel: BarrelPicture; unit: Temp
             ) : null}
           </form>
         )}
+        <DoseSum firings={firings} unit={unit} />
+        <p className="mt-2 text-mute">
+          <NumbersLink />
+        </p>
       </section>
       <div className="mt-8 max-w-[56rem]">
         <LossList
