@@ -1,4 +1,3 @@
-import type { InferEntity } from '@mikro-orm/core'
 import { defineEntity, p } from '@mikro-orm/core'
 
 export const ForecastOutcomeEntity = defineEntity({
@@ -17,5 +16,3 @@ export const ForecastOutcomeEntity = defineEntity({
     isWithin: p.boolean().nullable(),
   },
 })
-
-export type ForecastOutcomeRow = InferEntity<typeof ForecastOutcomeEntity>

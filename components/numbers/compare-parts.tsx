@@ -6,6 +6,8 @@ import {
   capabilityInterval,
   individualsMovingRange,
   NELSON_RULE_WORDS,
+  NELSON_RULES_ON,
+  PROVISIONAL_LIMITS_BELOW,
 } from '@/lib/science/control-chart'
 import { cusumAverageRunLength } from '@/lib/science/cusum-run-length'
 import { curveDeviation, dynamicTimeWarping } from '@/lib/science/curve'
@@ -63,9 +65,9 @@ export function Charts() {
     <Part id="charts" title="Charts and capability">
       <p>
         Charts run in firing order within one recipe version, probe place and hearth, always on log10 dose.
-        The limits come from what neighbours differ by, not from the spread of all; below 20 firings they are
-        provisional. Slow drifts show sooner in two sums: an average that forgets (EWMA) and one that adds up
-        (CUSUM).
+        The limits come from what neighbours differ by, not from the spread of all; below{' '}
+        {PROVISIONAL_LIMITS_BELOW} firings they are provisional. Slow drifts show sooner in two sums: an
+        average that forgets (EWMA) and one that adds up (CUSUM).
       </p>
       <Formula>{`limits = mean ± 3 × mean moving range / 1.128
 EWMA z = L x + (1 - L) z before, L 0.2 to 0.3
@@ -82,7 +84,7 @@ Cp = (upper - lower) / 6 sigma, Cpk = nearer limit from the mean / 3 sigma`}</Fo
         of="rules of the charts"
         rows={([1, 2, 3, 4, 5, 6, 7, 8] as const).map((rule) => ({
           name: `Rule ${rule}`,
-          value: rule <= 2 ? 'on' : 'off',
+          value: NELSON_RULES_ON.includes(rule) ? 'on' : 'off',
           source: NELSON_RULE_WORDS[rule],
         }))}
       />

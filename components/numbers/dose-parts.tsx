@@ -2,6 +2,7 @@ import { Constants, Formula, Limit, Part, Worked } from '@/components/numbers/pa
 import { Table } from '@/components/ui/table'
 import { formatDoseFigure, formatNumber, formatTemp, formatTempDifference } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
+import { smallestHonestTolerance } from '@/lib/recipes/honest-tolerance'
 import { doseInterval } from '@/lib/science/dose-interval'
 import { percentOfDosePerC } from '@/lib/science/dose-ratio'
 import {
@@ -166,8 +167,8 @@ export function Intervals({ rules, unit }: Props) {
       />
       <Limit>
         No verdict is firmer than its interval, and a recipe is approved only with a tolerance of at least
-        twice the same-mount interval: ±{formatNumber(2 * errors.sameMountLog10, 3)} log10 is the least that
-        this room can ask.
+        twice the same-mount interval: ±{formatNumber(smallestHonestTolerance(rules), 3)} log10 is the least
+        that this room can ask.
       </Limit>
     </Part>
   )

@@ -5,6 +5,7 @@ import { forecastDose } from '@/lib/science/forecast'
 import type { Stage } from '@/lib/science/plan'
 import { planCurve, planDose, solveStage } from '@/lib/science/plan'
 import { bandHalfWidthC } from '@/lib/science/plan-band'
+import { sameMountHalfLog10 } from '@/lib/science/same-mount'
 import { ruleset1 } from '@/lib/science/score-ruleset'
 import type { SiteRules } from '@/lib/science/site-rules'
 
@@ -92,7 +93,7 @@ function workedForecast(rules: SiteRules) {
     toleranceLog10: rules.doseToleranceLog10,
     woodMaxTempC: 230,
     climbMaxCPerMin: 12,
-    intervalLog10: rules.errors.sameMountLog10,
+    intervalLog10: sameMountHalfLog10(rules),
     model: rules.dose,
     rules: rules.forecast,
   })

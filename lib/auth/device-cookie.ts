@@ -17,16 +17,8 @@ function hashDeviceToken(token: string): string {
 
 /** The Set-Cookie value that enrols a browser. */
 export function deviceCookie(token: string): string {
-  return header(token, keptS)
-}
-
-export function clearedDeviceCookie(): string {
-  return header('', 0)
-}
-
-function header(value: string, maxAgeS: number): string {
   const secure = env().APP_ORIGIN.startsWith('https:') ? '; Secure' : ''
-  return `${deviceCookieName}=${value}; Path=/; HttpOnly; SameSite=Lax; Max-Age=${maxAgeS}${secure}`
+  return `${deviceCookieName}=${token}; Path=/; HttpOnly; SameSite=Lax; Max-Age=${keptS}${secure}`
 }
 
 /** The device's token in a Cookie header; null when there is none, or nothing of the kind that we make. */

@@ -91,7 +91,7 @@ export function createLiveFiring(
   const pair = createPairWatch(checks)
   let stave = createLiveStave(facts)
   let doseMin = 0
-  let gaps: DoseGaps = { atMs: -Infinity, log10Half: facts.rules.errors.sameMountLog10, isIncomplete: false }
+  let gaps: DoseGaps = { atMs: -Infinity, log10Half: sameMountHalfLog10(facts.rules), isIncomplete: false }
 
   const setWindow = () => {
     const { toastMs, restMs, endedMs } = facts
