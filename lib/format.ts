@@ -195,3 +195,8 @@ export function parseDuration(typed: string): number | null {
   const minutes = parseDecimal(typed)
   return minutes === null || minutes < 0 ? null : minutes * 60
 }
+
+/** The same words with a capital first, where they begin a sentence. */
+export function capitalize(words: string): string {
+  return words.charAt(0).toUpperCase() + words.slice(1)
+}

@@ -1,5 +1,4 @@
-import { Button } from '@/components/ui/button'
-import { LinkButton } from '@/components/ui/link-button'
+import { FilterForm } from '@/components/ui/filter-form'
 import { SelectField } from '@/components/ui/select-field'
 import { TextField } from '@/components/ui/text-field'
 import { alarmCatalog, alarmKinds } from '@/lib/alarms/alarm-kinds'
@@ -23,12 +22,7 @@ export function AlarmFilterForm({
   toasters: readonly FilterOption[]
 }) {
   return (
-    <form
-      method="get"
-      action="/alarms"
-      role="search"
-      className="mb-5 flex flex-wrap items-end gap-x-3 gap-y-2"
-    >
+    <FilterForm action="/alarms" values={values}>
       <TextField name="from" label="From" type="date" defaultValue={values['from']} />
       <TextField name="to" label="To" type="date" defaultValue={values['to']} />
       <SelectField
@@ -54,8 +48,6 @@ export function AlarmFilterForm({
         options={kinds}
         defaultValue={values['kind'] ?? ''}
       />
-      <Button type="submit">Show</Button>
-      {Object.keys(values).length === 0 ? null : <LinkButton href="/alarms">Clear</LinkButton>}
-    </form>
+    </FilterForm>
   )
 }

@@ -1,5 +1,4 @@
-import { Button } from '@/components/ui/button'
-import { LinkButton } from '@/components/ui/link-button'
+import { FilterForm } from '@/components/ui/filter-form'
 import { TextField } from '@/components/ui/text-field'
 
 const fields = [
@@ -14,12 +13,7 @@ const fields = [
 /** The filters of the trail, as a plain form: they live in the address. */
 export function AuditFilters({ values }: { values: Readonly<Record<string, string>> }) {
   return (
-    <form
-      method="get"
-      action="/audit"
-      role="search"
-      className="mb-4 flex flex-wrap items-end gap-x-3 gap-y-2"
-    >
+    <FilterForm action="/audit" values={values}>
       {fields.map(({ name, label, type, width }) => (
         <TextField
           key={name}
@@ -30,8 +24,6 @@ export function AuditFilters({ values }: { values: Readonly<Record<string, strin
           defaultValue={values[name]}
         />
       ))}
-      <Button type="submit">Show</Button>
-      {Object.keys(values).length === 0 ? null : <LinkButton href="/audit">Clear</LinkButton>}
-    </form>
+    </FilterForm>
   )
 }

@@ -4,7 +4,8 @@ import { NAME_LINE } from './pair-layout'
 import type { TextStyle } from './pair-layout'
 import { lastReading } from './pair-model'
 import type { ModelLine } from './pair-model'
-import { pathNode, round, textNode } from './pair-scene'
+import { pathNode, textNode } from './pair-scene'
+import { roundPx } from './round-px'
 import type { PairScene } from './pair-scene'
 import { isLive, limitWords } from './pair-words'
 import type { SvgNode } from './svg-layer'
@@ -118,10 +119,10 @@ function drawDoseStem({ model, layout }: PairScene): SvgNode[] {
   const { dose } = model
   const last = dose === null ? null : lastMinutes(dose.line)
   if (dose === null || layout.dose === null || last === null || dose.range === null) return []
-  const x = round(layout.toX(last.timeS))
+  const x = roundPx(layout.toX(last.timeS))
   return [
     pathNode(
-      `M${x} ${round(layout.toDoseY(dose.range.lowMin))}V${round(layout.toDoseY(dose.range.highMin))}`,
+      `M${x} ${roundPx(layout.toDoseY(dose.range.lowMin))}V${roundPx(layout.toDoseY(dose.range.highMin))}`,
       'stroke-text',
       1.25,
     ),

@@ -1,6 +1,7 @@
 import { createSvgSink, traceLine } from './line-path'
 import type { ModelDoseLine } from './pair-model'
-import { horizontal, pathNode, round } from './pair-scene'
+import { horizontal, pathNode } from './pair-scene'
+import { roundPx } from './round-px'
 import type { PairScene } from './pair-scene'
 import type { SvgNode } from './svg-layer'
 
@@ -38,10 +39,10 @@ function drawGrid({ layout }: PairScene): SvgNode[] {
 function drawPlanBand({ model, layout }: PairScene): SvgNode[] {
   if (model.planBand.length < 2) return []
   const upper = model.planBand.map(
-    (point) => `${round(layout.toX(point.timeS))} ${round(layout.toFireY(point.highC))}`,
+    (point) => `${roundPx(layout.toX(point.timeS))} ${roundPx(layout.toFireY(point.highC))}`,
   )
   const lower = model.planBand
-    .map((point) => `${round(layout.toX(point.timeS))} ${round(layout.toFireY(point.lowC))}`)
+    .map((point) => `${roundPx(layout.toX(point.timeS))} ${roundPx(layout.toFireY(point.lowC))}`)
     .reverse()
   return [{ tag: 'path', attributes: { d: `M${[...upper, ...lower].join('L')}Z`, class: 'fill-plan' } }]
 }

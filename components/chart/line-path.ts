@@ -1,3 +1,5 @@
+import { roundPx } from './round-px'
+
 /** The part of a path that lines need: a Path2D, a canvas context, or an SVG string writer. */
 export type PathSink = { moveTo: (x: number, y: number) => void; lineTo: (x: number, y: number) => void }
 
@@ -102,11 +104,7 @@ function drawColumn(sink: PathSink, column: Column, isDown: boolean): boolean {
 export function createSvgSink(): PathSink & { data: () => string } {
   let data = ''
   const write = (letter: string) => (x: number, y: number) => {
-    data += `${letter}${round(x)} ${round(y)}`
+    data += `${letter}${roundPx(x)} ${roundPx(y)}`
   }
   return { moveTo: write('M'), lineTo: write('L'), data: () => data }
-}
-
-function round(value: number): number {
-  return Math.round(value * 10) / 10
 }

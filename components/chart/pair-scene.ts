@@ -1,5 +1,6 @@
 import type { MeasureText, PairLayout, PairType, TextStyle } from './pair-layout'
 import type { PairModel } from './pair-model'
+import { roundPx } from './round-px'
 import type { SvgNode } from './svg-layer'
 
 /** All that drawing needs. */
@@ -57,14 +58,10 @@ export function pathNode(
 /** A crisp one-pixel vertical. */
 export function vertical(x: number, fromY: number, toY: number): string {
   const at = Math.round(x) + 0.5
-  return `M${at} ${round(fromY)}V${round(toY)}`
+  return `M${at} ${roundPx(fromY)}V${roundPx(toY)}`
 }
 
 /** A crisp one-pixel horizontal. */
 export function horizontal(fromX: number, toX: number, y: number): string {
-  return `M${round(fromX)} ${Math.round(y) + 0.5}H${round(toX)}`
-}
-
-export function round(value: number): number {
-  return Math.round(value * 10) / 10
+  return `M${roundPx(fromX)} ${Math.round(y) + 0.5}H${roundPx(toX)}`
 }

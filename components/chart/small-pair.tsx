@@ -5,6 +5,7 @@ import type { ModelWood, PairModel } from './pair-model'
 import type { PairProps } from './pair-types'
 import { describePair } from './pair-words'
 import { contourWood } from './wood-picture'
+import { roundPx } from './round-px'
 import { woodColour } from './wood-scale'
 
 export type SmallPairProps = PairProps & {
@@ -69,9 +70,9 @@ type ToPx = (value: number) => number
 
 function bandPath(model: PairModel, toX: ToPx, toY: ToPx): string {
   if (model.planBand.length < 2) return ''
-  const upper = model.planBand.map((point) => `${round(toX(point.timeS))} ${round(toY(point.highC))}`)
+  const upper = model.planBand.map((point) => `${roundPx(toX(point.timeS))} ${roundPx(toY(point.highC))}`)
   const lower = model.planBand
-    .map((point) => `${round(toX(point.timeS))} ${round(toY(point.lowC))}`)
+    .map((point) => `${roundPx(toX(point.timeS))} ${roundPx(toY(point.lowC))}`)
     .reverse()
   return `M${[...upper, ...lower].join('L')}Z`
 }
@@ -85,7 +86,7 @@ function linePath(line: { times: Float64Array; temps: Float64Array }, toX: ToPx,
 function Head({ model, toX, toY }: { model: PairModel; toX: ToPx; toY: ToPx }) {
   const head = lastReading(model.lead)
   if (model.nowS === null || head === null || model.nowS - head.timeS > HEAD_FRESH_S) return null
-  return <circle cx={round(toX(head.timeS))} cy={round(toY(head.tempC))} r="4" className="fill-text" />
+  return <circle cx={roundPx(toX(head.timeS))} cy={roundPx(toY(head.tempC))} r="4" className="fill-text" />
 }
 
 function SmallWood({
@@ -105,8 +106,8 @@ function SmallWood({
 }) {
   const thin = thinWood(wood, Math.max(Math.round(widthPx / 6), 12))
   const toY = (depthMm: number) => top + (Math.min(depthMm, depthMaxMm) / depthMaxMm) * height
-  const start = round(toX(thin.times[0] ?? 0))
-  const end = round(toX(thin.times.at(-1) ?? 0))
+  const start = roundPx(toX(thin.times[0] ?? 0))
+  const end = roundPx(toX(thin.times.at(-1) ?? 0))
   return (
     <>
       <rect x="1" y={top} width={widthPx - 2} height={height} className="fill-raised" />
@@ -135,8 +136,8 @@ function contourPath(
   const first = Math.max(depthsMm.findIndex((depth) => depth > 0) - 1, 0)
   const points = depthsMm
     .slice(first)
-    .map((depth, i) => `${round(toX(times[first + i] ?? 0))} ${round(toY(depth))}`)
-  return `M${points.join('L')}V${round(top)}H${round(toX(times[first] ?? 0))}Z`
+    .map((depth, i) => `${roundPx(toX(times[first + i] ?? 0))} ${roundPx(toY(depth))}`)
+  return `M${points.join('L')}V${roundPx(top)}H${roundPx(toX(times[first] ?? 0))}Z`
 }
 
 /** Every n-th column and always the last: a small drawing needs no more. */
@@ -151,8 +152,4 @@ function thinWood(wood: ModelWood, columns: number): ModelWood {
       log10Dose[to * rows + row] = wood.log10Dose[from * rows + row] ?? -Infinity
   })
   return { ...wood, log10Dose, times: Float64Array.from(kept, (from) => wood.times[from] ?? 0) }
-}
-
-function round(value: number): number {
-  return Math.round(value * 10) / 10
 }

@@ -1,5 +1,5 @@
 import { LinkButton } from '@/components/ui/link-button'
-import { shiftDay } from '@/lib/conditions/site-day'
+import { shiftDay } from '@/lib/site/site-day'
 
 /** The day before and after, today, and any day by its date. */
 export function DayNavigation({ day, isToday, today }: { day: string; isToday: boolean; today: string }) {

@@ -1,5 +1,5 @@
-import { Button } from '@/components/ui/button'
-import { LinkButton } from '@/components/ui/link-button'
+import { capitalize } from '@/lib/format'
+import { FilterForm } from '@/components/ui/filter-form'
 import { SelectField } from '@/components/ui/select-field'
 import { TextField } from '@/components/ui/text-field'
 
@@ -14,7 +14,7 @@ const states = [
 const verdicts = ['in tolerance', 'cannot tell', 'out of tolerance', 'limit broken', 'incomplete'].map(
   (value) => ({
     value,
-    label: value[0]?.toUpperCase() + value.slice(1),
+    label: capitalize(value),
   }),
 )
 
@@ -33,7 +33,7 @@ export function FiringFilters({
   toasters: readonly FilterOption[]
 }) {
   return (
-    <form method="get" className="mb-4 flex flex-wrap items-end gap-x-3 gap-y-2" role="search">
+    <FilterForm action="/firings" values={values}>
       <TextField
         name="q"
         label="Find"
@@ -75,8 +75,6 @@ export function FiringFilters({
       )}
       <TextField name="from" label="From" type="date" defaultValue={values['from']} />
       <TextField name="to" label="To" type="date" defaultValue={values['to']} />
-      <Button type="submit">Show</Button>
-      {Object.keys(values).length === 0 ? null : <LinkButton href="/firings">Clear</LinkButton>}
-    </form>
+    </FilterForm>
   )
 }

@@ -1,3 +1,4 @@
+import { capitalize } from '@/lib/format'
 import type { ReactNode } from 'react'
 import { storySentence } from '@/components/alarms/alarm-story'
 import { silenceWords } from '@/components/firings/gap-words'
@@ -143,11 +144,7 @@ function gapLines({ curves }: FiringPicture): Line[] {
   return curves.leadGaps.map((gap, i) => ({
     key: `gap ${i}`,
     at: new Date(zeroMs + gap.startS * 1000).toISOString(),
-    what: `${capital(curves.lead.name)} had no reading for ${silenceWords(gap)}`,
+    what: `${capitalize(curves.lead.name)} had no reading for ${silenceWords(gap)}`,
     who: 'gateway',
   }))
-}
-
-function capital(words: string): string {
-  return words.charAt(0).toUpperCase() + words.slice(1)
 }

@@ -1,3 +1,4 @@
+import { capitalize } from '@/lib/format'
 import { silenceWords, treatmentWords } from '@/components/firings/gap-words'
 import { Facts } from '@/components/ui/facts'
 import type { FiringPicture, ProbeCheckFact } from '@/lib/firings/picture-types'
@@ -13,7 +14,7 @@ export function ProbeFacts({ picture, unit }: { picture: FiringPicture; unit: Te
   const { firing, checks, timeZone, curves } = picture
   if (firing.probes.length === 0) return null
   const probes = firing.probes.map((probe) => ({
-    name: `${capital(shortPlace(probe))}${probe.role === 'lead' ? ', lead' : ''}`,
+    name: `${capitalize(shortPlace(probe))}${probe.role === 'lead' ? ', lead' : ''}`,
     value: (
       <>
         {probeWords(probe)},{' '}
@@ -102,8 +103,4 @@ function gapFacts({ curves, timeZone }: FiringPicture): { name: string; value: s
   ]
   if (lines.length === 0) return [{ name: 'No reading', value: 'never between toast start and rest' }]
   return lines.map((value, i) => ({ name: i === 0 ? 'No reading' : '\u00a0', value }))
-}
-
-function capital(words: string): string {
-  return words.charAt(0).toUpperCase() + words.slice(1)
 }

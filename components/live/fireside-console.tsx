@@ -1,5 +1,6 @@
 'use client'
 
+import { capitalize } from '@/lib/format'
 import { useRouter } from 'next/navigation'
 import { useCallback, useMemo, useState } from 'react'
 import useSWR from 'swr'
@@ -16,7 +17,7 @@ import { createServerClock, useServerTime } from './fireside-clock'
 import { lidNow, firesideFacts } from './fireside-facts'
 import type { FiresideFacts } from './fireside-facts'
 import type { FiresideKey } from './fireside-keys'
-import { capital, listedAlarms, topLineOf } from './fireside-lines'
+import { listedAlarms, topLineOf } from './fireside-lines'
 import { FiresideAlarms } from './fireside-alarms'
 import type { FiresideSheetName } from './fireside-sheets'
 import { FiresideSheets } from './fireside-sheets'
@@ -150,7 +151,7 @@ function RunningFireside(props: RunningProps) {
 
   const mark = (kind: MarkKind) => {
     if (kind === 'note') setSheet('note')
-    else touch.mark({ kind }, capital(kind))
+    else touch.mark({ kind }, capitalize(kind))
   }
   const reasons = useOpenReasons(facts)
   const keepReason = ({ step: short, stagePosition }: ShortStep, words: string) => {

@@ -1,3 +1,4 @@
+import { capitalize } from '@/lib/format'
 import { isSounding } from '@/lib/alarms/alarm-states'
 import { shownAlarmWords, splitAlarmWords } from '@/lib/alarms/alarm-words'
 import { formatClock, formatInstant } from '@/lib/format'
@@ -65,7 +66,7 @@ export function topLineOf(input: {
   const refused = queue.find((queued) => queued.refusal !== null)
   if (refused === undefined) return null
   return line('mark', {
-    headline: `${refused.mark.kind === 'undone' ? 'Undo' : capital(refused.mark.kind)} was not taken.`,
+    headline: `${refused.mark.kind === 'undone' ? 'Undo' : capitalize(refused.mark.kind)} was not taken.`,
     instruction: refused.refusal ?? '',
     age: formatInstant(refused.mark.at, input.zone, 'time'),
     level: 'amber',
@@ -95,8 +96,4 @@ function cutLine(
 
 function line(about: 'connection' | 'mark', words: Omit<TopLineProps, 'isSeen'>) {
   return { about, alarmId: null, isSeen: true, ...words }
-}
-
-export function capital(words: string): string {
-  return words.charAt(0).toUpperCase() + words.slice(1)
 }

@@ -1,7 +1,8 @@
 'use client'
 
-import { useEffect, useId, useRef } from 'react'
+import { useId } from 'react'
 import type { ReactNode } from 'react'
+import { useModal } from '@/components/ui/use-modal'
 import { classNames } from '@/components/ui/class-names'
 
 /** A large dialog for gloves: most of the screen, its own scrolling, closed by Escape or its last button. */
@@ -17,18 +18,8 @@ export function FiresideSheet({
   onClose: () => void
   children: ReactNode
 }) {
-  const dialog = useRef<HTMLDialogElement>(null)
+  const dialog = useModal(true)
   const titleId = useId()
-  useEffect(() => {
-    const element = dialog.current
-    if (element === null) return
-    const opener = document.activeElement
-    element.showModal()
-    return () => {
-      element.close()
-      if (opener instanceof HTMLElement && opener.isConnected) opener.focus()
-    }
-  }, [])
   return (
     <dialog
       ref={dialog}

@@ -1,10 +1,10 @@
 'use client'
 
+import { capitalize } from '@/lib/format'
 import { useCallback, useEffect, useState } from 'react'
 import { Button } from '@/components/ui/button'
 import { formatInstant } from '@/lib/format'
 import type { PersonView } from './device-view'
-import { capital } from './fireside-lines'
 import type { QueuedMark } from './fireside-mark-queue'
 import { dropKeptMark, readKeptMarks, sendKeptMarks } from './kept-marks'
 
@@ -40,7 +40,7 @@ export function RoomKeptMarks({ person, zone }: { person: PersonView | null; zon
         className="flex items-center justify-between gap-4 bg-alarm-amber px-6 py-1 text-[26px] leading-tight font-[640] text-on-alarm"
       >
         <p>
-          {capital(refused.mark.kind)} of {formatInstant(refused.mark.at, zone, 'time')}
+          {capitalize(refused.mark.kind)} of {formatInstant(refused.mark.at, zone, 'time')}
           {refused.author === undefined ? '' : ` by ${refused.author.name}`} was not taken. {refused.refusal}
         </p>
         <Button

@@ -1,3 +1,4 @@
+import { capitalize } from '@/lib/format'
 import type { LossDto } from '@/lib/barrels/schema'
 import { formatNumber } from '@/lib/format'
 
@@ -5,7 +6,7 @@ import { formatNumber } from '@/lib/format'
 export function lossWords(loss: LossDto): string {
   const where = loss.stavePosition === null ? '' : `Stave ${loss.stavePosition}: `
   const what = whatWords(loss)
-  return `${where}${where === '' ? capital(what) : what}.`
+  return `${where}${where === '' ? capitalize(what) : what}.`
 }
 
 function whatWords(loss: LossDto): string {
@@ -18,8 +19,4 @@ function whatWords(loss: LossDto): string {
   return loss.replacementToast === 'untoasted'
     ? `${from}, untoasted`
     : `${from}, its own toast: ${loss.replacementToast ?? ''}`
-}
-
-function capital(words: string): string {
-  return words.charAt(0).toUpperCase() + words.slice(1)
 }

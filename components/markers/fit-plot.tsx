@@ -1,7 +1,8 @@
 import type { FitPicture } from '@/lib/markers/schema'
 import { predictors } from '@/lib/science/marker-families'
 import { PlotAxes } from './plot-axes'
-import { linearScale, logScale, round } from './plot-scale'
+import { roundPx } from '@/components/chart/round-px'
+import { linearScale, logScale } from './plot-scale'
 
 const width = 640
 const height = 330
@@ -28,7 +29,7 @@ function CurvePlot({ picture, name, unit }: { picture: FitPicture; name: string;
       : linearScale(doses, box.left, box.right)
   const heights = [...results.map((result) => result.value), ...curve.map((point) => point.high)]
   const y = linearScale([...heights, 0], box.bottom, box.top, { from: 0 })
-  const point = (at: number, value: number) => `${round(x.toPx(at))} ${round(y.toPx(Math.max(0, value)))}`
+  const point = (at: number, value: number) => `${roundPx(x.toPx(at))} ${roundPx(y.toPx(Math.max(0, value)))}`
   const upper = curve.map(({ x: at, high }) => point(at, high))
   const lower = curve.map(({ x: at, low }) => point(at, low)).reverse()
   const last = curve.at(-1)
@@ -55,20 +56,20 @@ function CurvePlot({ picture, name, unit }: { picture: FitPicture; name: string;
       {results.map((result, i) => (
         <Mark
           key={result.line}
-          x={round(x.toPx(doses[i] ?? 0))}
-          y={round(y.toPx(result.value))}
+          x={roundPx(x.toPx(doses[i] ?? 0))}
+          y={roundPx(y.toPx(result.value))}
           footY={box.bottom}
           isBelowLimit={result.isBelowLimit}
         />
       ))}
       {last === undefined ? null : (
         <>
-          <text x={box.right + 10} y={round(y.toPx(last.value)) + 4.5} className="fill-text text-[13px]">
+          <text x={box.right + 10} y={roundPx(y.toPx(last.value)) + 4.5} className="fill-text text-[13px]">
             the fit
           </text>
           <text
             x={box.right + 10}
-            y={Math.max(box.top, round(y.toPx(last.high)) + 4.5)}
+            y={Math.max(box.top, roundPx(y.toPx(last.high)) + 4.5)}
             className="fill-soft text-[13px]"
           >
             19 of 20 further
@@ -97,18 +98,18 @@ function AgreementPlot({ picture, name, unit }: { picture: FitPicture; name: str
     >
       <PlotAxes box={box} x={x} y={y} xName={`by the fit, ${unit}`} yName={`${name} measured, ${unit}`} />
       <path
-        d={`M${round(x.toPx(lowest))} ${round(y.toPx(lowest))}L${round(x.toPx(highest))} ${round(y.toPx(highest))}`}
+        d={`M${roundPx(x.toPx(lowest))} ${roundPx(y.toPx(lowest))}L${roundPx(x.toPx(highest))} ${roundPx(y.toPx(highest))}`}
         className="fill-none stroke-plan-line"
         strokeWidth="1.5"
       />
-      <text x={box.right + 10} y={round(y.toPx(highest)) + 4.5} className="fill-soft text-[13px]">
+      <text x={box.right + 10} y={roundPx(y.toPx(highest)) + 4.5} className="fill-soft text-[13px]">
         both agree
       </text>
       {results.map((result, i) => (
         <Mark
           key={result.line}
-          x={round(x.toPx(fitted[i] ?? 0))}
-          y={round(y.toPx(result.value))}
+          x={roundPx(x.toPx(fitted[i] ?? 0))}
+          y={roundPx(y.toPx(result.value))}
           footY={box.bottom}
           isBelowLimit={result.isBelowLimit}
         />

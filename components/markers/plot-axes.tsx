@@ -1,6 +1,6 @@
 import { threeDigits } from '@/lib/science/three-digits'
 import type { PlotScale } from './plot-scale'
-import { round } from './plot-scale'
+import { roundPx } from '@/components/chart/round-px'
 
 export type PlotBox = { left: number; right: number; top: number; bottom: number }
 
@@ -22,10 +22,10 @@ export function PlotAxes({
     <>
       {y.ticks.map((tick) => (
         <g key={tick}>
-          <path d={`M${box.left} ${round(y.toPx(tick))}H${box.right}`} className="fill-none stroke-line" />
+          <path d={`M${box.left} ${roundPx(y.toPx(tick))}H${box.right}`} className="fill-none stroke-line" />
           <text
             x={box.left - 8}
-            y={round(y.toPx(tick)) + 4.5}
+            y={roundPx(y.toPx(tick)) + 4.5}
             textAnchor="end"
             className="fill-soft text-[13px]"
           >
@@ -36,7 +36,7 @@ export function PlotAxes({
       {x.ticks.map((tick) => (
         <text
           key={tick}
-          x={round(x.toPx(tick))}
+          x={roundPx(x.toPx(tick))}
           y={box.bottom + 18}
           textAnchor="middle"
           className="fill-soft text-[13px]"

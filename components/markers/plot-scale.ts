@@ -1,16 +1,7 @@
+import { roundTicks } from '@/components/chart/round-ticks'
+
 /** A plot's axis: from data to px, with round ticks. */
 export type PlotScale = { toPx: (value: number) => number; ticks: number[] }
-
-/** Ticks at 1, 2 or 5 times a power of ten, at most `most` of them, from low to high. */
-export function roundTicks(low: number, high: number, most: number): number[] {
-  if (!(high > low)) return [low]
-  const rough = (high - low) / most
-  const power = 10 ** Math.floor(Math.log10(rough))
-  const step = [1, 2, 5, 10].map((factor) => factor * power).find((one) => one >= rough) ?? rough
-  const first = Math.ceil(low / step - 1e-9)
-  const last = Math.floor(high / step + 1e-9)
-  return Array.from({ length: last - first + 1 }, (_, i) => Number(((first + i) * step).toPrecision(12)))
-}
 
 /** An axis over [low, high] widened by `margin` of its length, drawn from `fromPx` to `toPx`. */
 export function linearScale(
@@ -45,8 +36,4 @@ export function logScale(values: readonly number[], fromPx: number, toPx: number
     toPx: (value) => fromPx + ((Math.log10(value) - low) / (high - low)) * (toPx - fromPx),
     ticks: (inside.length > 7 && tens.length >= 2 ? tens : inside).map((tick) => Number(tick.toPrecision(1))),
   }
-}
-
-export function round(px: number): number {
-  return Math.round(px * 10) / 10
 }

@@ -1,6 +1,7 @@
 import type { FitPicture } from '@/lib/markers/schema'
 import { PlotAxes } from './plot-axes'
-import { linearScale, round } from './plot-scale'
+import { roundPx } from '@/components/chart/round-px'
+import { linearScale } from './plot-scale'
 
 const width = 400
 const height = 330
@@ -19,7 +20,7 @@ export function ResidualPlot({ picture, unit }: { picture: FitPicture; unit: str
     { most: 4 },
   )
   const y = linearScale([-furthest, furthest], box.bottom, box.top, { most: 4 })
-  const zeroY = round(y.toPx(0))
+  const zeroY = roundPx(y.toPx(0))
   return (
     <svg
       viewBox={`0 0 ${width} ${height}`}
@@ -36,10 +37,10 @@ export function ResidualPlot({ picture, unit }: { picture: FitPicture; unit: str
       {measured.map(({ fitted, residual }) => (
         <g key={`${fitted} ${residual}`}>
           <path
-            d={`M${round(x.toPx(fitted))} ${zeroY}V${round(y.toPx(residual))}`}
+            d={`M${roundPx(x.toPx(fitted))} ${zeroY}V${roundPx(y.toPx(residual))}`}
             className="fill-none stroke-mute"
           />
-          <circle cx={round(x.toPx(fitted))} cy={round(y.toPx(residual))} r="3.5" className="fill-text" />
+          <circle cx={roundPx(x.toPx(fitted))} cy={roundPx(y.toPx(residual))} r="3.5" className="fill-text" />
         </g>
       ))}
     </svg>

@@ -1,6 +1,6 @@
 'use client'
 
-import { useEffect, useId, useRef, useState } from 'react'
+import { useId, useState } from 'react'
 import type { FormEvent } from 'react'
 import { Button } from '@/components/ui/button'
 import { ConfirmDialog } from '@/components/ui/confirm-dialog'
@@ -14,6 +14,7 @@ import type { PhotoDto } from '@/lib/firings/photo-schema'
 import { problemOf } from '@/lib/http/api-client'
 import { photoKindNames, photoWords } from './photo-words'
 import { photoHref } from './use-photos'
+import { useModal } from '@/components/ui/use-modal'
 import type { Photos } from './use-photos'
 
 /** One photo, large, with who took it; what it is said to show is put right here, and here it is removed. */
@@ -30,19 +31,9 @@ export function PhotoDialog({
   photos: Pick<Photos, 'describe' | 'remove'>
   onClose: () => void
 }) {
-  const dialog = useRef<HTMLDialogElement>(null)
+  const dialog = useModal(true)
   const titleId = useId()
   const [isRemoving, setIsRemoving] = useState(false)
-  useEffect(() => {
-    const element = dialog.current
-    if (element === null) return
-    const opener = document.activeElement
-    element.showModal()
-    return () => {
-      element.close()
-      if (opener instanceof HTMLElement && opener.isConnected) opener.focus()
-    }
-  }, [])
   return (
     <dialog
       ref={dialog}

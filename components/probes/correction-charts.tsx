@@ -1,5 +1,6 @@
+import { roundTicks } from '@/components/chart/round-ticks'
 import type { CorrectionPoint } from '@/components/probes/correction-scale'
-import { correctionDomain, linearScale, roundTicks } from '@/components/probes/correction-scale'
+import { correctionDomain, linearScale } from '@/components/probes/correction-scale'
 import { formatInstant, formatSigned } from '@/lib/format'
 
 const size = { width: 460, height: 220, left: 44, right: 62, top: 12, bottom: 28 } as const
@@ -46,7 +47,7 @@ export function CorrectionByTemperature({
       title="Correction against temperature"
       frame={frame}
       unitName={unitName}
-      xTicks={roundTicks(xDomain, 5).map((tick) => ({ at: frame.x(tick), words: `${tick}°` }))}
+      xTicks={roundTicks(...xDomain, 5).map((tick) => ({ at: frame.x(tick), words: `${tick}°` }))}
     >
       <path d={path(true)} className="stroke-text" strokeWidth={1.6} fill="none" />
       <path d={path(false)} className="stroke-text" strokeWidth={1.2} strokeDasharray="4 4" fill="none" />
@@ -159,7 +160,7 @@ function Chart({
   xTicks: readonly { at: number; words: string }[]
   children: React.ReactNode
 }) {
-  const ticks = roundTicks(frame.domain, 4)
+  const ticks = roundTicks(...frame.domain, 4)
   const decimals = Math.max(0, ...ticks.map((tick) => (Number.isInteger(tick) ? 0 : 1)))
   return (
     <figure className="min-w-0">

@@ -9,18 +9,6 @@ export function linearScale(
   return (value) => start + ((value - from) / span) * (end - start)
 }
 
-/** About `count` round ticks within a domain. */
-export function roundTicks([from, to]: readonly [number, number], count: number): number[] {
-  const rough = (to - from) / count
-  const power = 10 ** Math.floor(Math.log10(rough))
-  const step = [1, 2, 5, 10].map((one) => one * power).find((one) => one >= rough) ?? 10 * power
-  const ticks: number[] = []
-  for (let tick = Math.ceil(from / step) * step; tick <= to + step * 1e-9; tick += step) {
-    ticks.push(Math.round(tick / step) * step)
-  }
-  return ticks
-}
-
 export type CorrectionPoint = {
   kind: 'ice' | 'boiling' | 'block'
   /** In the person's unit: a temperature, and differences. */

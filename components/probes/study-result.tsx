@@ -1,4 +1,5 @@
-import { linearScale, roundTicks } from '@/components/probes/correction-scale'
+import { roundTicks } from '@/components/chart/round-ticks'
+import { linearScale } from '@/components/probes/correction-scale'
 import { doseShareWords, halfWidthWords, log10Words } from '@/components/probes/half-width-words'
 import { Facts } from '@/components/ui/facts'
 import { formatCount, formatNumber, formatSigned, toShownDifference, unitName } from '@/lib/format'
@@ -80,7 +81,7 @@ function DotRow({
   const x = linearScale(domain, [size.left, size.width - size.right])
   const bandX = x(shown(result.meanC - result.halfWidthC))
   const bandEndX = x(shown(result.meanC + result.halfWidthC))
-  const ticks = roundTicks(domain, 5)
+  const ticks = roundTicks(...domain, 5)
   return (
     <figure className="min-w-0">
       <figcaption className="text-small text-soft">

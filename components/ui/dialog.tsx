@@ -1,6 +1,7 @@
 'use client'
 
-import { useEffect, useId, useRef } from 'react'
+import { useId } from 'react'
+import { useModal } from './use-modal'
 import type { ReactNode } from 'react'
 
 export type DialogProps = {
@@ -27,19 +28,8 @@ export function Dialog({
   isBusy = false,
   closesOnOutsidePress = false,
 }: DialogProps) {
-  const dialog = useRef<HTMLDialogElement>(null)
+  const dialog = useModal(isOpen)
   const titleId = useId()
-
-  useEffect(() => {
-    const element = dialog.current
-    if (element === null || !isOpen) return
-    const opener = document.activeElement
-    element.showModal()
-    return () => {
-      element.close()
-      if (opener instanceof HTMLElement && opener.isConnected) opener.focus()
-    }
-  }, [isOpen])
 
   if (!isOpen) return null
   return (

@@ -1,5 +1,4 @@
-import { Button } from '@/components/ui/button'
-import { LinkButton } from '@/components/ui/link-button'
+import { FilterForm } from '@/components/ui/filter-form'
 import type { SelectOption } from '@/components/ui/select-field'
 import { SelectField } from '@/components/ui/select-field'
 import { TextField } from '@/components/ui/text-field'
@@ -18,12 +17,7 @@ export function SearchForm({
   selects?: readonly { name: string; label: string; options: readonly SelectOption[]; fallback: string }[]
 }) {
   return (
-    <form
-      method="get"
-      action={action}
-      role="search"
-      className="mb-4 flex flex-wrap items-end gap-x-3 gap-y-2"
-    >
+    <FilterForm action={action} values={values}>
       <TextField
         name="q"
         type="search"
@@ -41,8 +35,6 @@ export function SearchForm({
           defaultValue={values[select.name] ?? select.fallback}
         />
       ))}
-      <Button type="submit">Show</Button>
-      {Object.keys(values).length === 0 ? null : <LinkButton href={action}>Clear</LinkButton>}
-    </form>
+    </FilterForm>
   )
 }

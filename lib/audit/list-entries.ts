@@ -1,5 +1,3 @@
-import { TZDate } from '@date-fns/tz'
-import { addDays } from 'date-fns'
 import type { Actor } from '@/lib/auth/actor'
 import { requirePermission } from '@/lib/auth/permissions'
 import type { AuditEntryDto, AuditQuery } from '@/lib/audit/schema'
@@ -8,6 +6,7 @@ import { sqlFilters } from '@/lib/db/sql-filters'
 import type { Page } from '@/lib/http/cursor'
 import { decodeCursor, toPage } from '@/lib/http/cursor'
 import { currentSite } from '@/lib/site/current-site'
+import { dayBounds } from '@/lib/site/site-day'
 
 type EntryRow = {
   seq: string
@@ -33,8 +32,8 @@ export async function listEntries(actor: Actor, query: AuditQuery): Promise<Page
     filters.add('(action = ? or starts_with(action, ?))', query.action, `${query.action}.`)
   if (query.subjectType !== undefined) filters.add('subject_type = ?', query.subjectType)
   if (query.subjectId !== undefined) filters.add('subject_id = ?', query.subjectId)
-  if (query.from !== undefined) filters.add('at >= ?', startOfDay(query.from, timeZone))
-  if (query.to !== undefined) filters.add('at < ?', startOfDay(query.to, timeZone, 1))
+  if (query.from !== undefined) filters.add('at >= ?', dayBounds(query.from, timeZone).fromAt)
+  if (query.to !== undefined) filters.add('at < ?', dayBounds(query.to, timeZone).untilAt)
   if (query.cursor !== undefined) filters.add('seq < ?', decodeCursor(query.cursor, 1)[0] ?? null)
   const rows = await queryRows<EntryRow>(
     em,
@@ -43,11 +42,6 @@ export async function listEntries(actor: Actor, query: AuditQuery): Promise<Page
     [...filters.parameters, query.limit + 1],
   )
   return toPage(rows, query.limit, toEntry, (row) => [Number(row.seq)])
-}
-
-/** Midnight at the site's place, of the day or of one so many days after it. */
-function startOfDay(day: string, timeZone: string, daysLater = 0): Date {
-  return new Date(addDays(new TZDate(`${day}T00:00:00`, timeZone), daysLater).getTime())
 }
 
 function toEntry(row: EntryRow): AuditEntryDto {

@@ -1,3 +1,4 @@
+import { capitalize } from '@/lib/format'
 import type { FiringDto, shortStepKinds } from '@/lib/firings/schema'
 import type { RecipeContent } from '@/lib/recipes/schema'
 import { matchStages } from '@/lib/science/score-stages'
@@ -153,7 +154,7 @@ export function shortStepsOf(firing: FiringDto): ShortStep[] {
 
 /** "Preheat was 4:00 of 20 min", "The pull was left out; the recipe asks 10 min". */
 export function shortStepWords(step: Omit<ShortStep, 'reason'>): string {
-  const name = step.step === 'bend' ? 'The pull' : step.name.charAt(0).toUpperCase() + step.name.slice(1)
+  const name = step.step === 'bend' ? 'The pull' : capitalize(step.name)
   const asked = `${Math.round(step.askedMinutes * 10) / 10} min`
   if (step.isSkipped) return `${name} was left out; the recipe asks ${asked}`
   return `${name} was ${clock(step.actualMinutes)} of ${asked}`

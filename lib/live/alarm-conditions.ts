@@ -1,3 +1,4 @@
+import { capitalize } from '@/lib/format'
 import type { AlarmView } from '@/lib/alarms/alarm-delay'
 import { viewAbove } from '@/lib/alarms/alarm-delay'
 import type { AlarmKind } from '@/lib/alarms/alarm-kinds'
@@ -233,15 +234,11 @@ function reminders(input: AlarmInput): AlarmCondition[] {
   return overdueActs(facts, atMs)
     .filter((act) => atMs - act.atMs >= remindAfterS * 1000)
     .map((act) => {
-      const words = `${capital(act.words)} was due. Do it and mark it.`
+      const words = `${capitalize(act.words)} was due. Do it and mark it.`
       const said: Said = { view: 'beyond', words, endingWords: words, value: null, limit: null }
       return {
         ...condition(input, 'reminder', said, { subject: act.subject }),
         delays: { onDelayS: 0, offDelayS: 0 },
       }
     })
-}
-
-function capital(words: string): string {
-  return words.charAt(0).toUpperCase() + words.slice(1)
 }
