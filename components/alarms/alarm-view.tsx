@@ -4,7 +4,7 @@ import { AlarmRates } from '@/components/alarms/alarm-rates'
 import { AlarmReasons } from '@/components/alarms/alarm-reasons'
 import { AlarmsNow } from '@/components/alarms/alarms-now'
 import { AlarmTable } from '@/components/alarms/alarm-table'
-import { LinkButton } from '@/components/ui/link-button'
+import { DownloadLink } from '@/components/ui/download-link'
 import { Notice } from '@/components/ui/notice'
 import { PageHead } from '@/components/ui/page-head'
 import { Pager } from '@/components/ui/pager'
@@ -42,7 +42,7 @@ export function AlarmView(props: AlarmViewProps) {
             ? 'Those of your own firings, each with what became of it.'
             : 'What came at the hearths, who saw it, and how often. Every move is kept.'
         }
-        actions={<LinkButton href={csvHref(values)}>Download as CSV</LinkButton>}
+        actions={<DownloadLink href={csvHref(values)}>Download as CSV</DownloadLink>}
       />
       <AlarmFilterForm values={values} {...props.options} />
       {props.faults.map((fault) => (

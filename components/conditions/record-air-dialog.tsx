@@ -4,7 +4,6 @@ import { useRouter } from 'next/navigation'
 import { useState } from 'react'
 import type { FormEvent } from 'react'
 import { Button } from '@/components/ui/button'
-import { Dialog } from '@/components/ui/dialog'
 import { FormError } from '@/components/ui/form-error'
 import { NumberField } from '@/components/ui/number-field'
 import { SelectField } from '@/components/ui/select-field'
@@ -15,6 +14,7 @@ import type { AirReadingDto } from '@/lib/conditions/schema'
 import { formatNumber } from '@/lib/format'
 import type { TemperatureUnit } from '@/lib/format'
 import { callApi } from '@/lib/http/api-client'
+import { RecordDialog } from './record-dialog'
 import { shownFields } from './shown-fields'
 import { useWhen, WhenFields } from './when-fields'
 import type { WriteDay } from './when-fields'
@@ -67,68 +67,51 @@ function RecordAir({ unit, onClose, ...day }: Props & { onClose: () => void }) {
     router.refresh()
   }
   return (
-    <Dialog
-      isOpen
-      onClose={onClose}
+    <RecordDialog
       title="Record the air"
+      formId="air-form"
       isBusy={isBusy}
-      actions={
-        <>
-          <Button onClick={onClose} disabled={isBusy}>
-            Cancel
-          </Button>
-          <Button kind="main" type="submit" form="air-form" isBusy={isBusy}>
-            {isBusy ? 'Recording' : 'Record'}
-          </Button>
-        </>
-      }
+      onSave={(event) => void save(event)}
+      onClose={onClose}
     >
-      <form
-        id="air-form"
-        method="post"
-        onSubmit={(event) => void save(event)}
-        noValidate
-        className="grid gap-3"
-      >
-        <FormError
-          problem={problem}
-          labels={{ place: 'Place', at: 'Time', tempC: 'Air', humidityPercent: 'Humidity' }}
+      <FormError
+        problem={problem}
+        labels={{ place: 'Place', at: 'Time', tempC: 'Air', humidityPercent: 'Humidity' }}
+      />
+      <SelectField
+        name="place"
+        label="Place"
+        options={places}
+        value={place}
+        onChange={(event) => setPlace(event.target.value)}
+        error={fields['place']}
+      />
+      <WhenFields when={when} zone={day.zone} error={fields['at'] ?? (isAsked ? when.fault : undefined)} />
+      <div className="grid grid-cols-2 gap-4">
+        <TemperatureField
+          name="tempC"
+          label="Air"
+          isRequired
+          personUnit={unit}
+          valueC={tempC}
+          onValueChangeC={setTempC}
+          minC={-40}
+          maxC={60}
+          error={fields['tempC']}
         />
-        <SelectField
-          name="place"
-          label="Place"
-          options={places}
-          value={place}
-          onChange={(event) => setPlace(event.target.value)}
-          error={fields['place']}
+        <NumberField
+          name="humidityPercent"
+          label="Relative humidity"
+          isRequired
+          unit="%"
+          value={humidityPercent}
+          onValueChange={setHumidityPercent}
+          min={0}
+          max={100}
+          what="the humidity in %"
+          error={fields['humidityPercent']}
         />
-        <WhenFields when={when} zone={day.zone} error={fields['at'] ?? (isAsked ? when.fault : undefined)} />
-        <div className="grid grid-cols-2 gap-4">
-          <TemperatureField
-            name="tempC"
-            label="Air"
-            isRequired
-            personUnit={unit}
-            valueC={tempC}
-            onValueChangeC={setTempC}
-            minC={-40}
-            maxC={60}
-            error={fields['tempC']}
-          />
-          <NumberField
-            name="humidityPercent"
-            label="Relative humidity"
-            isRequired
-            unit="%"
-            value={humidityPercent}
-            onValueChange={setHumidityPercent}
-            min={0}
-            max={100}
-            what="the humidity in %"
-            error={fields['humidityPercent']}
-          />
-        </div>
-      </form>
-    </Dialog>
+      </div>
+    </RecordDialog>
   )
 }

@@ -5,7 +5,6 @@ import { useState } from 'react'
 import type { FormEvent } from 'react'
 import { followLocalCode } from '@/components/live/fireside-cautions'
 import { Button } from '@/components/ui/button'
-import { Dialog } from '@/components/ui/dialog'
 import { FormError } from '@/components/ui/form-error'
 import { NumberField } from '@/components/ui/number-field'
 import { SelectField } from '@/components/ui/select-field'
@@ -15,6 +14,7 @@ import { useRequest } from '@/components/ui/use-request'
 import { alarmDecides } from '@/lib/conditions/missing-words'
 import type { TemperatureUnit } from '@/lib/format'
 import { callApi } from '@/lib/http/api-client'
+import { RecordDialog } from './record-dialog'
 import { shownFields } from './shown-fields'
 import { useWhen, WhenFields } from './when-fields'
 import type { WriteDay } from './when-fields'
@@ -71,69 +71,52 @@ function RecordExposure({ unit, onClose, ...day }: Props & { onClose: () => void
     router.refresh()
   }
   return (
-    <Dialog
-      isOpen
-      onClose={onClose}
+    <RecordDialog
       title="Record carbon monoxide or heat"
+      formId="exposure-form"
       isBusy={isBusy}
-      actions={
-        <>
-          <Button onClick={onClose} disabled={isBusy}>
-            Cancel
-          </Button>
-          <Button kind="main" type="submit" form="exposure-form" isBusy={isBusy}>
-            {isBusy ? 'Recording' : 'Record'}
-          </Button>
-        </>
-      }
+      onSave={(event) => void save(event)}
+      onClose={onClose}
     >
-      <form
-        id="exposure-form"
-        method="post"
-        onSubmit={(event) => void save(event)}
-        noValidate
-        className="grid gap-3"
-      >
-        <FormError problem={problem} labels={labels} />
-        <p className="text-soft">
-          A record and a reminder. {alarmDecides} {followLocalCode}
-        </p>
-        <SelectField
-          name="kind"
-          label={labels.kind}
-          options={kinds}
-          value={kind}
-          onChange={(event) => setKind(event.target.value)}
-          error={fields['kind']}
+      <FormError problem={problem} labels={labels} />
+      <p className="text-soft">
+        A record and a reminder. {alarmDecides} {followLocalCode}
+      </p>
+      <SelectField
+        name="kind"
+        label={labels.kind}
+        options={kinds}
+        value={kind}
+        onChange={(event) => setKind(event.target.value)}
+        error={fields['kind']}
+      />
+      <TextField
+        name="subject"
+        label={labels.subject}
+        hint="T. Okafor, or hearth 2. Means are made for each apart."
+        maxLength={60}
+        value={subject}
+        onChange={(event) => setSubject(event.target.value)}
+        error={fields['subject']}
+      />
+      <WhenFields when={when} zone={day.zone} error={fields['at'] ?? (isAsked ? when.fault : undefined)} />
+      {kind === 'heat' ? (
+        <HeatFields values={values} onValues={setValues} unit={unit} fields={fields} />
+      ) : (
+        <NumberField
+          name="ppm"
+          label={labels.ppm}
+          isRequired
+          unit="ppm"
+          value={values.ppm}
+          onValueChange={(ppm) => setValues((before) => ({ ...before, ppm }))}
+          min={0}
+          max={10_000}
+          what="the ppm"
+          error={fields['ppm']}
         />
-        <TextField
-          name="subject"
-          label={labels.subject}
-          hint="T. Okafor, or hearth 2. Means are made for each apart."
-          maxLength={60}
-          value={subject}
-          onChange={(event) => setSubject(event.target.value)}
-          error={fields['subject']}
-        />
-        <WhenFields when={when} zone={day.zone} error={fields['at'] ?? (isAsked ? when.fault : undefined)} />
-        {kind === 'heat' ? (
-          <HeatFields values={values} onValues={setValues} unit={unit} fields={fields} />
-        ) : (
-          <NumberField
-            name="ppm"
-            label={labels.ppm}
-            isRequired
-            unit="ppm"
-            value={values.ppm}
-            onValueChange={(ppm) => setValues((before) => ({ ...before, ppm }))}
-            min={0}
-            max={10_000}
-            what="the ppm"
-            error={fields['ppm']}
-          />
-        )}
-      </form>
-    </Dialog>
+      )}
+    </RecordDialog>
   )
 }
 

@@ -1,6 +1,7 @@
 import Link from 'next/link'
 import { PrintButton } from '@/components/firings/print-button'
 import { showPoints } from '@/components/firings/term-table'
+import { DownloadLink } from '@/components/ui/download-link'
 import { LinkButton } from '@/components/ui/link-button'
 import { PageHead } from '@/components/ui/page-head'
 import { VerdictText } from '@/components/ui/verdict-text'
@@ -30,13 +31,7 @@ function Actions({ firing, hasCurves }: { firing: FiringDto; hasCurves: boolean 
   return (
     <>
       {firing.preheatAt === null ? null : (
-        <a
-          href={`/api/firings/${firing.id}/readings.csv`}
-          className="control inline-flex items-center px-[13px]"
-          download
-        >
-          Readings as CSV
-        </a>
+        <DownloadLink href={`/api/firings/${firing.id}/readings.csv`}>Readings as CSV</DownloadLink>
       )}
       <PrintButton />
       {isLive(firing.state) ? (

@@ -25,5 +25,5 @@ export function roomColumns({ isTight, isWall }: RoomSize): string {
   if (!isWall) return 'min-[1100px]:grid-cols-[168px_minmax(0,1fr)_200px_230px_290px]'
   return isTight
     ? 'grid-cols-[150px_minmax(0,1fr)_206px_240px_316px]'
-    : 'grid-cols-[150px_minmax(0,1fr)_232px_280px_360px]'
+    : 'grid-cols-[150px_minmax(0,1fr)_256px_280px_360px]'
 }

@@ -4,7 +4,7 @@ import type { ReactNode } from 'react'
 export function PlainShell({ children }: { children: ReactNode }) {
   return (
     <div className="mx-auto min-h-dvh max-w-[26rem] px-7 pt-[12vh] pb-12">
-      <p className="mb-6 text-[17px] font-[720]">Emberstave</p>
+      <header className="mb-6 text-[17px] font-[720]">Emberstave</header>
       <main id="main" tabIndex={-1}>
         {children}
       </main>
